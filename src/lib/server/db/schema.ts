@@ -1,0 +1,341 @@
+/**
+ * The tables. Times carry their zone, every foreign key says what happens on deletion, and every list that a page
+ * shows has an index in the order it is shown in. Nothing is stored twice: counts and states of a batch are read from
+ * its tasks.
+ */
+import { sql } from 'drizzle-orm';
+import {
+  bigserial,
+  boolean,
+  check,
+  customType,
+  doublePrecision,
+  index,
+  integer,
+  jsonb,
+  pgEnum,
+  pgTable,
+  primaryKey,
+  real,
+  smallint,
+  text,
+  timestamp,
+  unique,
+  uuid,
+} from 'drizzle-orm/pg-core';
+import { roles } from '../../domain/roles';
+
+const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
+const moment = (name: string) => timestamp(name, { withTimezone: true, mode: 'date' });
+const created = () => moment('created_at').notNull().defaultNow();
+
+export const roleEnum = pgEnum('role', roles);
+export const taskKindEnum = pgEnum('task_kind', ['conformers', 'scan', 'conjugation', 'strain']);
+export const taskStateEnum = pgEnum('task_state', [
+  'queued',
+  'running',
+  'done',
+  'failed',
+  'cancelled',
+]);
+export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
+export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload']);
+export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
+
+/** People. The address is stored in lower case. */
+export const users = pgTable(
+  'users',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    email: text('email').notNull().unique(),
+    name: text('name').notNull(),
+    passwordHash: text('password_hash').notNull(),
+    confirmedAt: moment('confirmed_at'),
+    createdAt: created(),
+  },
+  (table) => [check('users_email_lower_case', sql`${table.email} = lower(${table.email})`)],
+);
+
+/** Sign-ins that have not ended; the cookie carries the id, and deleting or revoking the row ends it at once. */
+export const sessions = pgTable(
+  'sessions',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    userAgent: text('user_agent').notNull().default(''),
+    address: text('address').notNull().default(''),
+    createdAt: created(),
+    seenAt: moment('seen_at').notNull().defaultNow(),
+    expiresAt: moment('expires_at').notNull(),
+    revokedAt: moment('revoked_at'),
+  },
+  (table) => [index('sessions_user').on(table.userId, table.seenAt)],
+);
+
+/** Single-use secrets sent by mail, stored as SHA-256 hashes. */
+export const letterTokens = pgTable(
+  'letter_tokens',
+  {
+    tokenHash: text('token_hash').primaryKey(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    purpose: letterPurposeEnum('purpose').notNull(),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    usedAt: moment('used_at'),
+  },
+  (table) => [index('letter_tokens_user').on(table.userId, table.purpose)],
+);
+
+/** Token buckets for sign-in and submission, shared by all web processes. */
+export const rateBuckets = pgTable('rate_buckets', {
+  key: text('key').primaryKey(),
+  tokens: doublePrecision('tokens').notNull(),
+  refilledAt: moment('refilled_at').notNull().defaultNow(),
+});
+
+export const teams = pgTable('teams', {
+  id: uuid('id').primaryKey().defaultRandom(),
+  name: text('name').notNull(),
+  createdAt: created(),
+});
+
+export const memberships = pgTable(
+  'memberships',
+  {
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    role: roleEnum('role').notNull(),
+    createdAt: created(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.teamId, table.userId] }),
+    index('memberships_user').on(table.userId),
+  ],
+);
+
+/**
+ * Prepared structures of a team. `digest` is the SHA-256 of the prepared molecule with its atom order and geometry;
+ * `smiles` is the canonical identity, shared by structures that differ only in those.
+ */
+export const molecules = pgTable(
+  'molecules',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    digest: text('digest').notNull(),
+    smiles: text('smiles').notNull(),
+    formula: text('formula').notNull(),
+    atomCount: smallint('atom_count').notNull(),
+    rotatableBondCount: smallint('rotatable_bond_count').notNull(),
+    /** V2000, all hydrogens, prepared atom order; with coordinates where `hasGeometry`. */
+    molfile: text('molfile').notNull(),
+    hasGeometry: boolean('has_geometry').notNull(),
+    createdAt: created(),
+  },
+  (table) => [
+    unique('molecules_team_digest').on(table.teamId, table.digest),
+    index('molecules_team_smiles').on(table.teamId, table.smiles),
+    index('molecules_team_created').on(table.teamId, table.createdAt),
+  ],
+);
+
+/** What a member submitted in one go. */
+export const batches = pgTable(
+  'batches',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
+    name: text('name').notNull(),
+    source: sourceEnum('source').notNull(),
+    /** What was chosen to run, as the domain's schema of a submission has it. */
+    plan: jsonb('plan').notNull(),
+    createdAt: created(),
+  },
+  (table) => [index('batches_team_created').on(table.teamId, table.createdAt)],
+);
+
+/** The rows of a batch as given, good and bad; a bad row has no molecule and says why. */
+export const entries = pgTable(
+  'entries',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    batchId: uuid('batch_id')
+      .notNull()
+      .references(() => batches.id, { onDelete: 'cascade' }),
+    position: integer('position').notNull(),
+    name: text('name').notNull(),
+    /** The row as given: a SMILES or a molfile. */
+    input: text('input').notNull(),
+    moleculeId: uuid('molecule_id').references(() => molecules.id),
+    verdict: verdictEnum('verdict').notNull(),
+    /** Warnings, or the error: [{code, message, line?, atom?}]. */
+    remarks: jsonb('remarks').notNull().default([]),
+  },
+  (table) => [
+    unique('entries_batch_position').on(table.batchId, table.position),
+    index('entries_molecule').on(table.moleculeId),
+    check(
+      'entries_bad_row_has_no_molecule',
+      sql`(${table.verdict} = 'error') = (${table.moleculeId} is null)`,
+    ),
+  ],
+);
+
+/** Stored answers, one for each team, molecule, kind, settings and engine version. */
+export const results = pgTable(
+  'results',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    moleculeId: uuid('molecule_id')
+      .notNull()
+      .references(() => molecules.id, { onDelete: 'cascade' }),
+    kind: taskKindEnum('kind').notNull(),
+    settings: jsonb('settings').notNull(),
+    settingsDigest: text('settings_digest').notNull(),
+    engineVersion: text('engine_version').notNull(),
+    /** The energy model that all of it rests on; further models of a profile are in profile_curves. */
+    model: text('model').notNull(),
+    /** All that is neither a conformer nor a profile: conjugated bonds, strain, flags of completeness. */
+    details: jsonb('details').notNull(),
+    warnings: jsonb('warnings').notNull().default([]),
+    seconds: doublePrecision('seconds').notNull(),
+    createdAt: created(),
+  },
+  (table) => [
+    unique('results_identity').on(
+      table.moleculeId,
+      table.kind,
+      table.settingsDigest,
+      table.engineVersion,
+    ),
+    index('results_team_created').on(table.teamId, table.createdAt),
+  ],
+);
+
+/** Conformers of a result, lowest first; coordinates are packed little-endian float64, 3 an atom, Å. */
+export const conformers = pgTable(
+  'conformers',
+  {
+    resultId: uuid('result_id')
+      .notNull()
+      .references(() => results.id, { onDelete: 'cascade' }),
+    rank: integer('rank').notNull(),
+    energy: doublePrecision('energy').notNull(),
+    relative: doublePrecision('relative').notNull(),
+    degeneracy: integer('degeneracy').notNull(),
+    population: doublePrecision('population').notNull(),
+    coordinates: bytes('coordinates').notNull(),
+  },
+  (table) => [primaryKey({ columns: [table.resultId, table.rank] })],
+);
+
+/** The grid of one torsion that a result scanned. */
+export const profiles = pgTable(
+  'profiles',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    resultId: uuid('result_id')
+      .notNull()
+      .references(() => results.id, { onDelete: 'cascade' }),
+    /** The four atoms, counted from 0 in the prepared molecule. */
+    torsion: integer('torsion').array().notNull(),
+    angles: doublePrecision('angles').array().notNull(),
+  },
+  (table) => [index('profiles_result').on(table.resultId)],
+);
+
+/** One energy model's curve over a profile's grid; several models can stand side by side. */
+export const profileCurves = pgTable(
+  'profile_curves',
+  {
+    profileId: uuid('profile_id')
+      .notNull()
+      .references(() => profiles.id, { onDelete: 'cascade' }),
+    model: text('model').notNull(),
+    relaxed: boolean('relaxed').notNull(),
+    energies: doublePrecision('energies').array().notNull(),
+    reached: doublePrecision('reached').array().notNull(),
+    /** Packed as a conformer's, one geometry after the other in the order of the angles. */
+    coordinates: bytes('coordinates').notNull(),
+    /** [{kind, angle, relative, label, …}] as the engine gives them. */
+    stationary: jsonb('stationary').notNull(),
+    createdAt: created(),
+  },
+  (table) => [primaryKey({ columns: [table.profileId, table.model, table.relaxed] })],
+);
+
+/** One computation of one entry. The row is the only truth shown to people; the queue's own state is plumbing. */
+export const tasks = pgTable(
+  'tasks',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    batchId: uuid('batch_id')
+      .notNull()
+      .references(() => batches.id, { onDelete: 'cascade' }),
+    entryId: uuid('entry_id')
+      .notNull()
+      .references(() => entries.id, { onDelete: 'cascade' }),
+    kind: taskKindEnum('kind').notNull(),
+    settings: jsonb('settings').notNull(),
+    state: taskStateEnum('state').notNull().default('queued'),
+    /** Counts the times a worker began; a worker that no longer holds the current attempt may not write. */
+    attempt: smallint('attempt').notNull().default(0),
+    progress: real('progress').notNull().default(0),
+    stage: text('stage').notNull().default(''),
+    worker: text('worker'),
+    /** {code, message, atom?, line?} where the state is 'failed'. */
+    error: jsonb('error'),
+    resultId: uuid('result_id').references(() => results.id, { onDelete: 'set null' }),
+    /** True when the answer was there already and nothing was computed for this task. */
+    reused: boolean('reused').notNull().default(false),
+    createdAt: created(),
+    startedAt: moment('started_at'),
+    /** The worker's last sign of life. */
+    beatAt: moment('beat_at'),
+    finishedAt: moment('finished_at'),
+  },
+  (table) => [
+    index('tasks_batch_state').on(table.batchId, table.state),
+    index('tasks_entry').on(table.entryId),
+    index('tasks_result').on(table.resultId),
+    index('tasks_running')
+      .on(table.beatAt)
+      .where(sql`${table.state} = 'running'`),
+    index('tasks_queued')
+      .on(table.createdAt)
+      .where(sql`${table.state} = 'queued'`),
+    check('tasks_progress_range', sql`${table.progress} between 0 and 1`),
+    check('tasks_failed_says_why', sql`(${table.state} = 'failed') = (${table.error} is not null)`),
+  ],
+);
+
+/** Who did what to what, and when; rows are only ever added. */
+export const events = pgTable(
+  'events',
+  {
+    id: bigserial('id', { mode: 'number' }).primaryKey(),
+    at: moment('at').notNull().defaultNow(),
+    teamId: uuid('team_id').references(() => teams.id, { onDelete: 'cascade' }),
+    actorId: uuid('actor_id').references(() => users.id, { onDelete: 'set null' }),
+    action: text('action').notNull(),
+    subject: text('subject').notNull(),
+    details: jsonb('details').notNull().default({}),
+  },
+  (table) => [index('events_team_at').on(table.teamId, table.at)],
+);
