@@ -1,0 +1,114 @@
+/**
+ * The queue of tasks on pg-boss, in the same database as everything else. A job only names a task; what people are
+ * shown is the task's own row.
+ */
+import { sql } from 'drizzle-orm';
+import { fromDrizzle, PgBoss, type Job } from 'pg-boss';
+import type { Executor } from './db';
+import { environment } from './environment';
+import { log } from './log';
+
+const TASKS = 'tasks';
+
+/** Without a sign of life for this long a worker counts as dead, and pg-boss hands its job to another one. */
+const HEARTBEAT_SECONDS = 15;
+/** How often lost jobs are looked for; with the heartbeat it keeps the pick-up within a minute. */
+const SUPERVISE_SECONDS = 10;
+/** Machines fail, molecules do not: a job is only ever thrown back by a fault of the machine. */
+const RETRY_LIMIT = 5;
+
+export interface TaskJob {
+  readonly taskId: string;
+}
+
+/** A task's place in the order of the queue: jobs with a higher priority run first. */
+export interface QueuedTask {
+  readonly id: string;
+  readonly priority: number;
+}
+
+let opening: Promise<PgBoss> | null = null;
+
+/** This process's side of the queue, opened once: the web only sends, a worker also looks after lost jobs. */
+function openQueue(isWorker = false): Promise<PgBoss> {
+  opening ??= start(isWorker).catch((error: unknown) => {
+    opening = null;
+    throw error;
+  });
+  return opening;
+}
+
+async function start(isWorker: boolean): Promise<PgBoss> {
+  const boss = new PgBoss({
+    connectionString: environment.DATABASE_URL,
+    instanceName: isWorker ? 'worker' : 'web',
+    max: isWorker ? 4 : 2,
+    supervise: isWorker,
+    schedule: false,
+    useListenNotify: isWorker,
+    superviseIntervalSeconds: SUPERVISE_SECONDS,
+    monitorIntervalSeconds: SUPERVISE_SECONDS,
+  });
+  boss.on('error', (error) => log.warn({ error }, 'The queue lost the database for a moment'));
+  await boss.start();
+  await boss.createQueue(TASKS, {
+    notify: true,
+    heartbeatSeconds: HEARTBEAT_SECONDS,
+    expireInSeconds: environment.WINDLASS_TASK_SECONDS + 120,
+    retryLimit: RETRY_LIMIT,
+    retryBackoff: true,
+    retryDelay: 1,
+    retryDelayMax: 30,
+  });
+  return boss;
+}
+
+/** Ends this process's side of the queue; running jobs are left for another worker. */
+export async function stopQueue(): Promise<void> {
+  const boss = await opening?.catch(() => null);
+  opening = null;
+  await boss?.stop({ graceful: false });
+}
+
+/** Puts tasks into the queue as a part of the caller's transaction: rolled back, no job is left behind. */
+export async function enqueue(executor: Executor, tasks: readonly QueuedTask[]): Promise<void> {
+  const boss = await openQueue();
+  await boss.insert(
+    TASKS,
+    tasks.map(({ id, priority }) => ({ id, priority, data: { taskId: id } satisfies TaskJob })),
+    { db: fromDrizzle(executor, sql) },
+  );
+}
+
+/** Takes tasks out of the queue as a part of the caller's transaction. */
+export async function dequeue(executor: Executor, ids: readonly string[]): Promise<void> {
+  if (ids.length === 0) return;
+  const boss = await openQueue();
+  await boss.deleteJob(TASKS, [...ids], { db: fromDrizzle(executor, sql) });
+}
+
+/** Runs `handle` for every job, `concurrency` at a time; a handler that throws hands its job back for a later try. */
+export async function workOnTasks(
+  concurrency: number,
+  handle: (taskId: string) => Promise<void>,
+): Promise<void> {
+  const boss = await openQueue(true);
+  await boss.work<TaskJob>(
+    TASKS,
+    {
+      localConcurrency: concurrency,
+      batchSize: 1,
+      pollingIntervalSeconds: 2,
+      notifyPollingIntervalSeconds: 5,
+    },
+    async (jobs: Job<TaskJob>[]) => {
+      for (const job of jobs) await handle(job.data.taskId);
+    },
+  );
+}
+
+/** Stops taking new jobs and waits until the running ones are done. */
+export async function drainTasks(): Promise<void> {
+  const boss = await openQueue();
+  await boss.offWork(TASKS, { wait: true });
+}
