@@ -7,6 +7,11 @@ export default {
   compilerOptions: { runes: true },
   kit: {
     adapter: adapter({ out: 'build/web', envPrefix: 'WINDLASS_WEB_' }),
+    typescript: {
+      config: (config) => {
+        config.include.push('../worker/**/*.ts', '../scripts/**/*.ts', '../*.config.ts');
+      },
+    },
     csp: {
       mode: 'nonce',
       directives: {

@@ -10,8 +10,11 @@ CREATE TABLE "batches" (
 	"created_by" uuid,
 	"name" text NOT NULL,
 	"source" "batch_source" NOT NULL,
-	"plan" jsonb NOT NULL,
-	"created_at" timestamp with time zone DEFAULT now() NOT NULL
+	"reading" jsonb DEFAULT '{}'::jsonb NOT NULL,
+	"plan" jsonb,
+	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
+	"submitted_at" timestamp with time zone,
+	CONSTRAINT "batches_submitted_has_plan" CHECK ("batches"."submitted_at" is null or "batches"."plan" is not null)
 );
 --> statement-breakpoint
 CREATE TABLE "conformers" (
@@ -29,11 +32,13 @@ CREATE TABLE "entries" (
 	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
 	"batch_id" uuid NOT NULL,
 	"position" integer NOT NULL,
+	"line" integer,
 	"name" text NOT NULL,
 	"input" text NOT NULL,
 	"molecule_id" uuid,
 	"verdict" "verdict" NOT NULL,
 	"remarks" jsonb DEFAULT '[]'::jsonb NOT NULL,
+	"chosen_bonds" jsonb DEFAULT '[]'::jsonb NOT NULL,
 	CONSTRAINT "entries_batch_position" UNIQUE("batch_id","position"),
 	CONSTRAINT "entries_bad_row_has_no_molecule" CHECK (("entries"."verdict" = 'error') = ("entries"."molecule_id" is null))
 );
@@ -189,7 +194,8 @@ ALTER TABLE "sessions" ADD CONSTRAINT "sessions_user_id_users_id_fk" FOREIGN KEY
 ALTER TABLE "tasks" ADD CONSTRAINT "tasks_batch_id_batches_id_fk" FOREIGN KEY ("batch_id") REFERENCES "public"."batches"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "tasks" ADD CONSTRAINT "tasks_entry_id_entries_id_fk" FOREIGN KEY ("entry_id") REFERENCES "public"."entries"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "tasks" ADD CONSTRAINT "tasks_result_id_results_id_fk" FOREIGN KEY ("result_id") REFERENCES "public"."results"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
-CREATE INDEX "batches_team_created" ON "batches" USING btree ("team_id","created_at");--> statement-breakpoint
+CREATE INDEX "batches_team_submitted" ON "batches" USING btree ("team_id","submitted_at");--> statement-breakpoint
+CREATE INDEX "batches_drafts" ON "batches" USING btree ("created_at") WHERE "batches"."submitted_at" is null;--> statement-breakpoint
 CREATE INDEX "entries_molecule" ON "entries" USING btree ("molecule_id");--> statement-breakpoint
 CREATE INDEX "events_team_at" ON "events" USING btree ("team_id","at");--> statement-breakpoint
 CREATE INDEX "letter_tokens_user" ON "letter_tokens" USING btree ("user_id","purpose");--> statement-breakpoint

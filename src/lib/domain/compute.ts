@@ -101,15 +101,20 @@ export const conformersTaskSchema = exactly('A conformers task', {
   effort: oneOf('The effort', ['quick', 'normal', 'thorough']).default('normal'),
 });
 
-export const scanTaskSchema = exactly('A scan task', {
-  kind: z.literal('scan'),
+/** The settings of a scan, whichever bond it turns. */
+export const scanSettings = {
   ...model,
-  torsion: torsion.optional(),
-  bond: bond.optional(),
   step,
   relaxed: yesOrNo('"relaxed"').default(true),
   temperature,
   seed,
+};
+
+export const scanTaskSchema = exactly('A scan task', {
+  kind: z.literal('scan'),
+  torsion: torsion.optional(),
+  bond: bond.optional(),
+  ...scanSettings,
 }).refine((task) => (task.torsion === undefined) !== (task.bond === undefined), {
   error: 'A scan task needs either "torsion" [i, j, k, l] or "bond" [j, k].',
 });

@@ -3,7 +3,7 @@
  * shown is the task's own row.
  */
 import { sql } from 'drizzle-orm';
-import { fromDrizzle, PgBoss, type Job } from 'pg-boss';
+import { fromDrizzle, PgBoss, type JobWithMetadata } from 'pg-boss';
 import type { Executor } from './db';
 import { environment } from './environment';
 import { log } from './log';
@@ -90,19 +90,22 @@ export async function dequeue(executor: Executor, ids: readonly string[]): Promi
 /** Runs `handle` for every job, `concurrency` at a time; a handler that throws hands its job back for a later try. */
 export async function workOnTasks(
   concurrency: number,
-  handle: (taskId: string) => Promise<void>,
+  handle: (taskId: string, lastTry: boolean) => Promise<void>,
 ): Promise<void> {
   const boss = await openQueue(true);
-  await boss.work<TaskJob>(
+  await boss.work(
     TASKS,
     {
+      includeMetadata: true,
       localConcurrency: concurrency,
       batchSize: 1,
       pollingIntervalSeconds: 2,
       notifyPollingIntervalSeconds: 5,
     },
-    async (jobs: Job<TaskJob>[]) => {
-      for (const job of jobs) await handle(job.data.taskId);
+    async (jobs: JobWithMetadata<TaskJob>[]) => {
+      for (const { data, retryCount, retryLimit } of jobs) {
+        await handle(data.taskId, retryCount >= retryLimit);
+      }
     },
   );
 }

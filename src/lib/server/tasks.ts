@@ -136,16 +136,18 @@ export async function release(task: ClaimedTask): Promise<void> {
   await tell(db, 'batch-changed', [task.batchId]);
 }
 
+/** What is told when the machines, not the molecule, kept failing. */
+export const workerLost: TaskError = {
+  code: 'worker-lost',
+  message:
+    'The computer running this task stopped several times before it was done. Run it again; if it happens again, tell the operator.',
+};
+
 /** Ends tasks whose workers kept dying until the queue gave up; without it they would seem to run for ever. */
 export async function failAbandoned(): Promise<number> {
-  const error: TaskError = {
-    code: 'worker-lost',
-    message:
-      'The computer running this task stopped several times before it was done. Run it again; if it happens again, tell the operator.',
-  };
   const rows = await db
     .update(tasks)
-    .set({ state: 'failed', error, finishedAt: sql`now()` })
+    .set({ state: 'failed', error: workerLost, finishedAt: sql`now()` })
     .where(and(eq(tasks.state, 'running'), lt(tasks.beatAt, ABANDONED)))
     .returning({ batchId: tasks.batchId });
   await tell(db, 'batch-changed', [...new Set(rows.map((row) => row.batchId))]);

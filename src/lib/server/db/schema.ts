@@ -160,11 +160,23 @@ export const batches = pgTable(
     createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
     name: text('name').notNull(),
     source: sourceEnum('source').notNull(),
-    /** What was chosen to run, as the domain's schema of a submission has it. */
-    plan: jsonb('plan').notNull(),
+    /** How rows were read, and what runs for each molecule, as the domain's schemas of a submission have them. */
+    reading: jsonb('reading').notNull().default({}),
+    plan: jsonb('plan'),
     createdAt: created(),
+    /** Null while its maker still looks at the preview. */
+    submittedAt: moment('submitted_at'),
   },
-  (table) => [index('batches_team_created').on(table.teamId, table.createdAt)],
+  (table) => [
+    index('batches_team_submitted').on(table.teamId, table.submittedAt),
+    index('batches_drafts')
+      .on(table.createdAt)
+      .where(sql`${table.submittedAt} is null`),
+    check(
+      'batches_submitted_has_plan',
+      sql`${table.submittedAt} is null or ${table.plan} is not null`,
+    ),
+  ],
 );
 
 /** The rows of a batch as given, good and bad; a bad row has no molecule and says why. */
@@ -176,6 +188,8 @@ export const entries = pgTable(
       .notNull()
       .references(() => batches.id, { onDelete: 'cascade' }),
     position: integer('position').notNull(),
+    /** Line of the input on which the row begins, from 1; null for a drawing. */
+    line: integer('line'),
     name: text('name').notNull(),
     /** The row as given: a SMILES or a molfile. */
     input: text('input').notNull(),
@@ -183,6 +197,8 @@ export const entries = pgTable(
     verdict: verdictEnum('verdict').notNull(),
     /** Warnings, or the error: [{code, message, line?, atom?}]. */
     remarks: jsonb('remarks').notNull().default([]),
+    /** Bonds clicked on the drawing, [[j, k], …], where the plan scans chosen bonds. */
+    chosenBonds: jsonb('chosen_bonds').notNull().default([]),
   },
   (table) => [
     unique('entries_batch_position').on(table.batchId, table.position),

@@ -1,0 +1,69 @@
+/** What a person submits: how rows are read, and what is run for each molecule. The same schemas serve page and server. */
+import { z } from 'zod';
+import {
+  conformersTaskSchema,
+  conjugationTaskSchema,
+  scanSettings,
+  strainTaskSchema,
+} from './compute';
+
+/** Most rows of one upload. */
+export const ROW_LIMIT = 20_000;
+/** Largest upload, bytes. */
+export const UPLOAD_LIMIT = 50 * 1024 * 1024;
+/** Most stereoisomers that one row with undefined stereocentres is expanded to. */
+export const STEREO_LIMIT = 16;
+
+/** How rows become molecules; everything is off unless asked for, because each changes what was given. */
+export const readingSchema = z.strictObject({
+  /** Keep the largest part of a mixture; a row that is a mixture is an error otherwise. */
+  stripSalts: z.boolean().default(false),
+  /** Keep only the first of rows that are the same molecule. */
+  mergeDuplicates: z.boolean().default(false),
+  /** Replace a row with undefined stereocentres by its stereoisomers, at most this many; 0 leaves it as it is. */
+  expandStereo: z.number().int().min(0).max(STEREO_LIMIT).default(0),
+});
+export type Reading = z.output<typeof readingSchema>;
+
+/** The formats that are taken, by the ending of a file's name. */
+export const formats = ['smi', 'csv', 'sdf', 'mol'] as const;
+export type Format = (typeof formats)[number];
+
+/** Which bonds are scanned: by rule, or those clicked on the drawing of each row. */
+export const bondChoices = ['rotatable', 'conjugated', 'chosen'] as const;
+export type BondChoice = (typeof bondChoices)[number];
+
+const scansSchema = z.strictObject({
+  bonds: z.enum(bondChoices).default('rotatable'),
+  /** Whether methyl, hydroxyl and the like are turned too. */
+  terminal: z.boolean().default(false),
+  ...scanSettings,
+});
+
+/** What is run for every molecule of a batch; at least one kind of task. */
+export const planSchema = z
+  .strictObject({
+    conformers: conformersTaskSchema.omit({ kind: true }).nullable().default(null),
+    scans: scansSchema.nullable().default(null),
+    conjugation: conjugationTaskSchema.omit({ kind: true }).nullable().default(null),
+    strain: strainTaskSchema.omit({ kind: true }).nullable().default(null),
+  })
+  .refine((plan) => Object.values(plan).some((part) => part !== null), {
+    error: 'Choose at least one thing to compute.',
+  });
+export type Plan = z.output<typeof planSchema>;
+
+/** The bonds clicked on one row's drawing, each as its two atoms counted from 0. */
+export const chosenBondsSchema = z
+  .array(z.tuple([z.number().int().min(0), z.number().int().min(0)]))
+  .max(50);
+export type ChosenBonds = z.output<typeof chosenBondsSchema>;
+
+/** A remark on a row: a warning, or the reason why it cannot be computed. */
+export const remarkSchema = z.object({
+  code: z.string(),
+  message: z.string(),
+  line: z.number().int().optional(),
+  atom: z.number().int().optional(),
+});
+export type Remark = z.output<typeof remarkSchema>;
