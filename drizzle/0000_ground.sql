@@ -1,6 +1,7 @@
 CREATE TYPE "public"."letter_purpose" AS ENUM('confirm-address', 'reset-password');--> statement-breakpoint
 CREATE TYPE "public"."role" AS ENUM('reader', 'chemist', 'modeler', 'lead');--> statement-breakpoint
 CREATE TYPE "public"."batch_source" AS ENUM('paste', 'draw', 'upload');--> statement-breakpoint
+CREATE TYPE "public"."structure_format" AS ENUM('smiles', 'molfile');--> statement-breakpoint
 CREATE TYPE "public"."task_kind" AS ENUM('conformers', 'scan', 'conjugation', 'strain');--> statement-breakpoint
 CREATE TYPE "public"."task_state" AS ENUM('queued', 'running', 'done', 'failed', 'cancelled');--> statement-breakpoint
 CREATE TYPE "public"."verdict" AS ENUM('ready', 'warning', 'error');--> statement-breakpoint
@@ -34,7 +35,7 @@ CREATE TABLE "entries" (
 	"position" integer NOT NULL,
 	"line" integer,
 	"name" text NOT NULL,
-	"input" text NOT NULL,
+	"input" text,
 	"molecule_id" uuid,
 	"verdict" "verdict" NOT NULL,
 	"remarks" jsonb DEFAULT '[]'::jsonb NOT NULL,
@@ -78,7 +79,8 @@ CREATE TABLE "molecules" (
 	"formula" text NOT NULL,
 	"atom_count" smallint NOT NULL,
 	"rotatable_bond_count" smallint NOT NULL,
-	"molfile" text NOT NULL,
+	"format" "structure_format" NOT NULL,
+	"structure" text NOT NULL,
 	"has_geometry" boolean NOT NULL,
 	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
 	CONSTRAINT "molecules_team_digest" UNIQUE("team_id","digest")

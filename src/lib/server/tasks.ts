@@ -21,8 +21,8 @@ export interface ClaimedTask {
   readonly moleculeId: string;
   readonly kind: (typeof tasks.$inferSelect)['kind'];
   readonly settings: unknown;
-  readonly molfile: string;
-  readonly hasGeometry: boolean;
+  readonly format: 'smiles' | 'molfile';
+  readonly structure: string;
 }
 
 /** Why something failed, as it is stored and shown. */
@@ -68,8 +68,8 @@ export async function claim(taskId: string, worker: string): Promise<ClaimedTask
       moleculeId: molecules.id,
       kind: tasks.kind,
       settings: tasks.settings,
-      molfile: molecules.molfile,
-      hasGeometry: molecules.hasGeometry,
+      format: molecules.format,
+      structure: molecules.structure,
     })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))

@@ -40,6 +40,7 @@ export const taskStateEnum = pgEnum('task_state', [
 ]);
 export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
 export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload']);
+export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
 
 /** People. The address is stored in lower case. */
@@ -122,8 +123,9 @@ export const memberships = pgTable(
 );
 
 /**
- * Prepared structures of a team. `digest` is the SHA-256 of the prepared molecule with its atom order and geometry;
- * `smiles` is the canonical identity, shared by structures that differ only in those.
+ * Prepared structures of a team, as the engine takes them. A row without a geometry of its own is its canonical SMILES,
+ * so that every spelling of a molecule is one structure; a molfile is kept with its atom order and geometry. `digest` is
+ * the SHA-256 of format and structure; `smiles` is the identity shared by structures that differ only in those.
  */
 export const molecules = pgTable(
   'molecules',
@@ -137,8 +139,8 @@ export const molecules = pgTable(
     formula: text('formula').notNull(),
     atomCount: smallint('atom_count').notNull(),
     rotatableBondCount: smallint('rotatable_bond_count').notNull(),
-    /** V2000, all hydrogens, prepared atom order; with coordinates where `hasGeometry`. */
-    molfile: text('molfile').notNull(),
+    format: structureFormatEnum('format').notNull(),
+    structure: text('structure').notNull(),
     hasGeometry: boolean('has_geometry').notNull(),
     createdAt: created(),
   },
@@ -191,8 +193,8 @@ export const entries = pgTable(
     /** Line of the input on which the row begins, from 1; null for a drawing. */
     line: integer('line'),
     name: text('name').notNull(),
-    /** The row as given: a SMILES or a molfile. */
-    input: text('input').notNull(),
+    /** The row as given; null where that is the molecule's own structure to the letter. */
+    input: text('input'),
     moleculeId: uuid('molecule_id').references(() => molecules.id),
     verdict: verdictEnum('verdict').notNull(),
     /** Warnings, or the error: [{code, message, line?, atom?}]. */
