@@ -78,7 +78,7 @@ CREATE TABLE "molecules" (
 	"smiles" text NOT NULL,
 	"formula" text NOT NULL,
 	"atom_count" smallint NOT NULL,
-	"rotatable_bond_count" smallint NOT NULL,
+	"rotors" jsonb NOT NULL,
 	"format" "structure_format" NOT NULL,
 	"structure" text NOT NULL,
 	"has_geometry" boolean NOT NULL,

@@ -67,3 +67,11 @@ export const remarkSchema = z.object({
   atom: z.number().int().optional(),
 });
 export type Remark = z.output<typeof remarkSchema>;
+
+/** A bond that can be scanned, with its reference torsion; atoms are counted from 0. */
+export interface Rotor {
+  readonly torsion: readonly [number, number, number, number];
+  readonly conjugated: boolean;
+  /** Only hydrogens at one end: methyl, hydroxyl and the like. */
+  readonly terminal: boolean;
+}

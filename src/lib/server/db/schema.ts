@@ -24,6 +24,7 @@ import {
   uuid,
 } from 'drizzle-orm/pg-core';
 import { roles } from '../../domain/roles';
+import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
 const moment = (name: string) => timestamp(name, { withTimezone: true, mode: 'date' });
@@ -138,7 +139,8 @@ export const molecules = pgTable(
     smiles: text('smiles').notNull(),
     formula: text('formula').notNull(),
     atomCount: smallint('atom_count').notNull(),
-    rotatableBondCount: smallint('rotatable_bond_count').notNull(),
+    /** The bonds that can be scanned: [{torsion: [i, j, k, l], conjugated, terminal}]. */
+    rotors: jsonb('rotors').$type<readonly Rotor[]>().notNull(),
     format: structureFormatEnum('format').notNull(),
     structure: text('structure').notNull(),
     hasGeometry: boolean('has_geometry').notNull(),

@@ -1,0 +1,55 @@
+/** From a plan to tasks: which computations one row of a batch needs. */
+import type { ChosenBonds, Plan, Rotor } from '../domain/submission';
+import type { tasks } from './db/schema';
+
+export interface PlannedTask {
+  readonly entryId: string;
+  readonly moleculeId: string;
+  readonly kind: (typeof tasks.$inferSelect)['kind'];
+  /** As the task schemas of the domain have them, without the kind. */
+  readonly settings: Record<string, unknown>;
+}
+
+export interface PlannedRow {
+  readonly id: string;
+  readonly moleculeId: string;
+  readonly rotors: readonly Rotor[];
+  readonly hasGeometry: boolean;
+  readonly chosenBonds: unknown;
+}
+
+/** The tasks of one row: one a kind, but one a bond for scans. What a molecule has no use for is left out. */
+export function planTasks(row: PlannedRow, plan: Plan): PlannedTask[] {
+  const own = { entryId: row.id, moleculeId: row.moleculeId };
+  const planned: PlannedTask[] = [];
+  if (plan.conformers) planned.push({ ...own, kind: 'conformers', settings: plan.conformers });
+  if (plan.scans) {
+    const { bonds, terminal, ...settings } = plan.scans;
+    for (const { torsion } of scannedRotors(row, bonds, terminal)) {
+      planned.push({ ...own, kind: 'scan', settings: { torsion, ...settings } });
+    }
+  }
+  if (plan.conjugation && row.rotors.some((rotor) => rotor.conjugated)) {
+    planned.push({ ...own, kind: 'conjugation', settings: plan.conjugation });
+  }
+  if (plan.strain && row.hasGeometry) {
+    planned.push({ ...own, kind: 'strain', settings: plan.strain });
+  }
+  return planned;
+}
+
+function scannedRotors(
+  row: PlannedRow,
+  bonds: NonNullable<Plan['scans']>['bonds'],
+  terminal: boolean,
+): Rotor[] {
+  if (bonds === 'chosen') {
+    const chosen = row.chosenBonds as ChosenBonds;
+    return row.rotors.filter(({ torsion: [, j, k] }) =>
+      chosen.some(([a, b]) => (a === j && b === k) || (a === k && b === j)),
+    );
+  }
+  return row.rotors.filter(
+    (rotor) => (terminal || !rotor.terminal) && (bonds === 'rotatable' || rotor.conjugated),
+  );
+}
