@@ -39,7 +39,6 @@ export function resolveConfiguration(
   const tables = { ...molecule, stereocenters: centers, stereobonds: doubleBonds };
   const { ocl, toOcl } = translate(tables, kept);
   drawConfiguration(ocl);
-  ocl.ensureHelperArrays(OclMolecule.cHelperParities);
   const parityOf = (atom: number): number => (toOcl[atom] < 0 ? 0 : ocl.getAtomParity(toOcl[atom]));
   const bondParityOf = (bond: number): number => {
     const [a, b] = [toOcl[molecule.bonds[bond].a], toOcl[molecule.bonds[bond].b]];

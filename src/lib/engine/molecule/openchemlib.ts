@@ -83,10 +83,15 @@ export function translate(tables: TranslatedTables, atoms: readonly number[]): O
   return { ocl, toOcl, fromOcl: Int32Array.from(atoms) };
 }
 
-/** Draws the molecule in the plane with the wedges that its parities ask for. */
+/**
+ * Draws the molecule in the plane with the wedges that its parities ask for, and has the drawing read again, so that
+ * parities stay only on atoms and bonds that are stereogenic and those left open are marked unknown.
+ */
 export function drawConfiguration(ocl: OclMolecule): void {
   ocl.inventCoordinates();
   ocl.setStereoBondsFromParity();
+  ocl.invalidateHelperArrays(OclMolecule.cHelperBitParities);
+  ocl.ensureHelperArrays(OclMolecule.cHelperCIP);
 }
 
 /**
