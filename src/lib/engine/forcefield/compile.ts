@@ -5,6 +5,7 @@ import type { Interactions } from './interactions';
 import { angleCurvature, angleTerm } from './terms/angle';
 import { bondCurvature, bondTerm } from './terms/bond';
 import { electrostaticTerm } from './terms/electrostatic';
+import { nonbondedTerm } from './terms/nonbonded';
 import { outOfPlaneCurvature, outOfPlaneTerm } from './terms/out-of-plane';
 import { stretchBendTerm } from './terms/stretch-bend';
 import { torsionCurvature, torsionTerm } from './terms/torsion';
@@ -15,6 +16,7 @@ export type CompiledInteractions = Pick<ForceField, 'energy' | 'curvature' | 'te
 
 /** Compiles parameterized interactions into energy, curvature and energies by term. */
 export function compileInteractions(
+  atomCount: number,
   interactions: Interactions,
   dielectric: Dielectric,
 ): CompiledInteractions {
@@ -27,15 +29,15 @@ export function compileInteractions(
     vanDerWaals: vanDerWaalsTerm(interactions.vanDerWaals),
     electrostatic: electrostaticTerm(interactions.electrostatics, dielectric),
   };
-  const { bond, angle, stretchBend, outOfPlane, torsion, vanDerWaals, electrostatic } = parts;
+  const { bond, angle, stretchBend, outOfPlane, torsion } = parts;
+  const nonbonded = nonbondedTerm(atomCount, interactions, dielectric);
   const energy: EnergyTerm = (x, gradient) =>
     bond(x, gradient) +
     angle(x, gradient) +
     stretchBend(x, gradient) +
     outOfPlane(x, gradient) +
     torsion(x, gradient) +
-    vanDerWaals(x, gradient) +
-    electrostatic(x, gradient);
+    nonbonded(x, gradient);
   return { energy, curvature: compileCurvature(interactions), terms: (x) => evaluate(parts, x) };
 }
 

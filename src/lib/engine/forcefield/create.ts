@@ -14,6 +14,6 @@ export function createForceField(
   settings: ForceFieldSettings = defaultForceFieldSettings,
 ): ForceField {
   const { atomTypes, charges, interactions } = assembleInteractions(molecule, settings.variant);
-  const compiled = compileInteractions(interactions, settings.dielectric);
+  const compiled = compileInteractions(molecule.atomCount, interactions, settings.dielectric);
   return { molecule, settings, atomTypes, charges, ...compiled };
 }
