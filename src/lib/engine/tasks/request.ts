@@ -1,23 +1,17 @@
 /** What the engine is asked: a molecule and one task, every setting given. Energies kcal/mol, angles degrees, atoms from 0. */
-import type { Dielectric, Variant } from '../forcefield/forcefield';
+import type { SearchEffort } from '../conformers/conformers';
+import type { ForceFieldSettings } from '../forcefield/forcefield';
+import type { MoleculeInput } from '../molecule/read';
 
-export type MoleculeInput = { readonly smiles: string } | { readonly molfile: string };
-
-/** The energy model. */
-export interface ModelSettings {
-  readonly variant: Variant;
-  readonly dielectric: Dielectric;
-}
-
-export interface EnergyTask extends ModelSettings {
+export interface EnergyTask extends ForceFieldSettings {
   readonly kind: 'energy';
 }
 
-export interface MinimizeTask extends ModelSettings {
+export interface MinimizeTask extends ForceFieldSettings {
   readonly kind: 'minimize';
 }
 
-export interface ConformersTask extends ModelSettings {
+export interface ConformersTask extends ForceFieldSettings {
   readonly kind: 'conformers';
   /** Most conformers returned. */
   readonly limit: number;
@@ -25,11 +19,11 @@ export interface ConformersTask extends ModelSettings {
   readonly window: number;
   readonly temperature: number;
   readonly seed: number;
-  readonly effort: 'quick' | 'normal' | 'thorough';
+  readonly effort: SearchEffort;
 }
 
 /** Either the torsion or the bond is given. */
-export interface ScanTask extends ModelSettings {
+export interface ScanTask extends ForceFieldSettings {
   readonly kind: 'scan';
   readonly torsion?: readonly [number, number, number, number] | undefined;
   readonly bond?: readonly [number, number] | undefined;
@@ -41,13 +35,13 @@ export interface ScanTask extends ModelSettings {
   readonly seed: number;
 }
 
-export interface ConjugationTask extends ModelSettings {
+export interface ConjugationTask extends ForceFieldSettings {
   readonly kind: 'conjugation';
   readonly temperature: number;
   readonly seed: number;
 }
 
-export interface StrainTask extends ModelSettings {
+export interface StrainTask extends ForceFieldSettings {
   readonly kind: 'strain';
   /** How far a heavy atom may move at no cost, Å. */
   readonly tether: number;
