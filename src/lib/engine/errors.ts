@@ -45,6 +45,7 @@ export type InputWarningCode =
   | 'undefined-double-bond'
   | 'stereo-from-geometry'
   | 'geometry-ignored'
+  | 'geometry-built'
   | 'hydrogens-added'
   | 'name-ignored'
   | 'not-converged'

@@ -1,0 +1,10 @@
+/** What every part of the parameterization works from. */
+import type { Parameters } from './parameters';
+import type { Structure } from './structure';
+
+export interface Parameterization {
+  readonly structure: Structure;
+  /** Numeric atom types, one an atom. */
+  readonly types: Readonly<Int32Array>;
+  readonly parameters: Parameters;
+}

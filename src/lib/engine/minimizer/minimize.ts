@@ -1,0 +1,90 @@
+/** Minimizes an energy: limited-memory quasi-Newton steps from a curvature that knows the molecule. */
+import type { Control } from '../control';
+import type { EnergyTerm } from '../energy-term';
+import { createHistory, dot } from './history';
+import { searchLine } from './line-search';
+import type { Point } from './line-search';
+import type { MinimizeOptions, MinimizeResult } from './minimizer';
+import { createPreconditioner } from './preconditioner';
+
+/** Pairs of steps and gradient changes remembered. */
+const MEMORY = 12;
+/** Steps after which the curvature is computed anew. */
+const REFRESH_INTERVAL = 30;
+/** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
+const LONGEST_STEP = 0.5;
+
+/**
+ * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
+ * (kcal/mol/Å). Pauses by `control`, and throws only when the control does. Where it stops unconverged, the result says
+ * so and `x` is the lowest point reached.
+ */
+export async function minimize(
+  energy: EnergyTerm,
+  x: Float64Array,
+  options: MinimizeOptions,
+  control: Control,
+): Promise<MinimizeResult> {
+  const size = x.length;
+  const { gradientRms, maxEvaluations, curvature } = options;
+  const history = createHistory(size, MEMORY);
+  const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
+  const direction = new Float64Array(size);
+  let current: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
+  let next: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
+  current.energy = energy(current.x, current.gradient);
+  let evaluations = 1;
+  let sinceRefresh = REFRESH_INTERVAL;
+  let restarted = false;
+  const applyInitial = (vector: Float64Array): void => preconditioner?.solve(vector);
+
+  while (rootMeanSquare(current.gradient) > gradientRms && evaluations < maxEvaluations) {
+    if (control.due()) await control.pause();
+    if (sinceRefresh >= REFRESH_INTERVAL) {
+      preconditioner?.refresh(current.x);
+      sinceRefresh = 0;
+    }
+    sinceRefresh++;
+    direction.set(current.gradient);
+    history.apply(direction, applyInitial);
+    for (let a = 0; a < size; a++) direction[a] = -direction[a];
+    const largestStep = LONGEST_STEP / longestMove(direction);
+    const downhill = dot(direction, current.gradient) < 0;
+    const spent = downhill ? searchLine(energy, current, direction, 1, largestStep, next) : 0;
+    evaluations += Math.abs(spent);
+    if (spent <= 0) {
+      // The memory no longer fits the place: try once more from the bare curvature before giving up.
+      if (restarted) break;
+      restarted = true;
+      history.clear();
+      sinceRefresh = REFRESH_INTERVAL;
+      continue;
+    }
+    restarted = false;
+    history.remember(current.x, next.x, current.gradient, next.gradient);
+    [current, next] = [next, current];
+  }
+  x.set(current.x);
+  const reached = rootMeanSquare(current.gradient);
+  return {
+    energy: current.energy,
+    converged: reached <= gradientRms,
+    gradientRms: reached,
+    evaluations,
+  };
+}
+
+/** Root mean square of a vector's components. */
+export function rootMeanSquare(vector: Float64Array): number {
+  return Math.sqrt(dot(vector, vector) / vector.length);
+}
+
+/** The longest way any atom goes, Å. */
+function longestMove(direction: Float64Array): number {
+  let longest = 1e-300;
+  for (let a = 0; a < direction.length; a += 3) {
+    const [dx, dy, dz] = [direction[a], direction[a + 1], direction[a + 2]];
+    longest = Math.max(longest, dx * dx + dy * dy + dz * dz);
+  }
+  return Math.sqrt(longest);
+}
