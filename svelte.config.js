@@ -6,7 +6,11 @@ export default {
   preprocess: vitePreprocess(),
   compilerOptions: { runes: true },
   kit: {
-    adapter: adapter({ out: 'build/web', envPrefix: 'WINDLASS_WEB_' }),
+    adapter: adapter({
+      // scripts/build.mjs gives each state of the sources a folder of its own.
+      out: `${process.env['WINDLASS_BUILD_FOLDER'] ?? 'build/plain'}/web`,
+      envPrefix: 'WINDLASS_WEB_',
+    }),
     typescript: {
       config: (config) => {
         config.include.push('../worker/**/*.ts', '../scripts/**/*.ts', '../*.config.ts');

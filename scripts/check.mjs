@@ -1,7 +1,7 @@
 /** Runs the static checks and says which passed: format, lint, types, and the doors between the rooms. */
 import { spawnSync } from 'node:child_process';
 import { fileURLToPath } from 'node:url';
-import { projectRoot } from './install.mjs';
+import { projectRoot } from './folders.mjs';
 
 const checks = [
   { name: 'format', command: ['prettier', '--check', '--log-level=warn', '.'] },

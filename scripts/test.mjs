@@ -4,7 +4,8 @@ import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { runChecks } from './check.mjs';
-import { installPackages, projectRoot } from './install.mjs';
+import { projectRoot } from './folders.mjs';
+import { installPackages } from './install.mjs';
 
 /** Runs Vitest and returns its counts; a run that ends without a report counts as one failure. */
 function runVitest(extraArguments) {

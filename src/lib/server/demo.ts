@@ -1,0 +1,62 @@
+/** The demo: an invented team that compares substituted dienes and biaryls for a coating. */
+import { and, eq, sql } from 'drizzle-orm';
+import type { Role } from '../domain/roles';
+import { db, type Executor } from './db';
+import { memberships, teams, users } from './db/schema';
+import { environment } from './environment';
+import { hashPassword } from './passwords';
+
+export const DEMO_TEAM = 'Skerry Coatings';
+const DEMO_SEED_LOCK = 4_810_002;
+
+/** All addresses end in .example, which no mail can ever reach (RFC 2606). */
+const members = [
+  { name: 'Ines Vogt', email: 'ines.vogt@skerry.example', role: 'lead' },
+  { name: 'Malik Osei', email: 'malik.osei@skerry.example', role: 'modeler' },
+  { name: 'Yuki Tanabe', email: 'yuki.tanabe@skerry.example', role: 'chemist' },
+  { name: 'Jo Marsh', email: 'jo.marsh@tideline.example', role: 'reader' },
+] as const satisfies readonly { name: string; email: string; role: Role }[];
+
+export interface DemoSignIn {
+  readonly email: string;
+  readonly role: Role;
+}
+
+async function findTeam(executor: Executor): Promise<string | null> {
+  const [found] = await executor
+    .select({ id: teams.id })
+    .from(teams)
+    .innerJoin(memberships, eq(memberships.teamId, teams.id))
+    .innerJoin(users, eq(users.id, memberships.userId))
+    .where(and(eq(teams.name, DEMO_TEAM), eq(users.email, members[0].email)))
+    .limit(1);
+  return found?.id ?? null;
+}
+
+async function openTeam(executor: Executor): Promise<string> {
+  const [team] = await executor
+    .insert(teams)
+    .values({ name: DEMO_TEAM })
+    .returning({ id: teams.id });
+  return team!.id;
+}
+
+/** Makes sure that the demo is there and that its members' password is the present one; answers its sign-ins. */
+export async function seedDemo(): Promise<DemoSignIn[]> {
+  const password = environment.WINDLASS_DEMO_PASSWORD;
+  if (!password) throw new Error('Seeding the demo needs WINDLASS_DEMO_PASSWORD.');
+  const passwordHash = await hashPassword(password);
+  await db.transaction(async (tx) => {
+    await tx.execute(sql`select pg_advisory_xact_lock(${DEMO_SEED_LOCK})`);
+    const teamId = (await findTeam(tx)) ?? (await openTeam(tx));
+    for (const { name, email, role } of members) {
+      const [user] = await tx
+        .insert(users)
+        .values({ name, email, passwordHash, confirmedAt: sql`now()` })
+        .onConflictDoUpdate({ target: users.email, set: { passwordHash, confirmedAt: sql`now()` } })
+        .returning({ id: users.id });
+      await tx.insert(memberships).values({ teamId, userId: user!.id, role }).onConflictDoNothing();
+    }
+  });
+  return members.map(({ email, role }) => ({ email, role }));
+}

@@ -1,0 +1,85 @@
+/** What the letters say, as plain text and as HTML made from the same lines. */
+import { environment } from './environment';
+import { LETTER_HOURS } from './letter-tokens';
+import type { Letter } from './mail';
+
+interface Content {
+  readonly subject: string;
+  readonly greeting: string;
+  readonly lines: readonly string[];
+  readonly link?: { readonly label: string; readonly path: string };
+  readonly closing: string;
+}
+
+const escapeHtml = (text: string) =>
+  text.replace(/[&<>"']/g, (character) => `&#${character.charCodeAt(0)};`);
+
+const paragraph = (text: string) => `<p style="margin:0 0 16px">${escapeHtml(text)}</p>`;
+
+function button(label: string, url: string): string {
+  const style =
+    'display:inline-block;padding:12px 20px;border-radius:6px;background:#0b6e6e;color:#ffffff;text-decoration:none;font-weight:600';
+  return `<p style="margin:24px 0"><a href="${escapeHtml(url)}" style="${style}">${escapeHtml(label)}</a></p>`;
+}
+
+function compose({ subject, greeting, lines, link, closing }: Content): Letter {
+  const url = link ? new URL(link.path, environment.WINDLASS_ORIGIN).href : null;
+  const text = [greeting, ...lines, ...(url ? [url] : []), closing, 'Windlass'].join('\n\n');
+  const html = `<!doctype html>
+<html lang="en"><body style="margin:0;padding:32px 16px;background:#faf8f3;color:#16242b;font:16px/1.5 sans-serif">
+<div style="max-width:520px;margin:0 auto;padding:32px;background:#ffffff;border:1px solid #d9d5ca;border-radius:8px">
+<p style="margin:0 0 24px;color:#0b6e6e;font-weight:600">Windlass</p>
+${[greeting, ...lines].map(paragraph).join('\n')}
+${link && url ? button(link.label, url) : ''}
+<p style="margin:0;color:#51616a;font-size:14px">${escapeHtml(closing)}</p>
+</div></body></html>`;
+  return { subject, text, html };
+}
+
+const hours = (count: number) => (count === 1 ? 'one hour' : `${count} hours`);
+
+export function confirmAddressLetter(name: string, token: string): Letter {
+  return compose({
+    subject: 'Confirm your address',
+    greeting: `Hello ${name},`,
+    lines: [
+      'This address was given for a new account on Windlass. Confirm it with the password that you chose, and you are in.',
+    ],
+    link: { label: 'Confirm my address', path: `/confirm?token=${token}` },
+    closing: `The link works once, within ${hours(LETTER_HOURS['confirm-address'])}. If you did not sign up, leave this letter alone: without it the account stays closed.`,
+  });
+}
+
+export function alreadyMemberLetter(name: string): Letter {
+  return compose({
+    subject: 'You have an account already',
+    greeting: `Hello ${name},`,
+    lines: [
+      'Somebody, probably you, tried to sign up on Windlass with this address. It has an account already, so nothing was changed. If you forgot the password, choose a new one.',
+    ],
+    link: { label: 'Choose a new password', path: '/forgot' },
+    closing: 'If this was not you, there is nothing to do.',
+  });
+}
+
+export function resetPasswordLetter(name: string, token: string): Letter {
+  return compose({
+    subject: 'Choose a new password',
+    greeting: `Hello ${name},`,
+    lines: ['A new password was asked for your account on Windlass. Choose it here.'],
+    link: { label: 'Choose a new password', path: `/reset?token=${token}` },
+    closing: `The link works once, within ${hours(LETTER_HOURS['reset-password'])}. If you did not ask, leave this letter alone: your password stays as it is.`,
+  });
+}
+
+export function passwordChangedLetter(name: string): Letter {
+  return compose({
+    subject: 'Your password was changed',
+    greeting: `Hello ${name},`,
+    lines: [
+      'The password of your account on Windlass was changed just now, and its other sign-ins were ended.',
+    ],
+    link: { label: 'This was not me', path: '/forgot' },
+    closing: 'If this was you, there is nothing to do.',
+  });
+}

@@ -1,0 +1,188 @@
+/** Accounts: how a person gets one, proves who they are, and changes their password. */
+import { eq, sql } from 'drizzle-orm';
+import type { SignUp } from '../domain/accounts';
+import { findPasswordFault } from '../domain/passwords';
+import { db, type Executor } from './db';
+import { events, memberships, teams, users } from './db/schema';
+import * as letterTokens from './letter-tokens';
+import {
+  alreadyMemberLetter,
+  confirmAddressLetter,
+  passwordChangedLetter,
+  resetPasswordLetter,
+} from './letters';
+import { log } from './log';
+import { post, type Letter } from './mail';
+import { hashPassword, verifyPassword } from './passwords';
+import * as sessions from './sessions';
+import type { Client } from './sessions';
+
+export type SignInFault = 'wrong' | 'unconfirmed' | 'letter';
+
+async function findByEmail(email: string) {
+  const [user] = await db.select().from(users).where(eq(users.email, email));
+  return user ?? null;
+}
+
+/** Adds a line to the record of what happened to an account, which belongs to no team. */
+async function recordAccountEvent(
+  executor: Executor,
+  userId: string,
+  action: string,
+): Promise<void> {
+  await executor.insert(events).values({ actorId: userId, action, subject: `user:${userId}` });
+}
+
+/**
+ * Opens an account with a team of its own, or writes to the owner of the one there is. Nobody but the reader of the
+ * letter learns which. An account nobody confirmed belongs to nobody yet, so the latest sign-up's name and password
+ * count; they are of use only to who also holds the letter.
+ */
+export async function signUp({ name, email, password }: SignUp): Promise<void> {
+  const passwordHash = await hashPassword(password);
+  const letter = await db.transaction(async (tx): Promise<Letter> => {
+    const [opened] = await tx
+      .insert(users)
+      .values({ name, email, passwordHash })
+      .onConflictDoUpdate({
+        target: users.email,
+        set: { name, passwordHash },
+        setWhere: sql`${users.confirmedAt} is null`,
+      })
+      .returning({ id: users.id });
+    if (!opened) return alreadyMemberLetter((await findByEmail(email))!.name);
+    await openOwnTeam(tx, opened.id, name);
+    await recordAccountEvent(tx, opened.id, 'signed up');
+    return confirmAddressLetter(name, await letterTokens.issue(tx, opened.id, 'confirm-address'));
+  });
+  post(email, letter);
+}
+
+/** Gives a person without a team one of their own, which they lead. */
+async function openOwnTeam(executor: Executor, userId: string, name: string): Promise<void> {
+  const present = await executor
+    .select({ teamId: memberships.teamId })
+    .from(memberships)
+    .where(eq(memberships.userId, userId))
+    .limit(1);
+  if (present.length > 0) return;
+  const [team] = await executor
+    .insert(teams)
+    .values({ name: `${name}’s team` })
+    .returning({ id: teams.id });
+  await executor.insert(memberships).values({ teamId: team!.id, userId, role: 'lead' });
+}
+
+/**
+ * Checks address and password and begins a session; with the secret of a letter it first confirms the address.
+ * @returns the session, or why there is none: 'unconfirmed' is only told to who knows the password
+ */
+export async function signIn(
+  given: { email: string; password: string; confirmToken?: string },
+  client: Client,
+): Promise<{ userId: string; sessionId: string } | { fault: SignInFault }> {
+  const user = await findByEmail(given.email);
+  const isRight = await verifyPassword(user?.passwordHash ?? null, given.password);
+  if (!user || !isRight) return { fault: 'wrong' };
+  if (given.confirmToken !== undefined) {
+    if (!(await confirmAddress(user.id, given.confirmToken))) return { fault: 'letter' };
+  } else if (!user.confirmedAt) {
+    return { fault: 'unconfirmed' };
+  }
+  return { userId: user.id, sessionId: await sessions.begin(user.id, client) };
+}
+
+async function confirmAddress(userId: string, token: string): Promise<boolean> {
+  const owner = await letterTokens.findOwner(token, 'confirm-address');
+  if (owner?.id !== userId) return false;
+  return db.transaction(async (tx) => {
+    if ((await letterTokens.redeem(tx, token, 'confirm-address')) === null) return false;
+    await tx
+      .update(users)
+      .set({ confirmedAt: sql`now()` })
+      .where(eq(users.id, userId));
+    await recordAccountEvent(tx, userId, 'confirmed address');
+    return true;
+  });
+}
+
+/** Runs after the answer went out, so that its time tells nothing about the address. */
+function later(task: () => Promise<void>): void {
+  setImmediate(() => {
+    task().catch((error: unknown) => log.error({ error }, 'A letter could not be written'));
+  });
+}
+
+/** Sends the confirmation letter once more, if there is an account that waits for it. */
+export function resendConfirmation(email: string): void {
+  later(async () => {
+    const user = await findByEmail(email);
+    if (!user || user.confirmedAt) return;
+    const token = await letterTokens.issue(db, user.id, 'confirm-address');
+    post(email, confirmAddressLetter(user.name, token));
+  });
+}
+
+/** Sends a letter with which the owner of the address can choose a new password, if there is an account. */
+export function forgotPassword(email: string): void {
+  later(async () => {
+    const user = await findByEmail(email);
+    if (!user) return;
+    const token = await letterTokens.issue(db, user.id, 'reset-password');
+    post(email, resetPasswordLetter(user.name, token));
+  });
+}
+
+/** Sets a new password by a letter's secret, and ends every sign-in; false when the secret does not work (any more). */
+export async function resetPassword(token: string, password: string): Promise<boolean> {
+  if (!(await letterTokens.findOwner(token, 'reset-password'))) return false;
+  const passwordHash = await hashPassword(password);
+  const user = await db.transaction(async (tx) => {
+    const userId = await letterTokens.redeem(tx, token, 'reset-password');
+    if (userId === null) return null;
+    // Who reads the letter owns the address, so it counts as confirmed.
+    const [changed] = await tx
+      .update(users)
+      .set({ passwordHash, confirmedAt: sql`coalesce(${users.confirmedAt}, now())` })
+      .where(eq(users.id, userId))
+      .returning({ email: users.email, name: users.name });
+    await sessions.revokeAll(tx, userId);
+    await letterTokens.revoke(tx, userId, 'confirm-address');
+    await recordAccountEvent(tx, userId, 'reset password');
+    return changed!;
+  });
+  if (user) post(user.email, passwordChangedLetter(user.name));
+  return user !== null;
+}
+
+export type PasswordChangeFault = {
+  readonly field: 'current' | 'password';
+  readonly message: string;
+};
+
+/** Changes a password for who knows the present one, and ends all sign-ins but the present one. */
+export async function changePassword(
+  who: { userId: string; sessionId: string },
+  given: { current: string; password: string },
+): Promise<PasswordChangeFault | null> {
+  const [user] = await db.select().from(users).where(eq(users.id, who.userId));
+  if (!user || !(await verifyPassword(user.passwordHash, given.current))) {
+    return { field: 'current', message: 'This is not your present password.' };
+  }
+  const fault = findPasswordFault(given.password, [user.name, user.email]);
+  if (fault) return { field: 'password', message: fault };
+  const passwordHash = await hashPassword(given.password);
+  await db.transaction(async (tx) => {
+    await tx.update(users).set({ passwordHash }).where(eq(users.id, user.id));
+    await sessions.revokeAll(tx, user.id, who.sessionId);
+    await letterTokens.revoke(tx, user.id, 'reset-password');
+    await recordAccountEvent(tx, user.id, 'changed password');
+  });
+  post(user.email, passwordChangedLetter(user.name));
+  return null;
+}
+
+/** Changes the name that others see. */
+export async function rename(userId: string, name: string): Promise<void> {
+  await db.update(users).set({ name }).where(eq(users.id, userId));
+}
