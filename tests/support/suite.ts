@@ -12,9 +12,14 @@ export interface SuiteStructure {
   readonly coordinates: Float64Array;
   readonly types: readonly number[];
   readonly charges: readonly number[];
-  readonly total: number;
-  readonly terms: TermEnergies;
+  /** BatchMin, double precision, with charges of five decimals. */
+  readonly batchMin: SuiteEnergies;
+  /** OPTIMOL, with charges of full precision; electrostatic and total energies have five decimals. */
+  readonly optimol: SuiteEnergies;
 }
+
+/** kcal/mol */
+export type SuiteEnergies = TermEnergies & { readonly total: number };
 
 interface SuiteRecord {
   name: string;
@@ -22,7 +27,7 @@ interface SuiteRecord {
   coords_full: [number, number, number][];
   types: number[];
   partial_charges_rdkit: number[];
-  energies: { batchmin_double: Record<string, number> };
+  energies: { batchmin_double: Record<string, number>; optimol_log: Record<string, number> };
 }
 
 const path = (variant: Variant): string => `../shared/reference/mmff94/${variant}_suite.json.gz`;
@@ -37,26 +42,28 @@ export function readSuite(variant: Variant): SuiteStructure[] {
   const { molecules } = JSON.parse(gunzipSync(readFileSync(path(variant))).toString()) as {
     molecules: SuiteRecord[];
   };
-  return molecules.map((record) => {
-    const energies = record.energies.batchmin_double;
-    return {
-      name: record.name,
-      molecule: readMolblock(record.molblock),
-      coordinates: Float64Array.from(record.coords_full.flat()),
-      types: record.types,
-      charges: record.partial_charges_rdkit,
-      total: energies.total,
-      terms: {
-        bond: energies.bond,
-        angle: energies.angle,
-        stretchBend: energies.stretch_bend,
-        outOfPlane: energies.oop,
-        torsion: energies.torsion,
-        vanDerWaals: energies.vdw,
-        electrostatic: energies.electrostatic,
-      },
-    };
-  });
+  return molecules.map((record) => ({
+    name: record.name,
+    molecule: readMolblock(record.molblock),
+    coordinates: Float64Array.from(record.coords_full.flat()),
+    types: record.types,
+    charges: record.partial_charges_rdkit,
+    batchMin: readEnergies(record.energies.batchmin_double),
+    optimol: readEnergies(record.energies.optimol_log),
+  }));
+}
+
+function readEnergies(energies: Record<string, number>): SuiteEnergies {
+  return {
+    bond: energies.bond,
+    angle: energies.angle,
+    stretchBend: energies.stretch_bend,
+    outOfPlane: energies.oop,
+    torsion: energies.torsion,
+    vanDerWaals: energies.vdw,
+    electrostatic: energies.electrostatic,
+    total: energies.total,
+  };
 }
 
 /** Atoms, bonds and charges of a V2000 block, as they stand. */

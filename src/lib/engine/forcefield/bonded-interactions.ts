@@ -120,8 +120,7 @@ function parameterizeOutOfPlanes({
     if (neighbors.length !== 3) return;
     const [a, b, c] = neighbors.map(({ atom }) => atom);
     const force = outOfPlaneForce(parameters, types[center], [types[a], types[b], types[c]]);
-    if (force === undefined) throw unsupported(structure, center);
-    if (force === 0) return;
+    if (force === undefined || force === 0) return;
     atoms.push(a, center, b, c, a, center, c, b, b, center, c, a);
     forces.push(force, force, force);
   });

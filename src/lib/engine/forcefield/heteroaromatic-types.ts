@@ -1,5 +1,6 @@
 /** Types of atoms in aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { cationicGroupSize, cationicNitrogens } from './delocalized-cations';
 import type { Structure } from './structure';
 import { bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
 
@@ -40,9 +41,7 @@ function fiveRingType(structure: Structure, atom: number): number | undefined {
 
 function fiveRingCarbonType(structure: Structure, atom: number): number {
   const rings = fiveRingsOf(structure, atom);
-  if (rings.some((ring) => isAmidiniumCarbon(structure, ring, atom))) {
-    return AtomType.imidazoliumCarbon;
-  }
+  if (cationicNitrogens(structure, atom).length > 1) return AtomType.imidazoliumCarbon;
   if (rings.some((ring) => isAnionic(structure, ring) || isDelocalizedCation(structure, ring))) {
     return AtomType.fiveRingCarbon;
   }
@@ -58,9 +57,9 @@ function fiveRingNitrogenType(structure: Structure, atom: number): number {
   if (rings.some((ring) => isAnionic(structure, ring))) return AtomType.anionicRingNitrogen;
   if (coordination(structure, atom) === 3) {
     if (isOxide(structure, atom)) return AtomType.fiveRingOxideNitrogen;
-    const isPositive = structure.charges[atom] === 1;
-    const sharesCharge = rings.some((ring) => amidiniumNitrogens(structure, ring).includes(atom));
-    return isPositive || sharesCharge ? AtomType.imidazoliumNitrogen : AtomType.pyrroleNitrogen;
+    const isCationic =
+      structure.charges[atom] === 1 || cationicGroupSize(structure, atom) > 1;
+    return isCationic ? AtomType.imidazoliumNitrogen : AtomType.pyrroleNitrogen;
   }
   if (rings.some((ring) => isDelocalizedCation(structure, ring))) return AtomType.fiveRingNitrogen;
   return byDistance(structure, atom, {
@@ -110,29 +109,9 @@ function isAnionic(structure: Structure, ring: readonly number[]): boolean {
   );
 }
 
+/** True for an imidazolium-like ring: N–C=N⁺ with both nitrogens in the ring and three-coordinate. */
 function isDelocalizedCation(structure: Structure, ring: readonly number[]): boolean {
-  return amidiniumNitrogens(structure, ring).length > 0;
-}
-
-/** The two nitrogens of N–C=N⁺ in a ring, both three-coordinate; empty when the ring has no such unit. */
-export function amidiniumNitrogens(structure: Structure, ring: readonly number[]): number[] {
-  const carbon = ring.find((atom) => isAmidiniumCarbon(structure, ring, atom));
-  return carbon === undefined ? [] : ringNeighbors(ring, carbon);
-}
-
-function isAmidiniumCarbon(structure: Structure, ring: readonly number[], atom: number): boolean {
-  if (structure.elements[atom] !== CARBON) return false;
-  const neighbors = ringNeighbors(ring, atom);
-  const areCoordinated = neighbors.every(
-    (other) =>
-      structure.elements[other] === NITROGEN &&
-      coordination(structure, other) === 3 &&
-      !isOxide(structure, other),
+  return ring.some(
+    (atom) => cationicNitrogens(structure, atom).filter((other) => ring.includes(other)).length > 1,
   );
-  return areCoordinated && neighbors.some((other) => structure.charges[other] === 1);
-}
-
-function ringNeighbors(ring: readonly number[], atom: number): number[] {
-  const at = ring.indexOf(atom);
-  return [ring[(at + 1) % ring.length], ring[(at + ring.length - 1) % ring.length]];
 }

@@ -92,5 +92,5 @@ export function torsionClasses(
     ({ atom }) => atom !== j && atom !== k && areBonded(structure, atom, l),
   );
   const isSaturated = atoms.some((atom) => types[atom] === AtomType.alkylCarbon);
-  return inFiveRing && isSaturated ? [5, plain] : [plain];
+  return plain === 0 && inFiveRing && isSaturated ? [5, 0] : [plain];
 }

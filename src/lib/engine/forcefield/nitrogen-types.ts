@@ -1,6 +1,6 @@
 /** Types of nitrogen outside aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
-import { cationicNitrogens } from './delocalized-cations';
+import { cationicGroupSize } from './delocalized-cations';
 import type { Structure } from './structure';
 import {
   bondedBy,
@@ -45,12 +45,9 @@ function trigonalType(structure: Structure, atom: number): number | undefined {
 
 /** The type within an amidinium or guanidinium group; undefined outside one. */
 function sharedChargeType(structure: Structure, atom: number): number | undefined {
-  const sizes = structure.neighbors[atom]
-    .map((neighbor) => cationicNitrogens(structure, neighbor.atom))
-    .filter((nitrogens) => nitrogens.length > 1 && nitrogens.includes(atom))
-    .map((nitrogens) => nitrogens.length);
-  if (sizes.length === 0) return undefined;
-  return Math.max(...sizes) === 3 ? AtomType.guanidiniumNitrogen : AtomType.amidiniumNitrogen;
+  const size = cationicGroupSize(structure, atom);
+  if (size < 2) return undefined;
+  return size === 3 ? AtomType.guanidiniumNitrogen : AtomType.amidiniumNitrogen;
 }
 
 /** Neutral nitrogen with three single bonds: what it is bonded to decides. */
@@ -61,8 +58,9 @@ function trivalentType(structure: Structure, atom: number): number {
   if (neighbors.some((other) => isStrongAcceptor(structure, other))) {
     return AtomType.sulfonamideNitrogen;
   }
-  if (neighbors.some((other) => makesAmide(structure, other))) return AtomType.amideNitrogen;
+  if (neighbors.some((other) => isCarbonyl(structure, other))) return AtomType.amideNitrogen;
   if (neighbors.some((other) => makesEnamine(structure, other))) return AtomType.enamineNitrogen;
+  if (neighbors.some((other) => isHydrazone(structure, other))) return AtomType.amideNitrogen;
   return AtomType.amineNitrogen;
 }
 
@@ -79,11 +77,26 @@ function isStrongAcceptor(structure: Structure, atom: number): boolean {
   }
 }
 
-/** C=O, C=S, N=C and N=N. */
-function makesAmide(structure: Structure, atom: number): boolean {
-  if (inAromaticRing(structure, atom)) return false;
-  if (structure.elements[atom] === CARBON) return hasDoubleTo(structure, atom, OXYGEN, SULFUR);
-  return structure.elements[atom] === NITROGEN && hasDoubleTo(structure, atom, CARBON, NITROGEN);
+/** Nonaromatic C=O and C=S. */
+function isCarbonyl(structure: Structure, atom: number): boolean {
+  return (
+    structure.elements[atom] === CARBON &&
+    !inAromaticRing(structure, atom) &&
+    hasDoubleTo(structure, atom, OXYGEN, SULFUR)
+  );
+}
+
+/** Nonaromatic N=N, and N=C whose carbon bears neither nitrogen, oxygen nor sulfur by a single bond. */
+function isHydrazone(structure: Structure, atom: number): boolean {
+  if (structure.elements[atom] !== NITROGEN || inAromaticRing(structure, atom)) return false;
+  return bondedBy(structure, atom, 2).some(
+    (other) =>
+      structure.elements[other] === NITROGEN ||
+      (structure.elements[other] === CARBON &&
+        !bondedBy(structure, other, 1).some((next) =>
+          [NITROGEN, OXYGEN, SULFUR].includes(structure.elements[next]),
+        )),
+  );
 }
 
 /** C=C, C=N, C=P, C≡C and aromatic carbon. */

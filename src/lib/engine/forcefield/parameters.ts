@@ -106,12 +106,14 @@ function keyed(name: string, keys: number, values = keys): Map<number, readonly 
 }
 
 function readOutOfPlanes(name: string): Map<number, readonly number[]> {
-  return new Map(
+  const outOfPlanes = new Map<number, readonly number[]>(
     readNumericTable(name).map(([i, j, k, l, force]) => [
       tableKey(j, ...[i, k, l].sort((a, b) => a - b)),
       [force],
     ]),
   );
+  // openchemlib's MMFF94s table has this one as -0.01; the MMFF94 table and RDKit's copy of both sets have -0.011.
+  return outOfPlanes.set(tableKey(64, 37, 63, 64), [-0.011]);
 }
 
 function readProperties(): Map<number, AtomProperties> {

@@ -1,7 +1,6 @@
 /** Primary charges: formal charges spread over the atoms that share them (MMFF94 part II, table II). */
 import { AtomType } from './atom-types';
 import { cationicNitrogens } from './delocalized-cations';
-import { amidiniumNitrogens } from './heteroaromatic-types';
 import type { Structure } from './structure';
 import { unsupported } from './typing';
 
@@ -37,7 +36,12 @@ export function primaryCharges(structure: Structure, types: Readonly<Int32Array>
     spread(charges, cationicNitrogens(structure, atom));
     neutralizePair(structure, types, charges, atom);
   }
-  for (const ring of structure.aromaticRings) spreadInRing(structure, types, charges, ring);
+  for (const ring of structure.aromaticRings) {
+    spread(
+      charges,
+      ring.filter((atom) => types[atom] === AtomType.anionicRingNitrogen),
+    );
+  }
   for (let atom = 0; atom < types.length; atom++) {
     const mayBeCharged = types[atom] >= FIRST_ION_TYPE || CHARGED_TYPES.has(types[atom]);
     if (charges[atom] !== 0 && !mayBeCharged) throw unsupported(structure, atom);
@@ -82,19 +86,4 @@ function neutralizePair(
     return;
   }
   spread(charges, [atom, structure.neighbors[atom][0].atom]);
-}
-
-/** The nitrogens of an azole anion share its charge, and the two of an imidazolium cation theirs. */
-function spreadInRing(
-  structure: Structure,
-  types: Readonly<Int32Array>,
-  charges: Float64Array,
-  ring: readonly number[],
-): void {
-  if (ring.length !== 5) return;
-  spread(
-    charges,
-    ring.filter((atom) => types[atom] === AtomType.anionicRingNitrogen),
-  );
-  spread(charges, amidiniumNitrogens(structure, ring));
 }

@@ -10,7 +10,7 @@ import { createPreconditioner } from './preconditioner';
 /** Pairs of steps and gradient changes remembered. */
 const MEMORY = 12;
 /** Steps after which the curvature is computed anew. */
-const REFRESH_INTERVAL = 30;
+const REFRESH_INTERVAL = 8;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
 const LONGEST_STEP = 0.5;
 

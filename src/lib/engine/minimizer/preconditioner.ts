@@ -1,5 +1,8 @@
 /** An approximate inverse Hessian from a curvature: regularized and factorized by Cholesky's method. */
 import type { CurvatureTerm } from '../energy-term';
+import { planElimination } from './elimination';
+import { createFactor, factorize, solve } from './sparse-cholesky';
+import type { BlockFactor } from './sparse-cholesky';
 
 export interface Preconditioner {
   /** Computes and factorizes the curvature at `x`. */
@@ -9,44 +12,48 @@ export interface Preconditioner {
 }
 
 /** Added to the diagonal, kcal/mol/Å²: about the stiffness of the softest modes a molecule has. */
-const REGULARIZATION = 5;
+const REGULARIZATION = 2;
 
-/** Creates a preconditioner for `size` coordinates. */
+/** Creates a preconditioner for `size` coordinates; `refresh` it before use. */
 export function createPreconditioner(curvature: CurvatureTerm, size: number): Preconditioner {
-  const factor = new Float64Array(size * size);
+  const atoms = size / 3;
+  const matrix = new Float64Array(size * size);
+  const coupled = new Uint8Array(atoms * atoms);
+  let factor: BlockFactor | null = null;
   return {
     refresh: (x) => {
-      factor.fill(0);
-      curvature(x, factor);
-      factorize(factor, size);
+      matrix.fill(0);
+      curvature(x, matrix);
+      // Couplings may appear as atoms move, so the pattern grows; it never shrinks.
+      if (markCouplings(matrix, coupled, atoms) || factor === null) {
+        factor = createFactor(planElimination(coupled, atoms));
+      }
+      factorize(factor, matrix, REGULARIZATION);
     },
     solve: (vector) => {
-      for (let i = 0; i < size; i++) {
-        const row = i * size;
-        let sum = vector[i];
-        for (let k = 0; k < i; k++) sum -= factor[row + k] * vector[k];
-        vector[i] = sum * factor[row + i];
-      }
-      for (let i = size - 1; i >= 0; i--) {
-        const row = i * size;
-        const value = vector[i] * factor[row + i];
-        vector[i] = value;
-        for (let k = 0; k < i; k++) vector[k] -= factor[row + k] * value;
-      }
+      if (factor) solve(factor, vector);
     },
   };
 }
 
-/** Replaces the lower triangle by the Cholesky factor; the diagonal holds the inverses of the pivots. */
-function factorize(matrix: Float64Array, size: number): void {
-  for (let i = 0; i < size; i++) {
-    const row = i * size;
-    for (let j = 0; j <= i; j++) {
-      const other = j * size;
-      let sum = matrix[row + j];
-      for (let k = 0; k < j; k++) sum -= matrix[row + k] * matrix[other + k];
-      matrix[row + j] =
-        j < i ? sum * matrix[other + j] : 1 / Math.sqrt(Math.max(sum, 0) + REGULARIZATION);
+/** Marks the pairs of atoms with a nonzero block; true when there are new ones. */
+function markCouplings(matrix: Float64Array, coupled: Uint8Array, atoms: number): boolean {
+  const size = 3 * atoms;
+  let found = false;
+  for (let a = 1; a < atoms; a++) {
+    for (let b = 0; b < a; b++) {
+      if (coupled[a * atoms + b] !== 0 || !hasBlock(matrix, 3 * a * size + 3 * b, size)) continue;
+      coupled[a * atoms + b] = 1;
+      coupled[b * atoms + a] = 1;
+      found = true;
     }
   }
+  return found;
+}
+
+function hasBlock(matrix: Float64Array, start: number, size: number): boolean {
+  for (let row = start; row < start + 3 * size; row += size) {
+    if (matrix[row] !== 0 || matrix[row + 1] !== 0 || matrix[row + 2] !== 0) return true;
+  }
+  return false;
 }

@@ -50,8 +50,10 @@ export interface StrainTask extends ForceFieldSettings {
 
 export type Task =
   EnergyTask | MinimizeTask | ConformersTask | ScanTask | ConjugationTask | StrainTask;
+export type TaskKind = Task['kind'];
+export type TaskOf<Kind extends TaskKind> = Extract<Task, { readonly kind: Kind }>;
 
-export interface Request {
+export interface Request<Kind extends TaskKind = TaskKind> {
   readonly molecule: MoleculeInput;
-  readonly task: Task;
+  readonly task: TaskOf<Kind>;
 }

@@ -1,7 +1,14 @@
 /** What the engine answers. Energies kcal/mol, angles degrees, atoms from 0, geometries as molfiles. */
+import type { ConjugationForm, OpenConjugation, RingConjugation } from '../conjugation/conjugation';
+import type { Conformer, SearchEnd } from '../conformers/conformers';
 import type { InputWarning } from '../errors';
 import type { TermEnergies, Variant } from '../forcefield/forcefield';
-import type { Task } from './request';
+import type { TorsionStrain } from '../strain/strain';
+import type { ScanPoint, ScanResult, StationaryPoint } from '../torsion/scan-result';
+import type { Task, TaskKind } from './request';
+
+/** A geometry goes out as a molfile in the place of its coordinates. */
+export type AsMolfile<Shape> = Omit<Shape, 'coordinates'> & { readonly molfile: string };
 
 /** What is needed to get the same numbers again, and how long it took. */
 export interface Provenance {
@@ -46,3 +53,62 @@ export interface MinimizeFields {
   readonly gradientRms: number;
   readonly evaluations: number;
 }
+
+export interface ConformersFields {
+  /** Lowest first. */
+  readonly conformers: readonly AsMolfile<Conformer>[];
+  /** True when the set within the window stopped changing and is here whole. */
+  readonly complete: boolean;
+  readonly ended: SearchEnd;
+}
+
+export interface ScanFields extends Omit<ScanResult, 'points' | 'stationary'> {
+  /** Ascending in angle over (-180, 180]. */
+  readonly points: readonly AsMolfile<ScanPoint>[];
+  readonly stationary: readonly AsMolfile<StationaryPoint>[];
+}
+
+type OpenBond = Omit<OpenConjugation, 'sCis' | 'sTrans'> & {
+  readonly sCis: AsMolfile<ConjugationForm> | null;
+  readonly sTrans: AsMolfile<ConjugationForm> | null;
+};
+/** A bond in a ring has its twist only; what needs a turn is null. */
+type RingBond = RingConjugation & {
+  readonly [Field in Exclude<keyof OpenBond, keyof RingConjugation>]: null;
+};
+
+export interface ConjugationFields {
+  readonly bonds: readonly (OpenBond | RingBond)[];
+  readonly complete: boolean;
+}
+
+export interface StrainFields {
+  /** Energy of the geometry relaxed in place above the lowest conformer found. */
+  readonly strain: number;
+  readonly strainTerms: TermEnergies;
+  /** Energies of the geometry as given, relaxed in place, and of the lowest conformer found. */
+  readonly given: number;
+  readonly relaxed: number;
+  readonly lowest: number;
+  /** The longest way a heavy atom went while relaxing in place, Å, and which one. */
+  readonly largestDisplacement: number;
+  readonly farthestAtom: number;
+  /** Most strained first. */
+  readonly torsions: readonly TorsionStrain[];
+  readonly complete: boolean;
+  readonly relaxedMolfile: string;
+  readonly lowestMolfile: string;
+}
+
+export interface FieldsByKind {
+  readonly energy: EnergyFields;
+  readonly minimize: MinimizeFields;
+  readonly conformers: ConformersFields;
+  readonly scan: ScanFields;
+  readonly conjugation: ConjugationFields;
+  readonly strain: StrainFields;
+}
+
+export type Fields = FieldsByKind[TaskKind];
+
+export type Result<Kind extends TaskKind = TaskKind> = FieldsByKind[Kind] & CommonResult;

@@ -1,0 +1,32 @@
+/** How much a search does at each level of effort. */
+import type { SearchEffort } from './conformers';
+import type { ShapeMoves } from './shape-moves';
+
+export interface SearchPlan {
+  /** Embeddings from which ring shapes and nitrogen pyramids are collected. */
+  readonly embeddings: number;
+  /** Most combinations of torsions tried in the systematic part. */
+  readonly combinations: number;
+  /** Kicks in a row without anything new after which the set counts as stable. */
+  readonly patience: number;
+  /** Most geometries tried in all. */
+  readonly starts: number;
+}
+
+const SCALES: Readonly<Record<SearchEffort, number>> = { quick: 0.3, normal: 1, thorough: 4 };
+
+/** Plans a search by the freedom of the molecule. */
+export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan {
+  const scale = SCALES[effort];
+  const { drives, ringMoves, inversions } = moves;
+  const corners = ringMoves.filter(({ arc }) => arc.length === 1).length;
+  const freedom = drives.length + corners + inversions.length;
+  const scaled = (count: number): number => Math.ceil(scale * count);
+  return {
+    embeddings:
+      corners + inversions.length === 0 ? 2 : scaled(10 + 5 * corners + 4 * inversions.length),
+    combinations: scaled(1500),
+    patience: freedom === 0 ? 0 : scaled(20 + 20 * freedom),
+    starts: scaled(10_000),
+  };
+}

@@ -1,0 +1,138 @@
+/** The conformer search: seeds, systematic turns, then kicks from what is low already, until nothing new comes. */
+import type { Control } from '../control';
+import type { ForceField } from '../forcefield/forcefield';
+import type { Molecule } from '../molecule/molecule';
+import { symmetryClasses } from '../molecule/symmetry-classes';
+import { createRandom } from '../random';
+import type { Random } from '../random';
+import type { ConformerSearchOptions, ConformerSearchResult, SearchEnd } from './conformers';
+import { collectCoreShapes } from './core-shapes';
+import type { CoreShapes } from './core-shapes';
+import type { SearchPlan } from './effort';
+import { planSearch } from './effort';
+import { createEmbedder } from './embed';
+import type { Embedder } from './embed';
+import { finish } from './finish';
+import { embedSoundly } from './initial-geometry';
+import { pinConfiguration } from './pin-configuration';
+import type { Found, Pool } from './pool';
+import { createPool } from './pool';
+import type { ShapeMoves } from './shape-moves';
+import { driveNear, findShapeMoves, kick } from './shape-moves';
+import { combination, countCombinations, spreadCombination } from './systematic';
+import { createTrial } from './trial';
+import type { Trial } from './trial';
+import { visibleGraph } from './visible-graph';
+
+/** All that the stages of one search share. */
+interface Search {
+  readonly molecule: Molecule;
+  readonly moves: ShapeMoves;
+  readonly plan: SearchPlan;
+  readonly embedder: Embedder;
+  readonly pool: Pool;
+  readonly trial: Trial;
+  readonly cores: CoreShapes;
+  readonly random: Random;
+}
+
+/**
+ * Searches the conformers of a molecule within `options.window` of the lowest: every one a minimum with the molecule's
+ * configuration, all different, lowest first. Deterministic for a seed as long as no time budget ends it. Throws
+ * InputError 'no-conformer' where no geometry can be built at all.
+ */
+export async function searchConformers(
+  forceField: ForceField,
+  options: ConformerSearchOptions,
+  control: Control,
+): Promise<ConformerSearchResult> {
+  const random = createRandom(options.seed);
+  const given = forceField.molecule;
+  const first = await embedSoundly(given, createEmbedder(given), random, control);
+  const molecule = pinConfiguration(given, first);
+  const classes = symmetryClasses(molecule);
+  const graph = visibleGraph(molecule, classes);
+  const moves = findShapeMoves(molecule, classes);
+  const pool = createPool(graph, options.limit, options.window);
+  const search: Search = {
+    molecule,
+    moves,
+    plan: planSearch(moves, options.effort),
+    embedder: createEmbedder(molecule),
+    pool,
+    trial: createTrial(forceField, molecule, pool),
+    cores: collectCoreShapes(molecule, moves),
+    random,
+  };
+  await tryGeometry(search, first, control);
+  await collectSeeds(search, control.part(0, 0.15));
+  await turnSystematically(search, control.part(0.15, 0.5));
+  const ended = await kickUntilStable(search, control.part(0.5, 0.9));
+  return finish(forceField, graph, search, options, ended, control.part(0.9, 1));
+}
+
+/** Minimizes a geometry in place and remembers what is new; answers whether the set to be returned has changed. */
+async function tryGeometry(search: Search, x: Float64Array, control: Control): Promise<boolean> {
+  const { reception, energy } = await search.trial.run(x, control);
+  if (reception === 'new' || reception === 'outside') search.cores.add(x, energy);
+  return reception === 'new';
+}
+
+/** Minimizes embeddings, and flaps and inverts what comes of them, so that all ring shapes are there. */
+async function collectSeeds(search: Search, control: Control): Promise<void> {
+  const { plan, embedder, random, molecule } = search;
+  for (let n = 0; n < plan.embeddings && !control.expired(); n++) {
+    control.report(n / plan.embeddings, 'Building first shapes');
+    await tryGeometry(search, await embedSoundly(molecule, embedder, random, control), control);
+  }
+}
+
+/** Sets all torsions to all their choices on each ring shape, or to an even sample of them. */
+async function turnSystematically(search: Search, control: Control): Promise<void> {
+  const { drives } = search.moves;
+  const cores = search.cores.list();
+  const total = countCombinations(drives);
+  const count = Math.min(total, Math.ceil(search.plan.combinations / cores.length));
+  if (drives.length === 0) return;
+  for (let n = 0; n < count; n++) {
+    const angles = count === total ? combination(drives, n) : spreadCombination(drives, n);
+    for (const { coordinates } of cores) {
+      if (control.expired()) return;
+      const x = coordinates.slice();
+      drives.forEach((drive, d) => driveNear(x, drive, angles[d], search.random));
+      await tryGeometry(search, x, control);
+    }
+    control.report(n / count, 'Turning bonds');
+  }
+}
+
+/** Kicks low conformers until the set has not changed for long. */
+async function kickUntilStable(search: Search, control: Control): Promise<SearchEnd> {
+  const { pool, trial, plan, moves, random } = search;
+  let quiet = 0;
+  while (quiet < plan.patience) {
+    if (control.expired()) return 'budget';
+    if (trial.counts.starts >= plan.starts) return 'limit';
+    const parent = chooseParent(pool, random);
+    parent.uses++;
+    const x = parent.coordinates.slice();
+    kick(x, moves, random);
+    quiet = (await tryGeometry(search, x, control)) ? 0 : quiet + 1;
+    control.report(quiet / plan.patience, 'Kicking low conformers');
+  }
+  return 'stable';
+}
+
+/** Mean energy above the lowest, kcal/mol, of the parents chosen by energy. */
+const PARENT_ENERGY = 1.5;
+
+/** In turn the conformer least used and one chosen by energy. */
+function chooseParent({ found }: Pool, random: Random): Found {
+  if (random.uniform() < 0.5) {
+    return found.reduce((best, entry) => (entry.uses < best.uses ? entry : best));
+  }
+  const height = -PARENT_ENERGY * Math.log(1 - random.uniform());
+  let place = 0;
+  while (place + 1 < found.length && found[place + 1].energy - found[0].energy <= height) place++;
+  return found[random.below(place + 1)];
+}

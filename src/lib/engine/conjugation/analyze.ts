@@ -1,0 +1,185 @@
+/** Analyzes every conjugated single bond of a molecule. */
+import { defaultConformerSearchOptions } from '../conformers/conformers';
+import { searchConformers } from '../conformers/search';
+import type { Control } from '../control';
+import type { ForceField } from '../forcefield/forcefield';
+import type { Molecule } from '../molecule/molecule';
+import { torsionOfBond } from '../molecule/rotatable';
+import { basinPopulations, profileAverage } from '../thermo/basins';
+import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { scanTorsion } from '../torsion/scan';
+import { defaultScanOptions } from '../torsion/scan-result';
+import type { ScanResult, StationaryPoint } from '../torsion/scan-result';
+import { turnBetween } from '../units';
+import { findConjugatedBonds } from './conjugated-bonds';
+import type { ConjugatedBond } from './conjugated-bonds';
+import type {
+  BondConjugation,
+  ConjugationForm,
+  ConjugationOptions,
+  ConjugationResult,
+  OpenConjugation,
+} from './conjugation';
+import { overlapAt, piAxis, twistAbout } from './pi-axis';
+
+/** Share of the work that goes into the lowest conformer, for progress. */
+const SEARCH_SHARE = 0.2;
+/** Energies of mirror images differ by rounding only, kcal/mol. */
+const SAME_ENERGY = 1e-4;
+
+/**
+ * Finds the conjugated single bonds, scans those that can turn (relaxed, 15° and finer at the stationary points) and
+ * reads twist, overlap, forms and barrier from the profiles. Bonds in rings get their twist in the lowest conformer.
+ */
+export async function analyzeConjugation(
+  forceField: ForceField,
+  { temperature, seed }: ConjugationOptions,
+  control: Control,
+): Promise<ConjugationResult> {
+  const { molecule } = forceField;
+  const searchOptions = { ...defaultConformerSearchOptions, temperature, seed };
+  const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
+  const found = findConjugatedBonds(molecule);
+  const turning = found.filter(({ inRing }) => !inRing);
+  const scans = new Map<number, ScanResult>();
+  for (const [n, bond] of turning.entries()) {
+    const from = SEARCH_SHARE + ((1 - SEARCH_SHARE) * n) / turning.length;
+    const to = SEARCH_SHARE + ((1 - SEARCH_SHARE) * (n + 1)) / turning.length;
+    const torsion = bond.dieneTorsion ?? torsionOfBond(molecule, bond.j, bond.k);
+    const options = { ...defaultScanOptions, torsion, seed };
+    scans.set(bond.bond, await scanTorsion(forceField, options, control.part(from, to)));
+  }
+  const lowest = lowestShape(search.conformers[0], [...scans.values()]);
+  const bonds = found.map((bond): BondConjugation => {
+    const scan = scans.get(bond.bond);
+    if (scan) return readProfile(molecule, bond, scan, lowest.energy, temperature);
+    return {
+      inRing: true,
+      bond: [bond.j, bond.k],
+      kind: bond.kind,
+      torsion: bond.dieneTorsion,
+      twist: twistOf(molecule, bond, lowest.coordinates),
+    };
+  });
+  const complete = search.complete && [...scans.values()].every((scan) => scan.complete);
+  return { bonds, lowest, complete };
+}
+
+/** Twist from planarity of a bond in a geometry (Å, 3N), degrees 0 to 90; null where an end has no plane. */
+export function twistOf(
+  molecule: Molecule,
+  { j, k }: { readonly j: number; readonly k: number },
+  x: Float64Array,
+): number | null {
+  const neighborsOf = (atom: number): number[] => molecule.neighbors[atom].map((n) => n.atom);
+  const axisJ = piAxis(x, j, neighborsOf(j));
+  const axisK = piAxis(x, k, neighborsOf(k));
+  return axisJ && axisK && twistAbout(x, j, k, axisJ, axisK);
+}
+
+/** The lowest of all shapes seen: a scan may come upon one that the search has missed. */
+function lowestShape(
+  conformer: { readonly coordinates: Float64Array; readonly energy: number },
+  scans: readonly ScanResult[],
+): { coordinates: Float64Array; energy: number } {
+  let { coordinates, energy } = conformer;
+  for (const { stationary } of scans) {
+    for (const point of stationary) {
+      if (point.energy >= energy - SAME_ENERGY) continue;
+      ({ coordinates, energy } = point);
+    }
+  }
+  return { coordinates, energy };
+}
+
+function readProfile(
+  molecule: Molecule,
+  bond: ConjugatedBond,
+  scan: ScanResult,
+  lowestEnergy: number,
+  temperature: number,
+): OpenConjugation {
+  const samples = [...scan.points, ...scan.stationary]
+    .map(({ angle, energy, coordinates }) => ({
+      angle,
+      relative: energy - lowestEnergy,
+      twist: twistOf(molecule, bond, coordinates) ?? 90,
+    }))
+    .sort((a, b) => a.angle - b.angle);
+  const angles = samples.map(({ angle }) => angle);
+  const energyCurve = createPeriodicCurve(
+    angles,
+    samples.map(({ relative }) => relative),
+  );
+  const overlapCurve = createPeriodicCurve(
+    angles,
+    samples.map(({ twist }) => overlapAt(twist)),
+  );
+  const minima = scan.stationary.filter(({ kind }) => kind === 'minimum');
+  const form = (point: StationaryPoint | null): ConjugationForm | null =>
+    point && {
+      angle: point.angle,
+      twist: twistOf(molecule, bond, point.coordinates) ?? 90,
+      energy: point.energy,
+      relative: point.energy - lowestEnergy,
+      label: point.label,
+      coordinates: point.coordinates,
+    };
+  const isDiene = bond.dieneTorsion !== null;
+  const sCis = isDiene ? lowestOf(minima.filter((point) => isSCis(point.angle))) : null;
+  const sTrans = isDiene ? lowestOf(minima.filter((point) => !isSCis(point.angle))) : null;
+  const top = barrierPoint(scan.stationary, sCis, sTrans);
+  const planar = scan.points.find(({ angle }) => Math.abs(angle) < 1e-9);
+  const lowest = lowestOf(minima);
+  return {
+    inRing: false,
+    bond: [bond.j, bond.k],
+    kind: bond.kind,
+    torsion: scan.torsion,
+    twist: lowest && twistOf(molecule, bond, lowest.coordinates),
+    sCis: form(sCis),
+    sTrans: form(sTrans),
+    difference: sCis && sTrans && sCis.energy - sTrans.energy,
+    sCisFraction: isDiene ? basinPopulations(energyCurve, [-90, 90], temperature)[0] : null,
+    planarSCisCost: isDiene && planar ? planar.energy - lowestEnergy : null,
+    barrier: top && top.energy - lowestEnergy,
+    meanOverlap: profileAverage(energyCurve, (angle) => overlapCurve.at(angle), temperature),
+    profile: samples,
+    complete: scan.complete,
+  };
+}
+
+function isSCis(angle: number): boolean {
+  return Math.abs(angle) < 90;
+}
+
+/** The lowest point; of mirror images the one with the larger angle, so that the choice is always the same. */
+function lowestOf(points: readonly StationaryPoint[]): StationaryPoint | null {
+  return points.reduce<StationaryPoint | null>((best, point) => {
+    if (!best || point.energy < best.energy - SAME_ENERGY) return point;
+    return point.energy <= best.energy + SAME_ENERGY && point.angle > best.angle ? point : best;
+  }, null);
+}
+
+/** The highest maximum on the easier way between two minima; without two, the highest of all. */
+function barrierPoint(
+  stationary: readonly StationaryPoint[],
+  from: StationaryPoint | null,
+  to: StationaryPoint | null,
+): StationaryPoint | null {
+  const maxima = stationary.filter(({ kind }) => kind === 'maximum');
+  if (!from || !to) return highestOf(maxima);
+  const upward = (angle: number): number => (turnBetween(from.angle, angle) + 360) % 360;
+  const span = upward(to.angle);
+  const oneWay = highestOf(maxima.filter(({ angle }) => upward(angle) < span));
+  const otherWay = highestOf(maxima.filter(({ angle }) => upward(angle) > span));
+  if (!oneWay || !otherWay) return null;
+  return oneWay.energy <= otherWay.energy ? oneWay : otherWay;
+}
+
+function highestOf(points: readonly StationaryPoint[]): StationaryPoint | null {
+  return points.reduce<StationaryPoint | null>(
+    (best, point) => (!best || point.energy > best.energy ? point : best),
+    null,
+  );
+}

@@ -1,0 +1,11 @@
+/** The small pure parts of the engine that the browser may import: no force field, no openchemlib. */
+export * from './errors';
+export * from './geometry';
+export * from './thermo/basins';
+export * from './thermo/boltzmann';
+export * from './thermo/periodic-curve';
+export * from './thermo/rates';
+export * from './torsion/fourier';
+export * from './torsion/klyne-prelog';
+export * from './torsion/path';
+export * from './units';

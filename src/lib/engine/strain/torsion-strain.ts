@@ -1,0 +1,60 @@
+/** What the torsion angles of a geometry cost, each by the profile of its own surroundings. */
+import type { Control } from '../control';
+import { createForceField } from '../forcefield/create';
+import type { ForceField } from '../forcefield/forcefield';
+import { torsion } from '../geometry';
+import { rotatableBonds } from '../molecule/rotatable';
+import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { scanTorsion } from '../torsion/scan';
+import { defaultScanOptions } from '../torsion/scan-result';
+import type { TorsionAtoms } from '../torsion/scan-symmetry';
+import { cutFragment } from './fragment';
+import type { TorsionStrain } from './strain';
+
+/** The strain of every rotatable bond of a geometry (Å, 3N), most strained first. */
+export async function torsionStrains(
+  forceField: ForceField,
+  x: Float64Array,
+  seed: number,
+  control: Control,
+): Promise<TorsionStrain[]> {
+  const bonds = rotatableBonds(forceField.molecule);
+  const strains: TorsionStrain[] = [];
+  for (const [n, { torsion: atoms }] of bonds.entries()) {
+    const part = control.part(n / bonds.length, (n + 1) / bonds.length);
+    strains.push(await torsionStrain(forceField, x, atoms, seed, part));
+  }
+  return strains.sort((a, b) => b.strain - a.strain);
+}
+
+async function torsionStrain(
+  { molecule, settings }: ForceField,
+  x: Float64Array,
+  atoms: TorsionAtoms,
+  seed: number,
+  control: Control,
+): Promise<TorsionStrain> {
+  const [i, j, k, l] = atoms;
+  const fragment = cutFragment(molecule, x, j, k);
+  const own = [i, j, k, l].map((atom) => fragment.indices[atom]);
+  const scan = await scanTorsion(
+    createForceField(fragment.molecule, settings),
+    { ...defaultScanOptions, torsion: [own[0], own[1], own[2], own[3]], seed },
+    control,
+  );
+  const samples = [...scan.points, ...scan.stationary];
+  const lowest = samples.reduce((best, sample) => (sample.energy < best.energy ? sample : best));
+  const curve = createPeriodicCurve(
+    samples.map((sample) => sample.angle),
+    samples.map((sample) => sample.energy),
+  );
+  const angle = torsion(x, i, j, k, l);
+  return {
+    bond: [j, k],
+    torsion: atoms,
+    angle,
+    strain: curve.at(angle) - lowest.energy,
+    preferredAngle: lowest.angle,
+    complete: scan.complete,
+  };
+}

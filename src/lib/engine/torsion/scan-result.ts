@@ -1,0 +1,77 @@
+/** What a torsion scan is asked and what it answers. */
+import type { StationaryKind } from './labels';
+import type { TorsionAtoms } from './scan-symmetry';
+
+export interface ScanOptions {
+  readonly torsion: TorsionAtoms;
+  /** Degrees between two points; divides 360. */
+  readonly step: number;
+  /** Whether everything else relaxes at each angle; otherwise one geometry is turned rigidly. */
+  readonly relaxed: boolean;
+  readonly seed: number;
+}
+
+export const defaultScanOptions: Omit<ScanOptions, 'torsion'> = {
+  step: 15,
+  relaxed: true,
+  seed: 1,
+};
+
+/** A point of the profile with its geometry. */
+export interface ProfileSample {
+  readonly angle: number;
+  readonly energy: number;
+  readonly coordinates: Float64Array;
+  readonly converged: boolean;
+}
+
+/** One point of the profile. */
+export interface ScanPoint {
+  /** Target angle, degrees. */
+  readonly angle: number;
+  /** kcal/mol, without the restraint's own energy. */
+  readonly energy: number;
+  /** kcal/mol above the lowest point. */
+  readonly relative: number;
+  /** The torsion of the geometry returned, degrees; within 0.1 of the target. */
+  readonly reached: number;
+  /** 3N, Å */
+  readonly coordinates: Float64Array;
+  readonly converged: boolean;
+}
+
+/** A minimum or maximum of the profile. */
+export interface StationaryPoint {
+  readonly kind: StationaryKind;
+  /** Degrees, of the geometry itself and not of a grid point. */
+  readonly angle: number;
+  /** kcal/mol */
+  readonly energy: number;
+  /** kcal/mol above the lowest stationary point. */
+  readonly relative: number;
+  /** Trade term, see labels.ts. */
+  readonly label: string;
+  /** Klyne-Prelog term with sign, for the torsion as scanned. */
+  readonly range: string;
+  /** 3N, Å */
+  readonly coordinates: Float64Array;
+  readonly converged: boolean;
+}
+
+export interface ScanResult {
+  readonly torsion: TorsionAtoms;
+  readonly relaxed: boolean;
+  readonly step: number;
+  /** Ascending in angle over (-180, 180]. Angles that time did not suffice for are missing. */
+  readonly points: readonly ScanPoint[];
+  /** Ascending in angle; minima and maxima alternate. */
+  readonly stationary: readonly StationaryPoint[];
+  readonly symmetry: {
+    /** The profile is its own mirror image, E(φ) = E(-φ). */
+    readonly mirror: boolean;
+    /** Degrees after which the profile repeats: 360, 180, 120 or 60. */
+    readonly period: number;
+  };
+  /** False when time ran out before the search was through. */
+  readonly complete: boolean;
+}

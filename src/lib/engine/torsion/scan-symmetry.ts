@@ -1,0 +1,155 @@
+/** Symmetries of a molecule that a torsion scan can use: a point of the profile gives others without computing them. */
+import type { ForceField } from '../forcefield/forcefield';
+import { symmetryClasses } from '../molecule/symmetry-classes';
+import type { Random } from '../random';
+import { findAutomorphism, sameEitherWay } from './automorphism';
+import type { SymmetryQuestion } from './automorphism';
+import { readHandedness } from './handedness';
+
+export type TorsionAtoms = readonly [number, number, number, number];
+
+/** Atom a of the transformed geometry takes the place of atom source[a]; then all is reflected when `mirror`. */
+export interface SymmetryOperation {
+  readonly source: Readonly<Int32Array>;
+  readonly mirror: boolean;
+}
+
+/** An operation that turns the scanned torsions into each other, exactly. */
+export interface ExactSymmetry extends SymmetryOperation {
+  /** Torsion t of the transformed geometry is sign times torsion from[t] of the original. */
+  readonly from: readonly number[];
+  readonly sign: 1 | -1;
+}
+
+export interface ScanSymmetry {
+  /** Without the identity. */
+  readonly exact: readonly ExactSymmetry[];
+  /**
+   * Operations after which the scanned torsion reads another torsion about the same bond: about 120 or 180 degrees
+   * away (a methyl, a phenyl). Not exact points of the profile, because only one of these torsions is held at a grid angle,
+   * but excellent starts, and exact for stationary points. Empty for maps.
+   */
+  readonly shifting: readonly SymmetryOperation[];
+}
+
+/** Puts the transformed geometry into `out`. */
+export function applySymmetry(
+  operation: SymmetryOperation,
+  x: Float64Array,
+  out: Float64Array,
+): void {
+  const { source, mirror } = operation;
+  for (let atom = 0; atom < source.length; atom++) {
+    out[3 * atom] = x[3 * source[atom]];
+    out[3 * atom + 1] = x[3 * source[atom] + 1];
+    out[3 * atom + 2] = mirror ? -x[3 * source[atom] + 2] : x[3 * source[atom] + 2];
+  }
+}
+
+/** The operation that undoes another. */
+export function inverseSymmetry(operation: SymmetryOperation): SymmetryOperation {
+  const source = new Int32Array(operation.source.length);
+  operation.source.forEach((from, atom) => {
+    source[from] = atom;
+  });
+  return { source, mirror: operation.mirror };
+}
+
+/**
+ * Finds the symmetries of a scan of one or two torsions. `x` (Å, 3N) is any sound geometry of the molecule, from which
+ * the configuration is read: a chiral molecule has no mirror. Each operation is proved by the energy of a distorted geometry.
+ */
+export function findScanSymmetry(
+  forceField: ForceField,
+  torsions: readonly TorsionAtoms[],
+  x: Float64Array,
+  random: Random,
+): ScanSymmetry {
+  const { molecule } = forceField;
+  const classes = symmetryClasses(molecule);
+  const question = { molecule, classes, handedness: readHandedness(molecule, x) };
+  const prove = createProof(forceField, x, random);
+  const exact = exactCandidates(torsions.length).flatMap((candidate): ExactSymmetry[] => {
+    const source = findForTorsions(question, torsions, candidate.from, candidate.sign === -1);
+    if (!source) return [];
+    const operation = { ...candidate, source, mirror: candidate.sign === -1 };
+    return prove(operation) ? [operation] : [];
+  });
+  const shifting =
+    torsions.length === 1 ? shiftingOperations(question, torsions[0]).filter(prove) : [];
+  return { exact, shifting };
+}
+
+/** All that can happen to one or two torsions except nothing. */
+function exactCandidates(count: number): { from: number[]; sign: 1 | -1 }[] {
+  if (count === 1) return [{ from: [0], sign: -1 }];
+  return [
+    { from: [0, 1], sign: -1 },
+    { from: [1, 0], sign: 1 },
+    { from: [1, 0], sign: -1 },
+  ];
+}
+
+/** Each torsion may be read from either end. */
+function findForTorsions(
+  question: SymmetryQuestion,
+  torsions: readonly TorsionAtoms[],
+  from: readonly number[],
+  mirror: boolean,
+): Int32Array | null {
+  const readings = 1 << torsions.length;
+  for (let reading = 0; reading < readings; reading++) {
+    const anchors = torsions.flatMap((atoms, t) => {
+      const images = torsions[from[t]];
+      const reversed = ((reading >> t) & 1) === 1;
+      return atoms.map((atom, n) => [atom, images[reversed ? 3 - n : n]] as const);
+    });
+    const source = findAutomorphism(question, anchors, mirror);
+    if (source) return source;
+  }
+  return null;
+}
+
+function shiftingOperations(question: SymmetryQuestion, atoms: TorsionAtoms): SymmetryOperation[] {
+  const { molecule, classes } = question;
+  const [i, j, k, l] = atoms;
+  const found: SymmetryOperation[] = [];
+  for (const [first, second] of [
+    [j, k],
+    [k, j],
+  ]) {
+    for (const { atom: front } of molecule.neighbors[first]) {
+      for (const { atom: rear } of molecule.neighbors[second]) {
+        const images = [front, first, second, rear];
+        if (front === second || rear === first || sameEitherWay(images, atoms)) continue;
+        if (classes[front] !== classes[i] || classes[rear] !== classes[l]) continue;
+        const anchors = atoms.map((atom, n) => [atom, images[n]] as const);
+        for (const mirror of [false, true]) {
+          const source = findAutomorphism(question, anchors, mirror);
+          if (source) found.push({ source, mirror });
+        }
+      }
+    }
+  }
+  return found;
+}
+
+/** How far atoms are moved for the proof, Å, and how equal two energies must be, kcal/mol per kcal/mol. */
+const PROOF_DISTORTION = 0.1;
+const PROOF_TOLERANCE = 1e-8;
+
+function createProof(
+  forceField: ForceField,
+  x: Float64Array,
+  random: Random,
+): (operation: SymmetryOperation) => boolean {
+  const distorted = x.map((coordinate) => coordinate + PROOF_DISTORTION * random.normal());
+  const gradient = new Float64Array(x.length);
+  const transformed = new Float64Array(x.length);
+  const reference = forceField.energy(distorted, gradient);
+  return (operation) => {
+    applySymmetry(operation, distorted, transformed);
+    const energy = forceField.energy(transformed, gradient);
+    return Math.abs(energy - reference) <= PROOF_TOLERANCE * (1 + Math.abs(reference));
+  };
+}

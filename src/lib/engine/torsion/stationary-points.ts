@@ -1,0 +1,185 @@
+/** Minima and maxima of a relaxed torsion profile, as geometries of their own and not as grid points. */
+import type { Control } from '../control';
+import type { ForceField } from '../forcefield/forcefield';
+import { minimizeToMinimum } from '../minimizer/minimize-to-minimum';
+import { REPORTED_GRADIENT_RMS } from '../minimizer/minimizer';
+import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { turnBetween } from '../units';
+import type { BondCharacter } from './bond-character';
+import { klynePrelog } from './klyne-prelog';
+import { labelGeometry } from './labels';
+import type { StationaryKind } from './labels';
+import { refineMaximum } from './refine-maximum';
+import type { ProfileSample, ScanPoint, StationaryPoint } from './scan-result';
+import { applySymmetry } from './scan-symmetry';
+import type { ScanSymmetry } from './scan-symmetry';
+import type { TorsionDrive } from './torsion-drive';
+
+/** What is known when the grid is done. */
+export interface ProfileSetting {
+  readonly forceField: ForceField;
+  readonly drive: TorsionDrive;
+  readonly character: BondCharacter;
+  readonly symmetry: ScanSymmetry;
+  readonly points: readonly ScanPoint[];
+  /** Free minima known from elsewhere, Å. */
+  readonly starts: readonly Float64Array[];
+}
+
+/** Minima nearer to each other than this are one, degrees. */
+const SAME_ANGLE = 2;
+/** A barrier lower than this above the higher of its two minima is noise and separates nothing, kcal/mol. */
+const NO_BARRIER = 0.005;
+/** A free minimum may lie this much above the curve through the grid and still belong to the profile, kcal/mol. */
+const ABOVE_PROFILE = 0.1;
+const MAX_EVALUATIONS = 2000;
+
+/**
+ * Finds the stationary points, ascending in angle, minima and maxima in turn. A minimum of the profile is kept only if a
+ * free minimum exists near it; of the barriers between two minima the highest counts.
+ */
+export async function findStationaryPoints(
+  setting: ProfileSetting,
+  control: Control,
+): Promise<{ stationary: StationaryPoint[]; complete: boolean }> {
+  let minima = await findMinima(setting, control.part(0, 0.4));
+  const maxima: (ProfileSample | null)[] = [];
+  const known: ProfileSample[] = [];
+  let complete = true;
+  for (let n = 0; n < minima.length;) {
+    if (control.expired()) complete = false;
+    const next = minima[(n + 1) % minima.length];
+    const top = complete ? await barrierBetween(setting, minima[n], next, known, control) : null;
+    const rise = top ? top.energy - Math.max(minima[n].energy, next.energy) : Infinity;
+    if (minima.length > 1 && rise < NO_BARRIER) {
+      const higher = minima[n].energy > next.energy ? minima[n] : next;
+      minima = minima.filter((minimum) => minimum !== higher);
+      maxima.length = 0;
+      n = 0;
+      continue;
+    }
+    if (top) known.push(top);
+    maxima[n] = top;
+    n++;
+  }
+  const found = [
+    ...minima.map((sample) => ({ ...sample, kind: 'minimum' as const })),
+    ...maxima.flatMap((sample) => (sample ? [{ ...sample, kind: 'maximum' as const }] : [])),
+  ];
+  return { stationary: describe(setting, found), complete };
+}
+
+function describe(
+  { character }: ProfileSetting,
+  found: readonly (ProfileSample & { kind: StationaryKind })[],
+): StationaryPoint[] {
+  const lowest = Math.min(...found.map(({ energy }) => energy));
+  return [...found]
+    .sort((a, b) => a.angle - b.angle)
+    .map((sample) => ({
+      ...sample,
+      relative: sample.energy - lowest,
+      label: labelGeometry(character, sample.coordinates, sample.kind),
+      range: klynePrelog(sample.angle),
+    }));
+}
+
+/** Free minima from the grid's lowest places and from the starts, ascending in angle. */
+async function findMinima(setting: ProfileSetting, control: Control): Promise<ProfileSample[]> {
+  const { forceField, drive, points, starts } = setting;
+  const curve = createPeriodicCurve(
+    points.map(({ angle }) => angle),
+    points.map(({ energy }) => energy),
+  );
+  const candidates = [
+    ...points.filter((_, n) => isLow(points, n)),
+    ...starts.map((coordinates) => ({
+      angle: drive.measure(coordinates)[0],
+      energy: forceField.energy(coordinates, new Float64Array(coordinates.length)),
+      coordinates,
+    })),
+  ].filter(({ angle, energy }) => energy <= curve.at(angle) + ABOVE_PROFILE);
+  candidates.sort((a, b) => a.energy - b.energy);
+
+  const minima: ProfileSample[] = [];
+  for (const [n, candidate] of candidates.entries()) {
+    control.report(n / candidates.length, 'minima');
+    const isKnown = minima.some(
+      ({ angle, energy }) =>
+        Math.abs(turnBetween(angle, candidate.angle)) < SAME_ANGLE && energy <= candidate.energy,
+    );
+    if (isKnown) continue;
+    const sample = await minimizeFreely(setting, candidate.coordinates, control);
+    if (!sample || sample.energy > curve.at(sample.angle) + ABOVE_PROFILE) continue;
+    for (const image of [sample, ...imagesOf(setting, sample)]) addMinimum(minima, image);
+  }
+  return minima.sort((a, b) => a.angle - b.angle);
+}
+
+/** Not above its neighbors on the grid, wherever gaps leave it any. */
+function isLow(points: readonly ScanPoint[], n: number): boolean {
+  const count = points.length;
+  const { energy } = points[n];
+  return (
+    energy <= points[(n + count - 1) % count].energy && energy <= points[(n + 1) % count].energy
+  );
+}
+
+function addMinimum(minima: ProfileSample[], sample: ProfileSample): void {
+  const twin = minima.findIndex(
+    ({ angle }) => Math.abs(turnBetween(angle, sample.angle)) < SAME_ANGLE,
+  );
+  if (twin === -1) minima.push(sample);
+  else if (sample.energy < minima[twin].energy - 1e-6) minima[twin] = sample;
+}
+
+async function minimizeFreely(
+  { forceField, drive }: ProfileSetting,
+  start: Float64Array,
+  control: Control,
+): Promise<ProfileSample | null> {
+  const x = start.slice();
+  const options = {
+    gradientRms: REPORTED_GRADIENT_RMS,
+    maxEvaluations: MAX_EVALUATIONS,
+    curvature: forceField.curvature,
+  };
+  const { energy, converged } = await minimizeToMinimum(forceField.energy, x, options, control);
+  return converged ? { angle: drive.measure(x)[0], energy, coordinates: x, converged } : null;
+}
+
+/** The same stationary point elsewhere on the circle, by the molecule's symmetry. */
+function imagesOf({ symmetry, drive }: ProfileSetting, sample: ProfileSample): ProfileSample[] {
+  return [...symmetry.exact, ...symmetry.shifting].map((operation) => {
+    const coordinates = new Float64Array(sample.coordinates.length);
+    applySymmetry(operation, sample.coordinates, coordinates);
+    return { ...sample, angle: drive.measure(coordinates)[0], coordinates };
+  });
+}
+
+/** The highest point on the way up in angle from one minimum to the next; an image of a known one where it fits. */
+async function barrierBetween(
+  setting: ProfileSetting,
+  from: ProfileSample,
+  to: ProfileSample,
+  known: readonly ProfileSample[],
+  control: Control,
+): Promise<ProfileSample | null> {
+  const span = spanBetween(from.angle, to.angle);
+  const inside = ({ angle }: { angle: number }): boolean => {
+    const along = spanBetween(from.angle, angle);
+    return along > 0 && along < span;
+  };
+  const between = setting.points.filter(inside);
+  const highest = Math.max(...between.map(({ energy }) => energy));
+  const image = known
+    .flatMap((sample) => imagesOf(setting, sample))
+    .find((sample) => inside(sample) && sample.energy >= highest - 1e-3);
+  return image ?? refineMaximum(setting.drive, [from, ...between, to], span, control);
+}
+
+/** Degrees from one angle up to another, in (0, 360]. */
+export function spanBetween(from: number, to: number): number {
+  const turn = turnBetween(from, to);
+  return turn > 0 ? turn : turn + 360;
+}

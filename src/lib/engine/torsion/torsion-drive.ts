@@ -1,0 +1,116 @@
+/** Turns torsions of a molecule to target angles and relaxes everything else. */
+import type { Control } from '../control';
+import { InputError } from '../errors';
+import type { ForceField } from '../forcefield/forcefield';
+import { angle, rotateAbout, torsion } from '../geometry';
+import { minimize } from '../minimizer/minimize';
+import { minimizeToMinimum } from '../minimizer/minimize-to-minimum';
+import { sumTerms, torsionRestraint } from '../minimizer/restraints';
+import type { Molecule } from '../molecule/molecule';
+import { checkTorsion, movedAtoms } from '../molecule/rotatable';
+import { turnBetween } from '../units';
+import type { TorsionAtoms } from './scan-symmetry';
+
+/** A geometry held at target angles and relaxed otherwise. */
+export interface HeldGeometry {
+  readonly coordinates: Float64Array;
+  /** kcal/mol, without the restraint's own energy. */
+  readonly energy: number;
+  readonly converged: boolean;
+  /** Energy evaluations spent. */
+  readonly evaluations: number;
+}
+
+export interface TorsionDrive {
+  readonly torsions: readonly TorsionAtoms[];
+  /** The torsions' angles in a geometry, degrees. */
+  measure(x: Float64Array): number[];
+  /** Turns one side about each bond, rigidly and in place, until the torsions have these angles. */
+  turnTo(x: Float64Array, angles: readonly number[]): void;
+  /** Relaxes a copy of `start` with the torsions held; `thorough` leaves saddles of the other coordinates too. */
+  relax(
+    start: Float64Array,
+    angles: readonly number[],
+    settings: RelaxSettings,
+    control: Control,
+  ): Promise<HeldGeometry>;
+}
+
+export interface RelaxSettings {
+  /** kcal/mol/Å */
+  readonly gradientRms: number;
+  readonly maxEvaluations: number;
+  readonly thorough?: boolean;
+}
+
+/** Farthest a held torsion may be from its target, degrees. */
+export const TARGET_TOLERANCE = 0.1;
+/** Straighter than this, an end has no direction to count a torsion from; degrees. */
+const LINEAR_ANGLE = 172;
+
+/** Prepares the drive. Throws InputError for what is no torsion about a bond that can turn. */
+export function createTorsionDrive(
+  forceField: ForceField,
+  torsions: readonly TorsionAtoms[],
+): TorsionDrive {
+  const { molecule } = forceField;
+  torsions.forEach((atoms) => checkTorsion(molecule, atoms));
+  const sides = torsions.map(([, j, k]) => smallerSide(molecule, j, k));
+
+  const measure = (x: Float64Array): number[] =>
+    torsions.map(([i, j, k, l]) => torsion(x, i, j, k, l));
+  const turnTo = (x: Float64Array, angles: readonly number[]): void => {
+    torsions.forEach(([i, j, k, l], t) => {
+      const turn = turnBetween(torsion(x, i, j, k, l), angles[t]);
+      rotateAbout(x, sides[t].atoms, j, k, sides[t].isFront ? -turn : turn);
+    });
+  };
+  const relax = async (
+    start: Float64Array,
+    angles: readonly number[],
+    { gradientRms, maxEvaluations, thorough }: RelaxSettings,
+    control: Control,
+  ): Promise<HeldGeometry> => {
+    const x = start.slice();
+    turnTo(x, angles);
+    const restraints = torsions.map((atoms, t) => torsionRestraint(atoms, angles[t]));
+    const { energy, curvature } = sumTerms(forceField, ...restraints);
+    const minimizeFully = thorough ? minimizeToMinimum : minimize;
+    const options = { gradientRms, maxEvaluations, curvature };
+    const result = await minimizeFully(energy, x, options, control);
+    const unused = new Float64Array(x.length);
+    const held = measure(x).every(
+      (reached, t) => Math.abs(turnBetween(reached, angles[t])) <= TARGET_TOLERANCE,
+    );
+    return {
+      coordinates: x,
+      energy: forceField.energy(x, unused),
+      converged: result.converged && held,
+      evaluations: result.evaluations,
+    };
+  };
+  return { torsions, measure, turnTo, relax };
+}
+
+/** Refuses a torsion whose ends are straight in a geometry (Å, 3N): it has no angle there. */
+export function checkBent(x: Float64Array, [i, j, k, l]: TorsionAtoms): void {
+  if (angle(x, i, j, k) < LINEAR_ANGLE && angle(x, j, k, l) < LINEAR_ANGLE) return;
+  throw new InputError(
+    'bad-torsion',
+    `Atoms ${i + 1}, ${j + 1}, ${k + 1}, ${l + 1} are in line at one end and have no torsion angle.`,
+    { atom: j },
+  );
+}
+
+/** The atoms on the bond's smaller side. */
+function smallerSide(
+  molecule: Molecule,
+  j: number,
+  k: number,
+): { atoms: Int32Array; isFront: boolean } {
+  const front = movedAtoms(molecule, k, j);
+  const rear = movedAtoms(molecule, j, k);
+  return front.length < rear.length
+    ? { atoms: front, isFront: true }
+    : { atoms: rear, isFront: false };
+}
