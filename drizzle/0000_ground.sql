@@ -25,6 +25,7 @@ CREATE TABLE "conformers" (
 	"relative" double precision NOT NULL,
 	"degeneracy" integer NOT NULL,
 	"population" double precision NOT NULL,
+	"rmsd_to_lowest" double precision NOT NULL,
 	"coordinates" "bytea" NOT NULL,
 	CONSTRAINT "conformers_result_id_rank_pk" PRIMARY KEY("result_id","rank")
 );
@@ -120,6 +121,7 @@ CREATE TABLE "results" (
 	"settings_digest" text NOT NULL,
 	"engine_version" text NOT NULL,
 	"model" text NOT NULL,
+	"molfile" text NOT NULL,
 	"details" jsonb NOT NULL,
 	"warnings" jsonb DEFAULT '[]'::jsonb NOT NULL,
 	"seconds" double precision NOT NULL,

@@ -25,11 +25,7 @@ export async function hearCancels(): Promise<void> {
 export async function performTask(taskId: string, worker: string, lastTry: boolean): Promise<void> {
   const task = await tasks.claim(taskId, worker);
   if (!task) return;
-  const stored = await results.findStored(task);
-  if (stored) {
-    await results.reuse(task, stored);
-    return;
-  }
+  if (await results.reuseStored(task)) return;
   const controller = new AbortController();
   running.set(task.id, controller);
   const life = keepAlive(task, controller);

@@ -231,6 +231,8 @@ export const results = pgTable(
     engineVersion: text('engine_version').notNull(),
     /** The energy model that all of it rests on; further models of a profile are in profile_curves. */
     model: text('model').notNull(),
+    /** The prepared molecule in its final atom order, V2000, with the answer's main geometry. */
+    molfile: text('molfile').notNull(),
     /** All that is neither a conformer nor a profile: conjugated bonds, strain, flags of completeness. */
     details: jsonb('details').notNull(),
     warnings: jsonb('warnings').notNull().default([]),
@@ -260,6 +262,7 @@ export const conformers = pgTable(
     relative: doublePrecision('relative').notNull(),
     degeneracy: integer('degeneracy').notNull(),
     population: doublePrecision('population').notNull(),
+    rmsdToLowest: doublePrecision('rmsd_to_lowest').notNull(),
     coordinates: bytes('coordinates').notNull(),
   },
   (table) => [primaryKey({ columns: [table.resultId, table.rank] })],
@@ -291,7 +294,7 @@ export const profileCurves = pgTable(
     relaxed: boolean('relaxed').notNull(),
     energies: doublePrecision('energies').array().notNull(),
     reached: doublePrecision('reached').array().notNull(),
-    /** Packed as a conformer's, one geometry after the other in the order of the angles. */
+    /** Packed as a conformer's: the geometries of the angles in their order, then those of the stationary points. */
     coordinates: bytes('coordinates').notNull(),
     /** [{kind, angle, relative, label, …}] as the engine gives them. */
     stationary: jsonb('stationary').notNull(),
