@@ -1,14 +1,33 @@
-/** The worker: connects to the database and performs tasks until it is told to stop. */
-import { client, closeDatabase } from '../src/lib/server/db';
+/** The worker: takes tasks from the queue and performs them until it is told to stop. */
+import { randomUUID } from 'node:crypto';
+import { hostname } from 'node:os';
+import { closeDatabase } from '../src/lib/server/db';
 import { log } from '../src/lib/server/log';
+import { stopQueue, workOnTasks } from '../src/lib/server/queue';
+import { failAbandoned } from '../src/lib/server/tasks';
+import { hearCancels, performTask } from './perform';
+import { closePool, concurrency } from './pool';
 
-await client`select 1`;
-log.info('The worker is connected');
-const waiting = setInterval(() => undefined, 60_000);
+/** How often tasks are looked for whose workers all died. */
+const ABANDONED_CHECK_MS = 60_000;
 
-for (const signal of ['SIGINT', 'SIGTERM'] as const) {
-  process.once(signal, () => {
-    clearInterval(waiting);
-    void closeDatabase();
-  });
+const name = `${hostname()} ${process.pid} ${randomUUID().slice(0, 4)}`;
+
+await hearCancels();
+await workOnTasks(concurrency, (taskId, lastTry) => performTask(taskId, name, lastTry));
+const check = setInterval(() => {
+  failAbandoned().catch((error: unknown) =>
+    log.warn({ error }, 'Looking for abandoned tasks failed; it is tried again'),
+  );
+}, ABANDONED_CHECK_MS);
+log.info({ worker: name, concurrency }, 'The worker takes tasks');
+
+/** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
+async function stop(): Promise<void> {
+  clearInterval(check);
+  await closePool();
+  await stopQueue();
+  await closeDatabase();
 }
+
+for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => void stop());
