@@ -3,11 +3,11 @@ import { createHash } from 'node:crypto';
 import { setImmediate as breathe } from 'node:timers/promises';
 import {
   InputError,
-  largestPart,
   molecularFormula,
   readMolecule,
   rotatableBonds,
   stereoisomers,
+  writeMolfile,
   type Molecule,
   type MoleculeInput,
 } from '../engine';
@@ -92,24 +92,35 @@ export function readRow(row: RawRow, reading: Reading): ReadRow[] {
 function readInput(row: RawRow, reading: Reading): ReadRow[] {
   const given: MoleculeInput =
     row.format === 'smiles' ? { smiles: row.text } : { molfile: row.text };
-  const input = reading.stripSalts ? largestPart(given) : given;
-  const molecule = readMolecule(input);
+  const molecule = readMolecule(given, { largestPart: reading.stripSalts });
   const name = row.name || molecule.name;
-  const isomers =
-    reading.expandStereo > 0 ? stereoisomers(molecule, reading.expandStereo) : [molecule];
+  // Read without its salts a molfile is no longer the text it was.
+  const asGiven = row.format === 'molfile' && !reading.stripSalts ? row.text : null;
+  if (reading.expandStereo === 0) return [toRow(row, name, molecule, asGiven)];
+  const isomers = stereoisomers(molecule, reading.expandStereo);
+  if (isomers === null) return [toRow(row, name, molecule, asGiven, [tooManyIsomers(reading)])];
+  if (isomers.length === 1) return [toRow(row, name, molecule, asGiven)];
   return isomers.map((isomer, n) =>
-    toRow(
-      row,
-      isomers.length > 1 ? `${name || 'isomer'} (${n + 1} of ${isomers.length})` : name,
-      isomer,
-      input,
-    ),
+    toRow(row, `${name || 'isomer'} (${n + 1} of ${isomers.length})`, isomer, null),
   );
 }
 
-function toRow(row: RawRow, name: string, molecule: Molecule, input: MoleculeInput): ReadRow {
-  const structure = describe(molecule, input);
-  const remarks = molecule.warnings.filter(({ code }) => !COMMONPLACE.has(code));
+function tooManyIsomers({ expandStereo }: Reading): Remark {
+  return {
+    code: 'too-many-stereoisomers',
+    message: `The structure stands for more than ${expandStereo} stereoisomers and was left as it is.`,
+  };
+}
+
+function toRow(
+  row: RawRow,
+  name: string,
+  molecule: Molecule,
+  asGiven: string | null,
+  more: readonly Remark[] = [],
+): ReadRow {
+  const structure = describe(molecule, asGiven);
+  const remarks = [...molecule.warnings.filter(({ code }) => !COMMONPLACE.has(code)), ...more];
   return {
     line: row.line,
     name: name || structure.formula,
@@ -121,14 +132,14 @@ function toRow(row: RawRow, name: string, molecule: Molecule, input: MoleculeInp
 }
 
 /**
- * A molecule as it is stored. One that came as SMILES is kept as its canonical SMILES, so that every spelling of it is
- * the same structure with the same atom order; a molfile is kept as it is, with its order and geometry.
+ * A molecule as it is stored: the molfile as given, one written anew where it has a geometry, or its canonical SMILES,
+ * so that every spelling of a molecule is the same structure with the same atom order.
  */
-function describe(molecule: Molecule, input: MoleculeInput): ReadStructure {
-  const asGiven = 'molfile' in input;
-  const prepared = asGiven ? molecule : readMolecule({ smiles: molecule.smiles });
-  const format = asGiven ? 'molfile' : 'smiles';
-  const structure = asGiven ? input.molfile : molecule.smiles;
+function describe(molecule: Molecule, asGiven: string | null): ReadStructure {
+  const molfile = asGiven ?? (molecule.coordinates && writeMolfile(molecule, molecule.coordinates));
+  const format = molfile === null ? 'smiles' : 'molfile';
+  const structure = molfile ?? molecule.smiles;
+  const prepared = molfile === null ? readMolecule({ smiles: structure }) : molecule;
   return {
     digest: createHash('sha256')
       .update(`${format}\n${bodyOf(structure, format)}`)
@@ -137,11 +148,7 @@ function describe(molecule: Molecule, input: MoleculeInput): ReadStructure {
     formula: molecularFormula(prepared),
     atomCount: prepared.atomCount,
     rotors: rotatableBonds(prepared, { terminal: true }).map(
-      ({ torsion, conjugated, terminal }) => ({
-        torsion,
-        conjugated,
-        terminal,
-      }),
+      ({ torsion, conjugated, terminal }) => ({ torsion, conjugated, terminal }),
     ),
     format,
     structure,
