@@ -1,13 +1,17 @@
 import js from '@eslint/js';
 import prettier from 'eslint-config-prettier';
+import svelte from 'eslint-plugin-svelte';
 import globals from 'globals';
 import ts from 'typescript-eslint';
+import svelteConfig from './svelte.config.js';
 
 export default ts.config(
   { ignores: ['node_modules/', 'build/', '.svelte-kit/', '.windlass/', 'tests/fixtures/'] },
   js.configs.recommended,
   ...ts.configs.recommended,
+  ...svelte.configs.recommended,
   prettier,
+  ...svelte.configs.prettier,
   {
     languageOptions: { globals: { ...globals.node, ...globals.browser } },
     rules: {
@@ -17,7 +21,15 @@ export default ts.config(
       'no-console': 'error',
       'no-param-reassign': 'error',
       'prefer-const': 'error',
+      // The product lives at the root of its address, so links need no base path.
+      'svelte/no-navigation-without-resolve': 'off',
     },
+  },
+  {
+    files: ['**/*.svelte', '**/*.svelte.ts'],
+    languageOptions: { parserOptions: { parser: ts.parser, svelteConfig } },
+    // Props and bindings that Svelte assigns look like variables that never change.
+    rules: { 'prefer-const': 'off', 'svelte/prefer-const': ['error', { destructuring: 'all' }] },
   },
   {
     // Command-line programs speak through the console.
@@ -43,6 +55,18 @@ export default ts.config(
       'no-restricted-properties': [
         'error',
         { object: 'Math', property: 'random', message: 'Take a seeded Random instead.' },
+      ],
+    },
+  },
+  {
+    // Settings come from one place, which checks them.
+    files: ['src/**/*.ts', 'worker/**/*.ts'],
+    ignores: ['src/lib/server/environment.ts', '**/*.test.ts'],
+    rules: {
+      'no-restricted-properties': [
+        'error',
+        { object: 'process', property: 'env', message: 'Read it from server/environment.ts.' },
+        { object: 'Math', property: 'random', message: 'Take a seeded Random or node:crypto.' },
       ],
     },
   },

@@ -47,11 +47,26 @@ export type SignUp = z.output<typeof signUpSchema>;
 
 export const signInSchema = z.object({ email: addressSchema, password: givenPasswordSchema });
 
+/** A sign-in that first confirms the address, with the secret of the letter. */
+export const confirmAndSignInSchema = signInSchema.extend({ confirmToken: z.string().max(100) });
+
+export const confirmFormSchema = z.object({
+  token: z.string().max(100),
+  password: givenPasswordSchema,
+});
+
 export const addressFormSchema = z.object({ email: addressSchema });
 
-export const resetPasswordSchema = z.object({ token: z.string(), password: newPasswordSchema });
+export const resetPasswordSchema = z.object({
+  token: z.string().max(100),
+  password: newPasswordSchema,
+});
 
 export const changePasswordSchema = z.object({
   current: givenPasswordSchema,
   password: newPasswordSchema,
 });
+
+export const renameSchema = z.object({ name: nameSchema });
+
+export const sessionSchema = z.object({ session: z.uuid() });

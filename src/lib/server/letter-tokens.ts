@@ -60,9 +60,9 @@ export async function revoke(
 export async function findOwner(
   token: string,
   purpose: LetterPurpose,
-): Promise<{ id: string; email: string } | null> {
+): Promise<{ id: string; email: string; name: string } | null> {
   const [owner] = await db
-    .select({ id: users.id, email: users.email })
+    .select({ id: users.id, email: users.email, name: users.name })
     .from(letterTokens)
     .innerJoin(users, eq(users.id, letterTokens.userId))
     .where(isUsable(token, purpose));

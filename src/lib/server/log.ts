@@ -2,4 +2,7 @@
 import { pino } from 'pino';
 import { environment } from './environment';
 
-export const log = pino({ level: environment.WINDLASS_LOG_LEVEL });
+export const log = pino({
+  level: environment.WINDLASS_LOG_LEVEL,
+  serializers: { error: pino.stdSerializers.err },
+});

@@ -115,6 +115,11 @@ export async function revokeAll(
   return revoked.length;
 }
 
+/** Ends all sessions of a person but the present one. */
+export async function revokeOthers(userId: string, presentId: string): Promise<void> {
+  await revokeAll(db, userId, presentId);
+}
+
 /** Forgets sessions that ended a while ago. */
 export async function forgetEnded(): Promise<void> {
   await db.delete(sessions).where(lt(sessions.expiresAt, sql`now() - interval '30 days'`));

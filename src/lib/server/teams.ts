@@ -1,7 +1,35 @@
 /** Teams and who belongs to them. */
+import { error } from '@sveltejs/kit';
 import type { Member } from './member';
+
+/** Names the chosen team, between visits. */
+export const TEAM_COOKIE = 'windlass-team';
 
 /** A person in one of their teams, with the team's name: it can be handed in wherever a Member asks. */
 export interface Membership extends Member {
   readonly teamName: string;
+}
+
+/** The chosen team where the person belongs to it (any more), else their first; null without a team. */
+export function chooseMembership(
+  memberships: readonly Membership[],
+  chosenTeamId: string | undefined,
+): Membership | null {
+  return memberships.find(({ teamId }) => teamId === chosenTeamId) ?? memberships[0] ?? null;
+}
+
+/** The person and the sign-in, in a route that only signed-in people reach. */
+export function whoIsSignedIn(locals: App.Locals) {
+  const { user, sessionId } = locals;
+  if (!user || !sessionId) error(401, 'Sign in first.');
+  return { user, sessionId };
+}
+
+/** Who asks, in a route that only people with a team reach. */
+export function whoAsks(locals: App.Locals): Membership {
+  if (!locals.user) error(401, 'Sign in first.');
+  if (!locals.membership) {
+    error(403, 'You belong to no team at the moment. Ask the lead of a team to add you.');
+  }
+  return locals.membership;
 }

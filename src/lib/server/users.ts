@@ -133,26 +133,34 @@ export function forgotPassword(email: string): void {
   });
 }
 
-/** Sets a new password by a letter's secret, and ends every sign-in; false when the secret does not work (any more). */
-export async function resetPassword(token: string, password: string): Promise<boolean> {
-  if (!(await letterTokens.findOwner(token, 'reset-password'))) return false;
+/**
+ * Sets a new password by a letter's secret, and ends every sign-in.
+ * @returns 'letter' when the secret does not work (any more); a fault when the password will not do
+ */
+export async function resetPassword(
+  token: string,
+  password: string,
+): Promise<'done' | 'letter' | { fault: string }> {
+  const owner = await letterTokens.findOwner(token, 'reset-password');
+  if (!owner) return 'letter';
+  const fault = findPasswordFault(password, [owner.name, owner.email]);
+  if (fault) return { fault };
   const passwordHash = await hashPassword(password);
-  const user = await db.transaction(async (tx) => {
-    const userId = await letterTokens.redeem(tx, token, 'reset-password');
-    if (userId === null) return null;
+  const isDone = await db.transaction(async (tx) => {
+    if ((await letterTokens.redeem(tx, token, 'reset-password')) === null) return false;
     // Who reads the letter owns the address, so it counts as confirmed.
-    const [changed] = await tx
+    await tx
       .update(users)
       .set({ passwordHash, confirmedAt: sql`coalesce(${users.confirmedAt}, now())` })
-      .where(eq(users.id, userId))
-      .returning({ email: users.email, name: users.name });
-    await sessions.revokeAll(tx, userId);
-    await letterTokens.revoke(tx, userId, 'confirm-address');
-    await recordAccountEvent(tx, userId, 'reset password');
-    return changed!;
+      .where(eq(users.id, owner.id));
+    await sessions.revokeAll(tx, owner.id);
+    await letterTokens.revoke(tx, owner.id, 'confirm-address');
+    await recordAccountEvent(tx, owner.id, 'reset password');
+    return true;
   });
-  if (user) post(user.email, passwordChangedLetter(user.name));
-  return user !== null;
+  if (!isDone) return 'letter';
+  post(owner.email, passwordChangedLetter(owner.name));
+  return 'done';
 }
 
 export type PasswordChangeFault = {

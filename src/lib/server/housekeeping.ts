@@ -1,0 +1,20 @@
+/** Forgets what is of no use any more; any number of processes may do it. */
+import * as letterTokens from './letter-tokens';
+import { log } from './log';
+import { forgetFullBuckets } from './rate-limits';
+import * as sessions from './sessions';
+
+const INTERVAL_MS = 3_600_000;
+
+async function tidy(): Promise<void> {
+  await letterTokens.forgetExpired();
+  await sessions.forgetEnded();
+  await forgetFullBuckets();
+}
+
+/** Tidies once an hour, as long as the process runs. */
+export function keepHouse(): void {
+  setInterval(() => {
+    tidy().catch((error: unknown) => log.warn({ error }, 'Tidying failed; it is tried again'));
+  }, INTERVAL_MS).unref();
+}

@@ -1,0 +1,15 @@
+import type { LayoutServerLoad } from './$types';
+
+/** Who is signed in, for the head of every page. */
+export const load: LayoutServerLoad = ({ locals }) => {
+  const { user, membership, memberships } = locals;
+  return {
+    user: user && { name: user.name, email: user.email },
+    team: membership && {
+      id: membership.teamId,
+      name: membership.teamName,
+      role: membership.role,
+    },
+    teams: memberships.map(({ teamId, teamName }) => ({ id: teamId, name: teamName })),
+  };
+};
