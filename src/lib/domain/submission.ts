@@ -29,6 +29,39 @@ export type Reading = z.output<typeof readingSchema>;
 export const formats = ['smi', 'csv', 'sdf', 'mol'] as const;
 export type Format = (typeof formats)[number];
 
+/** How molecules come in. */
+export const sources = ['paste', 'draw', 'upload'] as const;
+
+/** What goes with an upload, in the address; the upload itself is the body. */
+export const draftQuerySchema = z.object({
+  name: z
+    .string()
+    .trim()
+    .min(1, { error: 'Give the batch a name.' })
+    .max(120, { error: 'The name may have at most 120 characters.' }),
+  source: z.enum(sources),
+  format: z.enum(formats, {
+    error: `Files end in .${formats.join(', .')}; this one has another ending.`,
+  }),
+  reading: z
+    .string()
+    .default('{}')
+    .transform((text, context) => {
+      try {
+        return readingSchema.parse(JSON.parse(text));
+      } catch {
+        context.addIssue({ code: 'custom', message: 'The reading options are wrong.' });
+        return z.NEVER;
+      }
+    }),
+});
+
+/** What is told while an upload is read, and at its end. */
+export type ReadingNews =
+  | { readonly rows: number; readonly errors: number }
+  | { readonly draftId: string }
+  | { readonly fault: string };
+
 /** Which bonds are scanned: by rule, or those clicked on the drawing of each row. */
 export const bondChoices = ['rotatable', 'conjugated', 'chosen'] as const;
 export type BondChoice = (typeof bondChoices)[number];

@@ -154,10 +154,10 @@ export async function failAbandoned(): Promise<number> {
   return rows.length;
 }
 
-/** The member's own team's tasks among `ids`, or all of a batch; locked until the transaction ends. */
+/** The chosen tasks, if they are the member's own team's; locked until the transaction ends. */
 async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
   const chosen =
-    'batchId' in where ? eq(tasks.batchId, where.batchId) : inArray(tasks.id, [...where.ids]);
+    'batchId' in where ? eq(tasks.batchId, where.batchId) : eq(tasks.entryId, where.entryId);
   return executor
     .select({ id: tasks.id, state: tasks.state, batchId: tasks.batchId })
     .from(tasks)
@@ -167,8 +167,8 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     .for('update', { of: tasks });
 }
 
-/** Which tasks are meant: some by their ids, or all of a batch. */
-export type TaskChoice = { readonly ids: readonly string[] } | { readonly batchId: string };
+/** Which tasks are meant: all of one row, or all of a batch. */
+export type TaskChoice = { readonly entryId: string } | { readonly batchId: string };
 
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
 export async function cancel(member: Member, choice: TaskChoice): Promise<number> {

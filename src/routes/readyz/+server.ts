@@ -1,5 +1,5 @@
 /** Answers 200 when the database answers and has its tables, else 503: for whoever decides where requests go. */
-import { isDatabaseReady } from '$lib/server/db/ready';
+import { isDatabaseReady } from '$lib/server/ready';
 import type { RequestHandler } from './$types';
 
 export const GET: RequestHandler = async () => {

@@ -2,15 +2,14 @@
 import { drizzle } from 'drizzle-orm/postgres-js';
 import { migrate } from 'drizzle-orm/postgres-js/migrator';
 import postgres from 'postgres';
-import { environment } from '../environment';
 
 /** Any number that no other program in this database uses: only one process migrates at a time. */
 const MIGRATION_LOCK = 4_810_001;
 
 /** Runs the migrations of a folder that the database does not have yet; waits while another process does so. */
-export async function migrateDatabase(folder: string): Promise<void> {
+export async function migrateDatabase(databaseUrl: string, folder: string): Promise<void> {
   // One connection, because the lock belongs to a connection and ends with it.
-  const connection = postgres(environment.DATABASE_URL, { max: 1, onnotice: () => undefined });
+  const connection = postgres(databaseUrl, { max: 1, onnotice: () => undefined });
   try {
     await connection`select pg_advisory_lock(${MIGRATION_LOCK})`;
     await migrate(drizzle(connection), { migrationsFolder: folder });

@@ -1,0 +1,36 @@
+/** What a task is likely to cost, for the price that is shown before queueing. */
+import type { Plan } from './submission';
+
+export interface CostedMolecule {
+  readonly atomCount: number;
+  readonly rotorCount: number;
+}
+
+type Kind = Exclude<keyof Plan, 'scans'> | 'scan';
+
+/**
+ * Seconds of one core, fitted by eye to tasks of 10 to 80 atoms on a 2-core machine: an evaluation grows with the square
+ * of the atoms, a search with the number of rotors. Good to a factor of two or three.
+ */
+export function likelySeconds(kind: Kind, { atomCount, rotorCount }: CostedMolecule): number {
+  const evaluation = (atomCount / 30) ** 2;
+  switch (kind) {
+    case 'conformers':
+      return 0.3 + evaluation * (0.3 + 0.8 * rotorCount);
+    case 'scan':
+      return 0.3 + evaluation * (0.6 + 0.4 * rotorCount);
+    case 'conjugation':
+      return 0.5 + evaluation * (1 + 0.8 * rotorCount);
+    case 'strain':
+      return 0.5 + evaluation * (1 + 1.2 * rotorCount);
+  }
+}
+
+/** A length of time in words, rounded as an estimate is. */
+export function aboutTime(seconds: number): string {
+  if (seconds < 60) return 'less than a minute';
+  const minutes = Math.round(seconds / 60);
+  if (minutes < 90) return minutes === 1 ? 'about a minute' : `about ${minutes} minutes`;
+  const hours = seconds / 3600;
+  return hours < 36 ? `about ${Math.round(hours)} hours` : `about ${Math.round(hours / 24)} days`;
+}

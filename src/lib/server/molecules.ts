@@ -1,0 +1,28 @@
+/** Molecules of a team: their structures, drawings and answers. */
+import { and, eq } from 'drizzle-orm';
+import { drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
+import { db } from './db';
+import { molecules } from './db/schema';
+import { notFound, type Member } from './member';
+
+/** A molecule of the member's team. */
+export async function get(member: Member, moleculeId: string) {
+  const [molecule] = await db
+    .select()
+    .from(molecules)
+    .where(and(eq(molecules.id, moleculeId), eq(molecules.teamId, member.teamId)));
+  return molecule ?? notFound('molecule');
+}
+
+/** The engine's molecule of a stored structure; it was checked when it was stored. */
+export function readStored({
+  format,
+  structure,
+}: Pick<typeof molecules.$inferSelect, 'format' | 'structure'>): Molecule {
+  return readMolecule(format === 'smiles' ? { smiles: structure } : { molfile: structure });
+}
+
+/** The structure drawing of a molecule, in the atom numbers of its results. */
+export async function draw(member: Member, moleculeId: string): Promise<Drawing> {
+  return drawMolecule(readStored(await get(member, moleculeId)));
+}

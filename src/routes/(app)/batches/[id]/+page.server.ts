@@ -1,0 +1,58 @@
+import { fail, redirect } from '@sveltejs/kit';
+import { z } from 'zod';
+import { uuidParam } from '$lib/domain/identifiers';
+import * as batches from '$lib/server/batches';
+import * as tasks from '$lib/server/tasks';
+import { whoAsks } from '$lib/server/teams';
+import type { Actions, PageServerLoad } from './$types';
+
+const PAGE_SIZE = 50;
+
+/** What the address says of the list; anything odd falls back to the whole list in its own order. */
+const querySchema = z.object({
+  state: z
+    .enum(['queued', 'running', 'done', 'failed', 'cancelled', 'error'])
+    .nullable()
+    .catch(null),
+  sort: z.enum(batches.entrySorts).catch('position'),
+  descending: z.stringbool().catch(false),
+  page: z.coerce.number().int().min(1).catch(1),
+});
+
+export const load: PageServerLoad = async ({ locals, params, url, depends }) => {
+  depends('windlass:batch');
+  const member = whoAsks(locals);
+  const id = uuidParam(params.id);
+  const query = querySchema.parse(
+    Object.fromEntries(
+      ['state', 'sort', 'descending', 'page'].map((name) => [name, url.searchParams.get(name)]),
+    ),
+  );
+  const listed = await batches.listEntries(member, id, { ...query, pageSize: PAGE_SIZE });
+  if (!listed.batch.submittedAt) redirect(303, `/batches/${id}/preview`);
+  return { ...listed, query, pageSize: PAGE_SIZE, progress: await batches.progress(member, id) };
+};
+
+/** The tasks that a form means: those of one row, or all of the batch. */
+async function choiceOf(batchId: string, request: Request): Promise<tasks.TaskChoice> {
+  const entry = (await request.formData()).get('entry');
+  return entry === null ? { batchId: uuidParam(batchId) } : { entryId: uuidParam(String(entry)) };
+}
+
+export const actions: Actions = {
+  cancel: async ({ locals, params, request }) => {
+    const member = whoAsks(locals);
+    const choice = await choiceOf(params.id, request);
+    if ((await tasks.cancel(member, choice)) === 0) {
+      return fail(409, { fault: 'Everything here has ended already; there is nothing to cancel.' });
+    }
+  },
+
+  rerun: async ({ locals, params, request }) => {
+    const member = whoAsks(locals);
+    const choice = await choiceOf(params.id, request);
+    if ((await tasks.rerun(member, choice)) === 0) {
+      return fail(409, { fault: 'Nothing here has failed or was cancelled.' });
+    }
+  },
+};
