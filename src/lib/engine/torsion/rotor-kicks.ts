@@ -6,9 +6,14 @@ import { movedAtoms } from '../molecule/rotatable';
 import { turnBetween } from '../units';
 import type { TorsionAtoms } from './scan-symmetry';
 
-/** Rotors nearest to the driven bonds that are kicked; what lies farther off hardly feels the scan. */
+/**
+ * Rotors this many bonds from a driven bond are kicked, the nearest first: what lies farther off hardly feels the scan, and
+ * the starts have it right already.
+ */
+const FARTHEST_ROTOR = 2;
 const MOST_ROTORS = 6;
-/** Symmetric tops that are also turned two at a time. */
+/** Symmetric tops this near are also turned two at a time. */
+const FARTHEST_PAIRED_TOP = 1;
 const MOST_PAIRED_TOPS = 4;
 /** Half the period of a symmetric top, degrees. */
 const TOP_TURN = 60;
@@ -32,13 +37,16 @@ export function createRotorKicks(
     torsions.some(([, a, b]) => (a === j && b === k) || (a === k && b === j));
   const nearness = (j: number, k: number): number => Math.min(distances[j], distances[k]);
   const drives = findDrives(molecule, classes)
-    .filter(({ atoms: [, j, k] }) => !isDriven(j, k))
+    .filter(({ atoms: [, j, k] }) => !isDriven(j, k) && nearness(j, k) <= FARTHEST_ROTOR)
     .sort((a, b) => nearness(a.atoms[1], a.atoms[2]) - nearness(b.atoms[1], b.atoms[2]))
     .slice(0, MOST_ROTORS);
   const tops = findTops(molecule, classes)
-    .filter(({ j, k }) => !isDriven(j, k))
+    .filter(({ j, k }) => !isDriven(j, k) && nearness(j, k) <= FARTHEST_ROTOR)
     .sort((a, b) => nearness(a.j, a.k) - nearness(b.j, b.k))
     .slice(0, MOST_ROTORS);
+  const paired = tops
+    .filter(({ j, k }) => nearness(j, k) <= FARTHEST_PAIRED_TOP)
+    .slice(0, MOST_PAIRED_TOPS);
 
   return (x) => {
     const kicked: Float64Array[] = [];
@@ -52,10 +60,9 @@ export function createRotorKicks(
         kicked.push(copy);
       }
     }
-    tops.forEach((top, n) => {
-      const copy = turned(x, top);
-      kicked.push(copy);
-      for (const other of tops.slice(n + 1, MOST_PAIRED_TOPS)) kicked.push(turned(copy, other));
+    for (const top of tops) kicked.push(turned(x, top));
+    paired.forEach((top, n) => {
+      for (const other of paired.slice(n + 1)) kicked.push(turned(turned(x, top), other));
     });
     return kicked;
   };
