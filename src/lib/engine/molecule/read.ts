@@ -1,8 +1,12 @@
 /** The door into the engine: text in, a complete and checked molecule out. */
 import { InputError } from '../errors';
-import { completeMolecule } from './complete';
+import { completeAtoms, finishMolecule, statedConfiguration } from './complete';
+import { refuseSmallTransRings } from './configuration';
 import type { Molecule } from './molecule';
+import { readMolfile } from './read-molfile';
 import { parseSmiles } from './smiles';
+
+export { splitRecords } from './molfile';
 
 /** Longest text that is looked at; 200 atoms take far less. */
 const LONGEST_TEXT = 1_000_000;
@@ -16,7 +20,7 @@ export type MoleculeInput = { readonly smiles: string } | { readonly molfile: st
  */
 export function readMolecule(input: MoleculeInput): Molecule {
   if ('smiles' in input) return readSmiles(checkText(input.smiles));
-  throw new InputError('unreadable', 'Molfiles cannot be read yet.');
+  return readMolfile(checkText(input.molfile));
 }
 
 function checkText(text: unknown): string {
@@ -49,5 +53,8 @@ function readSmiles(text: string): Molecule {
   }
   const raw = parseSmiles(structure);
   raw.name = rest;
-  return completeMolecule(raw, null);
+  const completed = completeAtoms(raw);
+  const { centers, doubleBonds } = statedConfiguration(completed, raw);
+  refuseSmallTransRings(completed.molecule, doubleBonds);
+  return finishMolecule(completed, centers, doubleBonds, null);
 }
