@@ -7,6 +7,7 @@ import type { Molecule } from '../molecule/molecule';
 import { torsionOfBond } from '../molecule/rotatable';
 import { basinPopulations, profileAverage } from '../thermo/basins';
 import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { profileCurve } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import { defaultScanOptions } from '../torsion/scan-result';
 import type { ScanResult, StationaryPoint } from '../torsion/scan-result';
@@ -106,13 +107,9 @@ function readProfile(
       twist: twistOf(molecule, bond, coordinates) ?? 90,
     }))
     .sort((a, b) => a.angle - b.angle);
-  const angles = samples.map(({ angle }) => angle);
-  const energyCurve = createPeriodicCurve(
-    angles,
-    samples.map(({ relative }) => relative),
-  );
+  const energyCurve = profileCurve(scan);
   const overlapCurve = createPeriodicCurve(
-    angles,
+    samples.map(({ angle }) => angle),
     samples.map(({ twist }) => overlapAt(twist)),
   );
   const minima = scan.stationary.filter(({ kind }) => kind === 'minimum');
