@@ -1,6 +1,9 @@
 /** What the rest of the program may use of the engine. */
 export { InputError } from './errors';
 export type { InputErrorCode, InputPlace, InputWarning, InputWarningCode } from './errors';
+export { drawMolecule } from './molecule/drawing';
+export type { Drawing } from './molecule/drawing';
+export { molecularFormula } from './molecule/identity';
 export { readMolecule } from './molecule/read';
 export type { MoleculeInput } from './molecule/read';
 export type { Molecule } from './molecule/molecule';
