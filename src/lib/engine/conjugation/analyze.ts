@@ -23,6 +23,8 @@ import type {
 } from './conjugation';
 import { overlapAt, piAxis, twistAbout } from './pi-axis';
 
+/** Only the lowest conformer counts, so the search looks at what lies low and keeps all of it. */
+const SEARCH_OPTIONS = { ...defaultConformerSearchOptions, window: 4, limit: 500 };
 /** Share of the work that goes into the lowest conformer, for progress. */
 const SEARCH_SHARE = 0.2;
 /** Energies of mirror images differ by rounding only, kcal/mol. */
@@ -38,7 +40,7 @@ export async function analyzeConjugation(
   control: Control,
 ): Promise<ConjugationResult> {
   const { molecule } = forceField;
-  const searchOptions = { ...defaultConformerSearchOptions, temperature, seed };
+  const searchOptions = { ...SEARCH_OPTIONS, seed };
   const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
   const found = findConjugatedBonds(molecule);
   const turning = found.filter(({ inRing }) => !inRing);

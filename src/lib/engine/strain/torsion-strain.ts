@@ -49,7 +49,8 @@ async function torsionStrain(
     bond: [j, k],
     torsion: atoms,
     angle,
-    strain: profileCurve(scan).at(angle) - lowest.energy,
+    // The curve meets its points up to rounding only.
+    strain: Math.max(0, profileCurve(scan).at(angle) - lowest.energy),
     preferredAngle: lowest.angle,
     complete: scan.complete,
   };
