@@ -67,7 +67,7 @@ function isSingleSulfinyl(structure: Structure, sulfur: number): boolean {
 export function sulfurType(structure: Structure, atom: number): number | undefined {
   switch (coordination(structure, atom)) {
     case 4:
-      return AtomType.sulfoneSulfur;
+      return isSulfone(structure, atom) ? AtomType.sulfoneSulfur : undefined;
     case 3:
       return tricoordinateSulfurType(structure, atom);
     case 2:
@@ -80,6 +80,15 @@ export function sulfurType(structure: Structure, atom: number): number | undefin
     default:
       return undefined;
   }
+}
+
+/** True with at least two terminal or doubly bonded neighbors (=O, –O⁻, =N–). */
+function isSulfone(structure: Structure, atom: number): boolean {
+  const unsaturated = new Set([
+    ...bondedBy(structure, atom, 2),
+    ...terminalNeighbors(structure, atom, OXYGEN, SULFUR),
+  ]);
+  return unsaturated.size >= 2;
 }
 
 function tricoordinateSulfurType(structure: Structure, atom: number): number | undefined {
