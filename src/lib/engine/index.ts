@@ -9,6 +9,7 @@ export type { MoleculeInput } from './molecule/read';
 export type { Molecule } from './molecule/molecule';
 export { hasResources, registerResources } from './molecule/resources';
 export { rotatableBonds } from './molecule/rotatable';
+export { stereoisomers } from './molecule/stereoisomers';
 export type { RotatableBond } from './molecule/rotatable';
 export { writeMolfile, writeSdf } from './molecule/write';
 export type { SdfRecord } from './molecule/write';
