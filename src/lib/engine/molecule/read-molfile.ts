@@ -8,6 +8,7 @@ import {
 } from './complete';
 import { drawnConfiguration } from './drawn-configuration';
 import { atomLabel } from './elements';
+import { keepLargestPartOfFile } from './largest-part';
 import type { Molecule, Stereocenter } from './molecule';
 import { parseMolfile, type RawMolfile } from './molfile';
 import { isOddPermutation } from './parity';
@@ -21,9 +22,10 @@ const DRAWN_OVERLAP = 1e-3;
 /** Depth from which coordinates are a geometry, Å. */
 const DEPTH = 1e-3;
 
-/** Reads the first record of a MOL or SDF text. */
-export function readMolfile(text: string): Molecule {
-  const file = parseMolfile(text);
+/** Reads the first record of a MOL or SDF text; of several parts only the largest where that is asked for. */
+export function readMolfile(text: string, largestPart: boolean): Molecule {
+  const written = parseMolfile(text);
+  const file = largestPart ? keepLargestPartOfFile(written) : written;
   // The drawing is read before completion, which may move double bonds.
   const drawn = drawnConfiguration(file);
   const completed = completeAtoms(file.molecule);
