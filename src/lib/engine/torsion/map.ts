@@ -86,23 +86,26 @@ export async function scanTorsionMap(
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, torsions);
   checkTwoBonds(torsions);
-  const { starts, complete } = await findStarts(forceField, seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, torsions, seed, control.part(0, STARTS_SHARE));
+  const { starts } = found;
   for (const atoms of torsions) checkBent(starts[0], atoms);
   const symmetry = findScanSymmetry(forceField, torsions, starts[0], createRandom(seed));
+  const isMirrored = symmetry.exact.some(({ mirror }) => mirror);
+  const all = isMirrored ? starts : [...starts, ...found.mirrored];
   const grid = createGrid(2, step, symmetry.exact);
   const waveControl = control.part(STARTS_SHARE, WAVE_SHARE);
   const isSound = (x: Float64Array): boolean => hasRightStereo(molecule, x);
   const setting = { molecule, drive, grid, classes: symmetryClasses(molecule), isSound };
   const wave = createHeldWave(setting, WAVE_SETTINGS, waveControl);
   const kicks = createKicks(forceField, torsions, seed);
-  const still = await settleWave({ wave, grid, drive, kicks, symmetry }, starts, waveControl);
+  const still = await settleWave({ wave, grid, drive, kicks, symmetry }, all, waveControl);
 
   const cells = readCells(grid, wave);
   const minima = await findMapMinima(
     { forceField, drive, grid, symmetry, cells },
     control.part(WAVE_SHARE, 1),
   );
-  const isComplete = complete && still && !control.expired();
+  const isComplete = found.complete && still && !control.expired();
   return { torsions, step, perAxis: grid.perAxis, cells, minima, complete: isComplete };
 }
 

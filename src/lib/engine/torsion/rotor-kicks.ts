@@ -1,5 +1,6 @@
 /** Other positions of the rotors that a scan does not drive: which of them is best changes along the scan. */
 import { findDrives, setTorsion } from '../conformers/drives';
+import { findInversions, invert } from '../conformers/inversions';
 import { rotateAbout, torsion } from '../geometry';
 import type { Molecule } from '../molecule/molecule';
 import { movedAtoms } from '../molecule/rotatable';
@@ -48,8 +49,22 @@ export function createRotorKicks(
     .filter(({ j, k }) => nearness(j, k) <= FARTHEST_PAIRED_TOP)
     .slice(0, MOST_PAIRED_TOPS);
 
+  const inversions = findInversions(molecule, classes).filter(
+    ({ nitrogen }) => distances[nitrogen] <= FARTHEST_ROTOR,
+  );
+  const swaps = torsions.flatMap(([i, j, k, l]) => [
+    ...invertibleTwins(molecule, classes, i, j),
+    ...invertibleTwins(molecule, classes, l, k),
+  ]);
+
   return (x) => {
     const kicked: Float64Array[] = [];
+    for (const inversion of inversions) {
+      const copy = x.slice();
+      invert(copy, inversion);
+      kicked.push(copy);
+    }
+    for (const [a, b] of swaps) kicked.push(withSwapped(x, a, b));
     for (const drive of drives) {
       const [i, j, k, l] = drive.atoms;
       const now = torsion(x, i, j, k, l);
@@ -71,6 +86,27 @@ export function createRotorKicks(
 function turned(x: Float64Array, { j, k, atoms }: Top): Float64Array {
   const copy = x.slice();
   rotateAbout(copy, atoms, j, k, TOP_TURN);
+  return copy;
+}
+
+/** The hydrogen beside a torsion's end hydrogen on an amine: where the amine inverts, the two change places. */
+function invertibleTwins(
+  molecule: Molecule,
+  classes: Readonly<Int32Array>,
+  end: number,
+  center: number,
+): [number, number][] {
+  const isAmine = molecule.atomicNumbers[center] === 7 && molecule.neighbors[center].length === 3;
+  if (!isAmine || molecule.neighbors[end].length > 1) return [];
+  return molecule.neighbors[center]
+    .filter(({ atom }) => atom !== end && classes[atom] === classes[end])
+    .map(({ atom }) => [end, atom]);
+}
+
+function withSwapped(x: Float64Array, a: number, b: number): Float64Array {
+  const copy = x.slice();
+  copy.set(x.subarray(3 * a, 3 * a + 3), 3 * b);
+  copy.set(x.subarray(3 * b, 3 * b + 3), 3 * a);
   return copy;
 }
 

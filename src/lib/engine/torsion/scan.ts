@@ -41,24 +41,26 @@ export async function scanTorsion(
   checkStep(step, SMALLEST_STEP);
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, [torsion]);
-  const { starts, complete } = await findStarts(forceField, seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, [torsion], seed, control.part(0, STARTS_SHARE));
+  const { starts } = found;
   checkBent(starts[0], torsion);
   const classes = symmetryClasses(molecule);
   const character = characterizeBond(molecule, torsion, classes);
   if (!relaxed) return scanRigidly(forceField, drive, starts[0], step, character);
 
   const symmetry = findScanSymmetry(forceField, [torsion], starts[0], createRandom(seed));
+  const all = symmetry.exact.length > 0 ? starts : [...starts, ...found.mirrored];
   const grid = createGrid(1, step, symmetry.exact);
   const waveControl = control.part(STARTS_SHARE, WAVE_SHARE);
   const isSound = (x: Float64Array): boolean => hasRightStereo(molecule, x);
   const setting = { molecule, drive, grid, classes, isSound };
   const wave = createHeldWave(setting, WAVE_SETTINGS, waveControl);
   const kicks = createKicks(forceField, [torsion], seed);
-  const still = await settleWave({ wave, grid, drive, kicks, symmetry }, starts, waveControl);
+  const still = await settleWave({ wave, grid, drive, kicks, symmetry }, all, waveControl);
 
   const points = readPoints(grid, drive, wave);
-  const found = await findStationaryPoints(
-    { forceField, drive, character, symmetry, points, starts },
+  const extremes = await findStationaryPoints(
+    { forceField, drive, character, symmetry, points, starts: all },
     control.part(WAVE_SHARE, 1),
   );
   return {
@@ -66,12 +68,12 @@ export async function scanTorsion(
     relaxed: true,
     step,
     points,
-    stationary: found.stationary,
+    stationary: extremes.stationary,
     symmetry: {
       mirror: symmetry.exact.length > 0,
       period: periodOf(symmetry),
     },
-    complete: complete && still && found.complete,
+    complete: found.complete && still && extremes.complete,
   };
 }
 
