@@ -16,7 +16,7 @@ export interface SymmetryQuestion {
 }
 
 /** Assignments tried before the search gives up: symmetry that is so hard to see is not worth the time. */
-const MOST_TRIALS = 20000;
+const MOST_TRIALS = 5000;
 
 /**
  * Returns `source`, where atom a of the transformed geometry takes the place of atom source[a], with source[from] = to

@@ -16,7 +16,7 @@ const MOST_STARTS = 12;
 const START_WINDOW = 6;
 
 export interface ScanStarts {
-  /** Å, 3N, lowest first; never empty. */
+  /** Å, 3N: conformers, lowest first, and the geometry given; never empty. */
   readonly starts: readonly Float64Array[];
   /** Their mirror images, as far as the molecule is achiral. */
   readonly mirrored: readonly Float64Array[];
@@ -49,6 +49,7 @@ export async function findStarts(
   const numbering = createNumbering(molecule, torsions, geometries[0]);
   const numbered = (x: Float64Array): Float64Array[] => numbering(x) ?? [];
   const starts = geometries.flatMap(numbered);
+  if (molecule.coordinates) starts.push(Float64Array.from(molecule.coordinates));
   return {
     starts: starts.length > 0 ? starts : geometries,
     mirrored: geometries.map(mirrorImage).flatMap(numbered),

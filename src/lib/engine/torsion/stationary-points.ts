@@ -109,6 +109,7 @@ async function findMinima(setting: ProfileSetting, control: Control): Promise<Pr
 
   const minima: ProfileSample[] = [];
   for (const [n, candidate] of candidates.entries()) {
+    if (control.expired() && minima.length > 0) break;
     control.report(n / candidates.length, 'minima');
     const isKnown = minima.some(
       ({ angle, energy }) =>
