@@ -71,15 +71,16 @@ const bond = z
   .tuple([atom, atom], { error: bondError })
   .refine(([j, k]) => j !== k, { error: bondError });
 
-const stepError = 'The step must divide 360 degrees evenly and lie between 1 and 120 degrees.';
-const step = z
-  .number({ error: stepError })
-  .min(1, { error: stepError })
-  .max(120, { error: stepError })
-  .refine((degrees) => Math.abs(360 / degrees - Math.round(360 / degrees)) < 1e-9, {
-    error: stepError,
-  })
-  .default(15);
+/** A step of a grid over the circle, degrees. */
+function step(least: number, usual: number) {
+  const error = `The step must divide 360 degrees evenly and lie between ${least} and 120 degrees.`;
+  return z
+    .number({ error })
+    .min(least, { error })
+    .max(120, { error })
+    .refine((degrees) => Math.abs(360 / degrees - Math.round(360 / degrees)) < 1e-9, { error })
+    .default(usual);
+}
 
 export const energyTaskSchema = exactly('An energy task', {
   kind: z.literal('energy'),
@@ -104,7 +105,7 @@ export const conformersTaskSchema = exactly('A conformers task', {
 /** The settings of a scan, whichever bond it turns. */
 export const scanSettings = {
   ...model,
-  step,
+  step: step(1, 15),
   relaxed: yesOrNo('"relaxed"').default(true),
   temperature,
   seed,
@@ -117,6 +118,20 @@ export const scanTaskSchema = exactly('A scan task', {
   ...scanSettings,
 }).refine((task) => (task.torsion === undefined) !== (task.bond === undefined), {
   error: 'A scan task needs either "torsion" [i, j, k, l] or "bond" [j, k].',
+});
+
+const mapError = 'A map task needs "torsions": two torsions [i, j, k, l] about different bonds.';
+
+export const mapTaskSchema = exactly('A map task', {
+  kind: z.literal('map'),
+  ...model,
+  torsions: z
+    .tuple([torsion, torsion], { error: mapError })
+    .refine(([[, a, b], [, c, d]]) => !((a === c && b === d) || (a === d && b === c)), {
+      error: mapError,
+    }),
+  step: step(5, 30),
+  seed,
 });
 
 export const conjugationTaskSchema = exactly('A conjugation task', {
@@ -142,12 +157,13 @@ export const taskSchema = z.discriminatedUnion(
     minimizeTaskSchema,
     conformersTaskSchema,
     scanTaskSchema,
+    mapTaskSchema,
     conjugationTaskSchema,
     strainTaskSchema,
   ],
   {
     error:
-      'The task must be an object whose "kind" is one of: energy, minimize, conformers, scan, conjugation, strain.',
+      'The task must be an object whose "kind" is one of: energy, minimize, conformers, scan, map, conjugation, strain.',
   },
 );
 

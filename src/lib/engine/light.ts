@@ -8,4 +8,5 @@ export * from './thermo/rates';
 export * from './torsion/fourier';
 export * from './torsion/klyne-prelog';
 export * from './torsion/path';
+export * from './torsion/profile';
 export * from './units';

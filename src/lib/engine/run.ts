@@ -8,6 +8,7 @@ import { writeMolfile } from './molecule/write';
 import { searchForConformers } from './tasks/conformers';
 import { describeConjugation } from './tasks/conjugation';
 import { computeEnergy } from './tasks/energy';
+import { mapBonds } from './tasks/map';
 import { minimizeGeometry } from './tasks/minimize';
 import type { Request, Task, TaskKind } from './tasks/request';
 import type { Fields, FieldsByKind, Outcome, Provenance, Result } from './tasks/result';
@@ -62,6 +63,8 @@ function runTask(forceField: ForceField, task: Task, control: Control): Promise<
       return searchForConformers(forceField, task, control);
     case 'scan':
       return scanBond(forceField, task, control);
+    case 'map':
+      return mapBonds(forceField, task, control);
     case 'conjugation':
       return describeConjugation(forceField, task, control);
     case 'strain':

@@ -24,16 +24,19 @@ export async function initialGeometry(
   seed: number,
   control: Control = unattended,
 ): Promise<Float64Array> {
-  return embedSoundly(molecule, createEmbedder(molecule), createRandom(seed), control);
+  const random = createRandom(seed);
+  const geometry = await embedSoundly(molecule, createEmbedder(molecule), random, control);
+  if (geometry) return geometry;
+  throw new InputError('no-conformer', 'No geometry with the configuration given could be built.');
 }
 
-/** The first of several embeddings that is sound, or else the least strained with the right configuration. */
+/** The first of several embeddings that is sound, or else the least strained with the right configuration; null without one. */
 export async function embedSoundly(
   molecule: Molecule,
   embedder: Embedder,
   random: Random,
   control: Control,
-): Promise<Float64Array> {
+): Promise<Float64Array | null> {
   let best: Float64Array | null = null;
   let bestError = Infinity;
   for (let attempt = 0; attempt < ATTEMPTS && bestError > GOOD_ERROR; attempt++) {
@@ -41,12 +44,6 @@ export async function embedSoundly(
     if (error >= bestError || !hasRightStereo(molecule, coordinates)) continue;
     best = coordinates;
     bestError = error;
-  }
-  if (!best) {
-    throw new InputError(
-      'no-conformer',
-      'No geometry with the configuration given could be built.',
-    );
   }
   return best;
 }

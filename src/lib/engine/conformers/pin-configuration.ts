@@ -26,6 +26,8 @@ export function pinConfiguration(molecule: Molecule, x: Float64Array): Molecule 
 function pinCenter(molecule: Molecule, x: Float64Array, atom: number): Stereocenter[] {
   const around = molecule.neighbors[atom].map((neighbor) => neighbor.atom);
   if (around.length < 3 || around.length > 4) return [];
+  // An amine's pyramid is no configuration: it inverts, and its forms are conformers.
+  if (molecule.atomicNumbers[atom] === 7 && around.length === 3) return [];
   const [a, b, c, d = -1] = around;
   const neighbors = [a, b, c, d] as const;
   return [{ atom, neighbors, clockwise: handedness(x, atom, neighbors) > 0 }];

@@ -13,7 +13,7 @@ import { planSearch } from './effort';
 import { createEmbedder } from './embed';
 import type { Embedder } from './embed';
 import { finish } from './finish';
-import { embedSoundly } from './initial-geometry';
+import { embedSoundly, initialGeometry } from './initial-geometry';
 import { pinConfiguration } from './pin-configuration';
 import type { Found, Pool } from './pool';
 import { createPool } from './pool';
@@ -48,7 +48,7 @@ export async function searchConformers(
 ): Promise<ConformerSearchResult> {
   const random = createRandom(options.seed);
   const given = forceField.molecule;
-  const first = await embedSoundly(given, createEmbedder(given), random, control);
+  const first = await initialGeometry(given, options.seed, control);
   const molecule = pinConfiguration(given, first);
   const classes = symmetryClasses(molecule);
   const graph = visibleGraph(molecule, classes);
@@ -83,7 +83,8 @@ async function collectSeeds(search: Search, control: Control): Promise<void> {
   const { plan, embedder, random, molecule } = search;
   for (let n = 0; n < plan.embeddings && !control.expired(); n++) {
     control.report(n / plan.embeddings, 'Building first shapes');
-    await tryGeometry(search, await embedSoundly(molecule, embedder, random, control), control);
+    const x = await embedSoundly(molecule, embedder, random, control);
+    if (x) await tryGeometry(search, x, control);
   }
 }
 

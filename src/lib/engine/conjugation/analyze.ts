@@ -7,6 +7,7 @@ import type { Molecule } from '../molecule/molecule';
 import { torsionOfBond } from '../molecule/rotatable';
 import { basinPopulations, profileAverage } from '../thermo/basins';
 import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { profileCurve } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import { defaultScanOptions } from '../torsion/scan-result';
 import type { ScanResult, StationaryPoint } from '../torsion/scan-result';
@@ -22,6 +23,8 @@ import type {
 } from './conjugation';
 import { overlapAt, piAxis, twistAbout } from './pi-axis';
 
+/** Only the lowest conformer counts, so the search looks at what lies low and keeps all of it. */
+const SEARCH_OPTIONS = { ...defaultConformerSearchOptions, window: 4, limit: 500 };
 /** Share of the work that goes into the lowest conformer, for progress. */
 const SEARCH_SHARE = 0.2;
 /** Energies of mirror images differ by rounding only, kcal/mol. */
@@ -37,7 +40,7 @@ export async function analyzeConjugation(
   control: Control,
 ): Promise<ConjugationResult> {
   const { molecule } = forceField;
-  const searchOptions = { ...defaultConformerSearchOptions, temperature, seed };
+  const searchOptions = { ...SEARCH_OPTIONS, seed };
   const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
   const found = findConjugatedBonds(molecule);
   const turning = found.filter(({ inRing }) => !inRing);
@@ -106,13 +109,9 @@ function readProfile(
       twist: twistOf(molecule, bond, coordinates) ?? 90,
     }))
     .sort((a, b) => a.angle - b.angle);
-  const angles = samples.map(({ angle }) => angle);
-  const energyCurve = createPeriodicCurve(
-    angles,
-    samples.map(({ relative }) => relative),
-  );
+  const energyCurve = profileCurve(scan);
   const overlapCurve = createPeriodicCurve(
-    angles,
+    samples.map(({ angle }) => angle),
     samples.map(({ twist }) => overlapAt(twist)),
   );
   const minima = scan.stationary.filter(({ kind }) => kind === 'minimum');

@@ -45,6 +45,7 @@ function piElectrons(bonding: Bonding, ring: readonly number[], aromaticBonds: U
   const bonds = ringBonds(bonding, ring);
   let electrons = 0;
   for (const atom of ring) {
+    if (bonding.neighbors[atom].length > 3) return NaN;
     const multiple = bonding.neighbors[atom].filter(({ bond }) => bonding.orders[bond] > 1);
     if (multiple.length === 0 && ring.length === 5 && bearsLonePair(bonding, atom)) {
       electrons += 2;
@@ -62,9 +63,5 @@ function piElectrons(bonding: Bonding, ring: readonly number[], aromaticBonds: U
 }
 
 function bearsLonePair(bonding: Bonding, atom: number): boolean {
-  return (
-    LONE_PAIR_ELEMENTS.includes(bonding.elements[atom]) &&
-    bonding.charges[atom] <= 0 &&
-    bonding.neighbors[atom].length <= 3
-  );
+  return LONE_PAIR_ELEMENTS.includes(bonding.elements[atom]) && bonding.charges[atom] <= 0;
 }

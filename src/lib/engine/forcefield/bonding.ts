@@ -89,7 +89,8 @@ function cumulateDiazo(bonding: Bonding, center: number): void {
       bonding.elements[end.atom] === NITROGEN &&
       isTerminal(bonding, end.atom) &&
       bonding.orders[other.bond] === 1 &&
-      bonding.charges[other.atom] === -1;
+      bonding.charges[other.atom] === -1 &&
+      bonding.elements[other.atom] !== OXYGEN;
     if (!isDiazo) continue;
     bonding.orders[end.bond] = 2;
     bonding.charges[end.atom] = -1;

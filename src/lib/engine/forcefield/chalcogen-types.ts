@@ -36,15 +36,16 @@ function terminalOxygenType(
   center: number,
 ): number | undefined {
   const isDouble = bondedBy(structure, atom, 2).length === 1;
+  const isOxide = structure.charges[atom] === -1;
   switch (structure.elements[center]) {
     case HYDROGEN:
-      return AtomType.oxideOxygen;
+      return isOxide ? AtomType.oxideOxygen : undefined;
     case CARBON:
       if (isCarboxylate(structure, center)) return AtomType.terminalOxygen;
-      return isDouble ? AtomType.doubleOxygen : AtomType.oxideOxygen;
+      break;
     case NITROGEN:
-      if (structure.charges[center] === 1) return AtomType.terminalOxygen;
-      return isDouble ? AtomType.doubleOxygen : AtomType.oxideOxygen;
+      if (structure.charges[center] !== 1) break;
+      return coordination(structure, center) > 2 ? AtomType.terminalOxygen : undefined;
     case SULFUR:
       return isSingleSulfinyl(structure, center) ? AtomType.doubleOxygen : AtomType.terminalOxygen;
     case PHOSPHORUS:
@@ -53,6 +54,8 @@ function terminalOxygenType(
     default:
       return undefined;
   }
+  if (isDouble) return AtomType.doubleOxygen;
+  return isOxide ? AtomType.oxideOxygen : undefined;
 }
 
 /** Sulfur of a sulfoxide or a C=S=O group: at most three-coordinate, with one terminal chalcogen. */
@@ -67,7 +70,7 @@ function isSingleSulfinyl(structure: Structure, sulfur: number): boolean {
 export function sulfurType(structure: Structure, atom: number): number | undefined {
   switch (coordination(structure, atom)) {
     case 4:
-      return AtomType.sulfoneSulfur;
+      return isSulfone(structure, atom) ? AtomType.sulfoneSulfur : undefined;
     case 3:
       return tricoordinateSulfurType(structure, atom);
     case 2:
@@ -82,20 +85,41 @@ export function sulfurType(structure: Structure, atom: number): number | undefin
   }
 }
 
+/** True with at least two terminal or doubly bonded neighbors (=O, –O⁻, =N–). */
+function isSulfone(structure: Structure, atom: number): boolean {
+  const unsaturated = new Set([
+    ...bondedBy(structure, atom, 2),
+    ...terminalNeighbors(structure, atom, OXYGEN, SULFUR),
+  ]);
+  return unsaturated.size >= 2;
+}
+
 function tricoordinateSulfurType(structure: Structure, atom: number): number | undefined {
-  const terminal = terminalNeighbors(structure, atom, OXYGEN, SULFUR).length;
-  if (terminal >= 2) {
-    return hasDoubleTo(structure, atom, CARBON) ? AtomType.sulfoneSulfur : AtomType.sulfinateSulfur;
+  const terminal = terminalNeighbors(structure, atom, OXYGEN, SULFUR);
+  if (terminal.length === 2) {
+    if (hasDoubleTo(structure, atom, CARBON)) return AtomType.sulfoneSulfur;
+    const isAnion = terminal.some((other) => structure.charges[other] === -1);
+    return isAnion ? AtomType.sulfinateSulfur : undefined;
   }
-  return hasDoubleTo(structure, atom, OXYGEN, NITROGEN) ? AtomType.sulfoxideSulfur : undefined;
+  return terminal.length < 2 && hasDoubleTo(structure, atom, OXYGEN, NITROGEN)
+    ? AtomType.sulfoxideSulfur
+    : undefined;
 }
 
 function terminalSulfurType(structure: Structure, atom: number): number | undefined {
   const center = structure.neighbors[atom][0].atom;
-  if (structure.elements[center] === CARBON && hasDoubleTo(structure, atom, CARBON)) {
-    return isCarboxylate(structure, center) ? AtomType.terminalSulfur : AtomType.doubleSulfur;
+  switch (structure.elements[center]) {
+    case PHOSPHORUS:
+    case SULFUR:
+      return AtomType.terminalSulfur;
+    case CARBON:
+      if (structure.charges[atom] === -1 || isCarboxylate(structure, center)) {
+        return AtomType.terminalSulfur;
+      }
+      return hasDoubleTo(structure, atom, CARBON) ? AtomType.doubleSulfur : undefined;
+    default:
+      return undefined;
   }
-  return AtomType.terminalSulfur;
 }
 
 /** The type of a phosphorus; undefined when MMFF94 has none. */

@@ -1,6 +1,9 @@
-/** Amidinium and guanidinium groups, whose charge MMFF94 spreads over their nitrogens (part II, table II). */
+/**
+ * Amidinium, guanidinium and azolium groups, over whose nitrogens MMFF94 spreads the charge (part I, table III; part II,
+ * table II). Written so that it does not matter on which of the equivalent nitrogens the charge was drawn.
+ */
 import type { Structure } from './structure';
-import { bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
+import { areBonded, bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
 
 const CARBON = 6;
 const NITROGEN = 7;
@@ -14,12 +17,19 @@ const OXYGEN = 8;
 export function cationicNitrogens(structure: Structure, carbon: number): number[] {
   if (structure.elements[carbon] !== CARBON || coordination(structure, carbon) !== 3) return [];
   if (inAromaticRing(structure, carbon) && !inAromaticRing(structure, carbon, 5)) return [];
-  const cation = bondedBy(structure, carbon, 2).filter((atom) => isSharer(structure, carbon, atom));
-  if (cation.length !== 1 || structure.charges[cation[0]] !== 1) return [];
-  const others = bondedBy(structure, carbon, 1).filter(
-    (atom) => isSharer(structure, carbon, atom) && structure.charges[atom] === 0,
+  const candidates = structure.neighbors[carbon]
+    .map(({ atom }) => atom)
+    .filter((atom) => isTrigonal(structure, atom))
+    .filter(
+      (atom) =>
+        !inAromaticRing(structure, atom) || sharedFiveRings(structure, carbon, atom).length > 0,
+    );
+  const cations = candidates.filter((atom) => isIminium(structure, carbon, atom));
+  if (cations.length === 0) return [];
+  const others = candidates.filter(
+    (atom) => !cations.includes(atom) && structure.charges[atom] === 0,
   );
-  return [...cation, ...others];
+  return [...cations, ...others];
 }
 
 /** How many nitrogens share the charge with this one, itself included, in its largest group; 0 outside any. */
@@ -31,15 +41,48 @@ export function cationicGroupSize(structure: Structure, nitrogen: number): numbe
   return Math.max(0, ...sizes);
 }
 
-function isSharer(structure: Structure, carbon: number, atom: number): boolean {
-  if (structure.elements[atom] !== NITROGEN || coordination(structure, atom) !== 3) return false;
-  if (terminalNeighbors(structure, atom, OXYGEN).length > 0) return false;
-  return !inAromaticRing(structure, atom) || shareFiveRing(structure, carbon, atom);
+/**
+ * The nitrogens over which a five-membered aromatic ring spreads a positive charge: the charged one, and the one that
+ * gives its lone pair to the ring. Empty for a ring without charged three-coordinate nitrogen.
+ */
+export function azoliumNitrogens(structure: Structure, ring: readonly number[]): number[] {
+  const trigonal = ring.filter((atom) => isTrigonal(structure, atom));
+  if (!trigonal.some((atom) => structure.charges[atom] === 1)) return [];
+  return trigonal.filter(
+    (atom) => structure.charges[atom] === 1 || bondedBy(structure, atom, 2).length === 0,
+  );
 }
 
-/** True when both atoms are in one aromatic ring of five. */
-function shareFiveRing(structure: Structure, a: number, b: number): boolean {
-  return structure.aromaticRings.some(
+/** The five-membered aromatic rings that hold both atoms. */
+function sharedFiveRings(structure: Structure, a: number, b: number): (readonly number[])[] {
+  return structure.aromaticRings.filter(
     (ring) => ring.length === 5 && ring.includes(a) && ring.includes(b),
   );
+}
+
+/** Three-coordinate nitrogen that bears no oxide. */
+function isTrigonal(structure: Structure, atom: number): boolean {
+  return (
+    structure.elements[atom] === NITROGEN &&
+    coordination(structure, atom) === 3 &&
+    terminalNeighbors(structure, atom, OXYGEN).length === 0
+  );
+}
+
+/** True when C=N⁺ is drawn between the two, or would be with the charge on the other nitrogen of an azolium ring. */
+function isIminium(structure: Structure, carbon: number, nitrogen: number): boolean {
+  if (structure.charges[nitrogen] === 1 && bondedBy(structure, carbon, 2).includes(nitrogen)) {
+    return true;
+  }
+  return sharedFiveRings(structure, carbon, nitrogen).some((ring) => {
+    const sharers = azoliumNitrogens(structure, ring);
+    if (!sharers.includes(nitrogen)) return false;
+    return sharers
+      .filter((other) => other !== nitrogen)
+      .some(
+        (other) =>
+          areBonded(structure, carbon, other) ||
+          (structure.charges[nitrogen] === 0 && areBonded(structure, nitrogen, other)),
+      );
+  });
 }

@@ -1,6 +1,6 @@
 /** Types of atoms in aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
-import { cationicGroupSize, cationicNitrogens } from './delocalized-cations';
+import { azoliumNitrogens, cationicNitrogens } from './delocalized-cations';
 import type { Structure } from './structure';
 import { bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
 
@@ -9,7 +9,10 @@ const NITROGEN = 7;
 const OXYGEN = 8;
 const SULFUR = 16;
 
-/** The type of an atom in an aromatic ring; undefined for an atom that is in none, or that MMFF94 does not know there. */
+/**
+ * The type that an aromatic ring gives an atom; undefined for an atom that is in none, or that keeps the type it has
+ * outside, as the oxygen of pyrylium does.
+ */
 export function aromaticType(structure: Structure, atom: number): number | undefined {
   // An atom of both a five- and a six-membered ring, as in indole, is typed by the five-membered one.
   if (inAromaticRing(structure, atom, 5)) return fiveRingType(structure, atom);
@@ -40,9 +43,8 @@ function fiveRingType(structure: Structure, atom: number): number | undefined {
 }
 
 function fiveRingCarbonType(structure: Structure, atom: number): number {
-  const rings = fiveRingsOf(structure, atom);
   if (cationicNitrogens(structure, atom).length > 1) return AtomType.imidazoliumCarbon;
-  if (rings.some((ring) => isAnionic(structure, ring) || isDelocalizedCation(structure, ring))) {
+  if (fiveRingsOf(structure, atom).some((ring) => isAnionic(structure, ring))) {
     return AtomType.fiveRingCarbon;
   }
   return byDistance(structure, atom, {
@@ -54,14 +56,13 @@ function fiveRingCarbonType(structure: Structure, atom: number): number {
 
 function fiveRingNitrogenType(structure: Structure, atom: number): number {
   const rings = fiveRingsOf(structure, atom);
-  if (rings.some((ring) => isAnionic(structure, ring))) return AtomType.anionicRingNitrogen;
   if (coordination(structure, atom) === 3) {
     if (isOxide(structure, atom)) return AtomType.fiveRingOxideNitrogen;
-    const isCationic =
-      structure.charges[atom] === 1 || cationicGroupSize(structure, atom) > 1;
-    return isCationic ? AtomType.imidazoliumNitrogen : AtomType.pyrroleNitrogen;
+    return rings.some((ring) => azoliumNitrogens(structure, ring).includes(atom))
+      ? AtomType.imidazoliumNitrogen
+      : AtomType.pyrroleNitrogen;
   }
-  if (rings.some((ring) => isDelocalizedCation(structure, ring))) return AtomType.fiveRingNitrogen;
+  if (rings.some((ring) => isAnionic(structure, ring))) return AtomType.anionicRingNitrogen;
   return byDistance(structure, atom, {
     alpha: AtomType.alphaNitrogen,
     beta: AtomType.betaNitrogen,
@@ -78,7 +79,7 @@ function isOxide(structure: Structure, atom: number): boolean {
   return terminalNeighbors(structure, atom, OXYGEN).length > 0;
 }
 
-/** Picks a type by the distance to the atom that gives its lone pair to the ring, over all rings of the atom. */
+/** Picks a type by the distances to the atoms that give their lone pair to the ring, over all rings of the atom. */
 function byDistance(
   structure: Structure,
   atom: number,
@@ -87,31 +88,27 @@ function byDistance(
   let alpha = false;
   let beta = false;
   for (const ring of fiveRingsOf(structure, atom)) {
-    const size = ring.length;
-    const donor = ring.findIndex((other) => isDonor(structure, other));
-    const steps = Math.abs(donor - ring.indexOf(atom));
-    if (Math.min(steps, size - steps) === 1) alpha = true;
-    else beta = true;
+    const at = ring.indexOf(atom);
+    for (const donor of lonePairDonors(structure, ring)) {
+      const steps = Math.abs(ring.indexOf(donor) - at);
+      if (Math.min(steps, ring.length - steps) === 1) alpha = true;
+      else beta = true;
+    }
   }
   if (alpha && beta) return types.mixed;
   return alpha ? types.alpha : types.beta;
 }
 
-/** The atom of a five-membered aromatic ring without a double bond. */
-function isDonor(structure: Structure, atom: number): boolean {
-  return bondedBy(structure, atom, 2).length === 0;
+/** The atom of a ring without a double bond; in an azolium ring, the two nitrogens that may take that part. */
+function lonePairDonors(structure: Structure, ring: readonly number[]): number[] {
+  const donors = ring.filter((atom) => bondedBy(structure, atom, 2).length === 0);
+  const sharers = azoliumNitrogens(structure, ring);
+  return donors.some((atom) => sharers.includes(atom)) ? sharers : donors;
 }
 
 /** True for a ring whose sextet is completed by a negative nitrogen. */
 function isAnionic(structure: Structure, ring: readonly number[]): boolean {
   return ring.some(
     (atom) => structure.charges[atom] === -1 && structure.elements[atom] === NITROGEN,
-  );
-}
-
-/** True for an imidazolium-like ring: N–C=N⁺ with both nitrogens in the ring and three-coordinate. */
-function isDelocalizedCation(structure: Structure, ring: readonly number[]): boolean {
-  return ring.some(
-    (atom) => cationicNitrogens(structure, atom).filter((other) => ring.includes(other)).length > 1,
   );
 }

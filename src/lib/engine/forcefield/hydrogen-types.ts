@@ -23,7 +23,6 @@ const onNitrogen: Readonly<Record<number, number>> = {
   [AtomType.enamineNitrogen]: AtomType.hydrogenOnAmide,
   [AtomType.sulfonamideNitrogen]: AtomType.hydrogenOnAmide,
   [AtomType.sulfoximineNitrogen]: AtomType.hydrogenOnAmide,
-  [AtomType.nitroNitrogen]: AtomType.hydrogenOnAmide,
   [AtomType.ammoniumNitrogen]: AtomType.hydrogenOnCationicNitrogen,
   [AtomType.iminiumNitrogen]: AtomType.hydrogenOnCationicNitrogen,
   [AtomType.amidiniumNitrogen]: AtomType.hydrogenOnCationicNitrogen,
@@ -77,7 +76,7 @@ function hydroxylType(structure: Structure, oxygen: number): number {
     case SULFUR:
       return AtomType.hydrogenOnSulfurAcid;
     case CARBON:
-      if (hasDoubleTo(structure, other, OXYGEN, SULFUR)) return AtomType.acidHydrogen;
+      if (hasDoubleTo(structure, other, OXYGEN)) return AtomType.acidHydrogen;
       return inAromaticRing(structure, other) || hasDoubleTo(structure, other, CARBON, NITROGEN)
         ? AtomType.hydrogenOnEnol
         : AtomType.hydroxylHydrogen;

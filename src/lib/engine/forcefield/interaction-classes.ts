@@ -2,6 +2,7 @@
 import { AtomType } from './atom-types';
 import type { Parameters } from './parameters';
 import type { Structure } from './structure';
+import { areBonded } from './structure';
 
 /** 1 for a single bond between two multiply bonded atoms that is no edge of an aromatic ring, 0 otherwise. */
 export function bondClass(
@@ -19,11 +20,6 @@ export function bondClass(
     (first.singleBetweenMultiple && second.singleBetweenMultiple) ||
     (first.aromatic && second.aromatic);
   return isJoined ? 1 : 0;
-}
-
-/** True when two atoms are bonded. */
-export function areBonded(structure: Structure, i: number, j: number): boolean {
-  return structure.neighbors[i].some(({ atom }) => atom === j);
 }
 
 /** 3 or 4 when the angle i-j-k lies in a ring of that size, 0 otherwise. */

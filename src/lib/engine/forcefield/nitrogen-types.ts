@@ -111,7 +111,7 @@ function makesEnamine(structure: Structure, atom: number): boolean {
 function digonalType(structure: Structure, atom: number): number | undefined {
   if (structure.charges[atom] === -1) return AtomType.anionicNitrogen;
   if (structure.charges[atom] === 1) {
-    if (bondedBy(structure, atom, 3).length === 1) return AtomType.diazoniumNitrogen;
+    if (isDiazoniumOrIsonitrile(structure, atom)) return AtomType.diazoniumNitrogen;
     return bondedBy(structure, atom, 2).length === 2 ? AtomType.cumulatedNitrogen : undefined;
   }
   if (hasDoubleTo(structure, atom, OXYGEN)) return AtomType.nitrosoNitrogen;
@@ -122,10 +122,17 @@ function digonalType(structure: Structure, atom: number): number | undefined {
     case 4:
       return AtomType.sulfoximineNitrogen;
     case 3:
-      return AtomType.sulfonamideNitrogen;
+      return structure.neighbors[atom].some((next) => isStrongAcceptor(structure, next.atom))
+        ? AtomType.sulfonamideNitrogen
+        : undefined;
     default:
       return undefined;
   }
+}
+
+/** –N⁺≡N or –N⁺≡C⁻; a nitrilium ion, –N⁺≡C–, is neither. */
+function isDiazoniumOrIsonitrile(structure: Structure, atom: number): boolean {
+  return bondedBy(structure, atom, 3).some((other) => coordination(structure, other) === 1);
 }
 
 function terminalType(structure: Structure, atom: number): number | undefined {

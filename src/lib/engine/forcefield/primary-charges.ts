@@ -1,6 +1,6 @@
 /** Primary charges: formal charges spread over the atoms that share them (MMFF94 part II, table II). */
 import { AtomType } from './atom-types';
-import { cationicNitrogens } from './delocalized-cations';
+import { azoliumNitrogens, cationicNitrogens } from './delocalized-cations';
 import type { Structure } from './structure';
 import { unsupported } from './typing';
 
@@ -33,7 +33,6 @@ export function primaryCharges(structure: Structure, types: Readonly<Int32Array>
   const charges = Float64Array.from(structure.charges);
   for (let atom = 0; atom < types.length; atom++) {
     spreadOverTerminals(structure, types, charges, atom);
-    spread(charges, cationicNitrogens(structure, atom));
     neutralizePair(structure, types, charges, atom);
   }
   for (const ring of structure.aromaticRings) {
@@ -42,6 +41,7 @@ export function primaryCharges(structure: Structure, types: Readonly<Int32Array>
       ring.filter((atom) => types[atom] === AtomType.anionicRingNitrogen),
     );
   }
+  for (const group of delocalizedCations(structure)) spread(charges, group);
   for (let atom = 0; atom < types.length; atom++) {
     const mayBeCharged = types[atom] >= FIRST_ION_TYPE || CHARGED_TYPES.has(types[atom]);
     if (charges[atom] !== 0 && !mayBeCharged) throw unsupported(structure, atom);
@@ -86,4 +86,21 @@ function neutralizePair(
     return;
   }
   spread(charges, [atom, structure.neighbors[atom][0].atom]);
+}
+
+/** Groups of nitrogens that share a positive charge; those with a nitrogen in common are one group. */
+function delocalizedCations(structure: Structure): number[][] {
+  const found = [
+    ...structure.neighbors.map((_, atom) => cationicNitrogens(structure, atom)),
+    ...structure.aromaticRings
+      .filter((ring) => ring.length === 5)
+      .map((ring) => azoliumNitrogens(structure, ring)),
+  ];
+  let groups: number[][] = [];
+  for (const group of found) {
+    const touching = groups.filter((other) => other.some((atom) => group.includes(atom)));
+    const merged = [...new Set([...touching.flat(), ...group])];
+    groups = [...groups.filter((other) => !touching.includes(other)), merged];
+  }
+  return groups;
 }

@@ -38,6 +38,11 @@ export function coordination(bonding: Bonding, atom: number): number {
   return bonding.neighbors[atom].length;
 }
 
+/** True when two atoms are bonded. */
+export function areBonded(bonding: Bonding, i: number, j: number): boolean {
+  return bonding.neighbors[i].some(({ atom }) => atom === j);
+}
+
 /** Atoms bonded to `atom` by a bond of the given order. */
 export function bondedBy(bonding: Bonding, atom: number, order: number): number[] {
   return bonding.neighbors[atom]

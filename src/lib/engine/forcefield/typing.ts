@@ -9,7 +9,7 @@ import { aromaticType } from './heteroaromatic-types';
 import { hydrogenType } from './hydrogen-types';
 import { nitrogenType } from './nitrogen-types';
 import type { Structure } from './structure';
-import { coordination, inAromaticRing } from './structure';
+import { coordination } from './structure';
 
 /** Monatomic ions by atomic number and charge. */
 const ionTypes: Readonly<Record<string, number>> = {
@@ -71,7 +71,8 @@ function heavyType(structure: Structure, atom: number): number | undefined {
     const ion = ionTypes[`${element}:${structure.charges[atom]}`];
     if (ion !== undefined) return ion;
   }
-  if (inAromaticRing(structure, atom)) return aromaticType(structure, atom);
+  const aromatic = aromaticType(structure, atom);
+  if (aromatic !== undefined) return aromatic;
   switch (element) {
     case 6:
       return carbonType(structure, atom);

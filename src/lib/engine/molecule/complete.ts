@@ -1,24 +1,35 @@
 /** From what the text says to a complete molecule: double bonds, charges, hydrogens, configuration. */
 import { InputError, type InputWarning } from '../errors';
-import { createMolecule } from './build';
-import { resolveConfiguration } from './configuration';
+import { createMolecule, type MoleculeParts } from './build';
+import { resolveConfiguration, type Configuration } from './configuration';
 import { atomLabel } from './elements';
 import { kekulize } from './kekulize';
 import { ATOM_LIMIT } from './limits';
-import type { Bond, Molecule, Stereobond, Stereocenter } from './molecule';
+import {
+  bondBetween,
+  type Bond,
+  type Molecule,
+  type Stereobond,
+  type Stereocenter,
+} from './molecule';
 import { isOddPermutation } from './parity';
+import { isLinear } from './pi-systems';
 import type { RawCenter, RawMolecule } from './raw';
 import { countMissingHydrogens, separateCharges } from './valence';
 
+/** A structure with all its atoms and bonds, whose configuration is still to be settled. */
+export interface CompletedAtoms {
+  readonly tables: MoleculeParts;
+  readonly molecule: Molecule;
+  /** For each given atom the first hydrogen it was given, -1 for none. */
+  readonly firstHydrogen: readonly number[];
+}
+
 /**
- * Completes a structure: places the double bonds of aromatic systems, adds the missing hydrogens after the atoms given
- * and keeps the configurations that matter. Throws InputError for radicals, wrong valences, mixtures and too many atoms.
+ * Completes a structure: places the double bonds of aromatic systems and adds the missing hydrogens after the atoms
+ * given. Throws InputError for radicals, wrong valences, mixtures and too many atoms.
  */
-export function completeMolecule(
-  raw: RawMolecule,
-  coordinates: Float64Array | null,
-  remarks: readonly InputWarning[] = [],
-): Molecule {
+export function completeAtoms(raw: RawMolecule): CompletedAtoms {
   refuseMixture(raw);
   kekulize(raw);
   separateCharges(raw);
@@ -31,17 +42,38 @@ export function completeMolecule(
     );
   }
   const { tables, firstHydrogen } = withHydrogens(raw, hydrogens);
-  const bare = createMolecule(tables);
-  const configuration = resolveConfiguration(
-    bare,
-    raw.centers.map((center) => completeCenter(center, firstHydrogen)),
-    completeDoubleBonds(raw, bare),
-  );
+  return { tables, molecule: createMolecule(tables), firstHydrogen };
+}
+
+/** The configurations the text states, with added hydrogens in the places left open for them. */
+export function statedConfiguration(
+  { molecule, firstHydrogen }: CompletedAtoms,
+  raw: Pick<RawMolecule, 'centers' | 'doubleBonds'>,
+): { centers: Stereocenter[]; doubleBonds: Stereobond[] } {
+  return {
+    centers: raw.centers.map((center) => completeCenter(center, firstHydrogen)),
+    doubleBonds: raw.doubleBonds.map(({ atoms, cis }) => ({
+      bond: bondBetween(molecule, atoms[1], atoms[2]),
+      atoms,
+      cis,
+    })),
+  };
+}
+
+/** Keeps the configurations that matter, warns of those left open, and freezes the molecule. */
+export function finishMolecule(
+  { tables, molecule }: CompletedAtoms,
+  centers: readonly Stereocenter[],
+  doubleBonds: readonly Stereobond[],
+  coordinates: Float64Array | null,
+  remarks: readonly InputWarning[] = [],
+): Molecule {
+  const configuration = resolveConfiguration(molecule, centers, doubleBonds);
   return createMolecule({
     ...tables,
     ...configuration,
     coordinates,
-    warnings: [...remarks, ...undefinedWarnings(bare, configuration)],
+    warnings: [...remarks, ...undefinedWarnings(molecule, configuration)],
   });
 }
 
@@ -110,25 +142,20 @@ function completeCenter(center: RawCenter, firstHydrogen: readonly number[]): St
   };
 }
 
-function completeDoubleBonds(raw: RawMolecule, molecule: Molecule): Stereobond[] {
-  return raw.doubleBonds.map(({ atoms, cis }) => ({
-    bond: molecule.neighbors[atoms[1]].find(({ atom }) => atom === atoms[2])?.bond ?? -1,
-    atoms,
-    cis,
-  }));
-}
-
 function undefinedWarnings(
   molecule: Molecule,
-  { undefinedCenters, undefinedBonds }: ReturnType<typeof resolveConfiguration>,
+  { undefinedCenters, undefinedBonds }: Configuration,
 ): InputWarning[] {
   const label = (atom: number): string => atomLabel(molecule.atomicNumbers[atom], atom);
   return [
-    ...undefinedCenters.map((atom): InputWarning => ({
-      code: 'undefined-stereocenter',
-      message: `${label(atom)} is a stereocenter whose configuration is not stated; the result holds for one of its forms only.`,
-      atom,
-    })),
+    ...undefinedCenters.map((atom): InputWarning => {
+      const allene = isLinear(molecule, atom);
+      return {
+        code: 'undefined-stereocenter',
+        message: `${label(atom)} is ${allene ? 'the middle of an allene with two mirror-image forms' : 'a stereocenter'} whose configuration is not stated; the result holds for one of its forms only.`,
+        atom,
+      };
+    }),
     ...undefinedBonds.map((bond): InputWarning => {
       const { a, b } = molecule.bonds[bond];
       return {

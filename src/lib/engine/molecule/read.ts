@@ -1,8 +1,13 @@
 /** The door into the engine: text in, a complete and checked molecule out. */
 import { InputError } from '../errors';
-import { completeMolecule } from './complete';
+import { completeAtoms, finishMolecule, statedConfiguration } from './complete';
+import { refuseSmallTransRings } from './configuration';
+import { keepLargestPart } from './largest-part';
 import type { Molecule } from './molecule';
+import { readMolfile } from './read-molfile';
 import { parseSmiles } from './smiles';
+
+export { splitRecords } from './molfile';
 
 /** Longest text that is looked at; 200 atoms take far less. */
 const LONGEST_TEXT = 1_000_000;
@@ -10,13 +15,21 @@ const LONGEST_TEXT = 1_000_000;
 /** A structure as people send it. */
 export type MoleculeInput = { readonly smiles: string } | { readonly molfile: string };
 
+export interface ReadOptions {
+  /** Of a salt or mixture, read the largest part alone; otherwise several parts are an error. */
+  readonly largestPart?: boolean;
+}
+
 /**
  * Reads a SMILES (a name may follow after a space) or the first record of a MOL or SDF file (V2000, V3000). Atoms keep
  * their order; hydrogens that are missing come after them. Throws InputError for everything a person can mend.
  */
-export function readMolecule(input: MoleculeInput): Molecule {
-  if ('smiles' in input) return readSmiles(checkText(input.smiles));
-  throw new InputError('unreadable', 'Molfiles cannot be read yet.');
+export function readMolecule(
+  input: MoleculeInput,
+  { largestPart = false }: ReadOptions = {},
+): Molecule {
+  if ('smiles' in input) return readSmiles(checkText(input.smiles), largestPart);
+  return readMolfile(checkText(input.molfile), largestPart);
 }
 
 function checkText(text: unknown): string {
@@ -33,7 +46,7 @@ function checkText(text: unknown): string {
   return text;
 }
 
-function readSmiles(text: string): Molecule {
+function readSmiles(text: string, largestPart: boolean): Molecule {
   const lines = text.split(/\r\n|\r|\n/).filter((line) => line.trim() !== '');
   if (lines.length > 1) {
     throw new InputError('unreadable', 'The input has several lines; one SMILES is needed.', {
@@ -47,7 +60,11 @@ function readSmiles(text: string): Molecule {
       'The part between bars after the SMILES is an extension that is not read; leave it out.',
     );
   }
-  const raw = parseSmiles(structure);
+  const written = parseSmiles(structure);
+  const raw = largestPart ? keepLargestPart(written) : written;
   raw.name = rest;
-  return completeMolecule(raw, null);
+  const completed = completeAtoms(raw);
+  const { centers, doubleBonds } = statedConfiguration(completed, raw);
+  refuseSmallTransRings(completed.molecule, doubleBonds);
+  return finishMolecule(completed, centers, doubleBonds, null);
 }

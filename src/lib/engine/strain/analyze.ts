@@ -11,6 +11,8 @@ import type { StrainOptions, StrainResult } from './strain';
 import { torsionStrains } from './torsion-strain';
 
 const MAX_EVALUATIONS = 20_000;
+/** Only the lowest conformer counts, so the search looks at what lies low and keeps all of it. */
+const SEARCH_OPTIONS = { ...defaultConformerSearchOptions, window: 4, limit: 500 };
 /** Shares of the work, for progress. */
 const RELAXING_SHARE = 0.05;
 const SEARCH_SHARE = 0.5;
@@ -37,7 +39,7 @@ export async function analyzeStrain(
   control.report(RELAXING_SHARE, 'Searching the lowest conformer');
   const search = await searchConformers(
     forceField,
-    { ...defaultConformerSearchOptions, seed },
+    { ...SEARCH_OPTIONS, seed },
     control.part(RELAXING_SHARE, SEARCH_SHARE),
   );
   const own = await freeMinimum(forceField, relaxed.coordinates, control);

@@ -4,7 +4,7 @@ import { createForceField } from '../forcefield/create';
 import type { ForceField } from '../forcefield/forcefield';
 import { torsion } from '../geometry';
 import { rotatableBonds } from '../molecule/rotatable';
-import { createPeriodicCurve } from '../thermo/periodic-curve';
+import { profileCurve } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import { defaultScanOptions } from '../torsion/scan-result';
 import type { TorsionAtoms } from '../torsion/scan-symmetry';
@@ -44,16 +44,13 @@ async function torsionStrain(
   );
   const samples = [...scan.points, ...scan.stationary];
   const lowest = samples.reduce((best, sample) => (sample.energy < best.energy ? sample : best));
-  const curve = createPeriodicCurve(
-    samples.map((sample) => sample.angle),
-    samples.map((sample) => sample.energy),
-  );
   const angle = torsion(x, i, j, k, l);
   return {
     bond: [j, k],
     torsion: atoms,
     angle,
-    strain: curve.at(angle) - lowest.energy,
+    // The curve meets its points up to rounding only.
+    strain: Math.max(0, profileCurve(scan).at(angle) - lowest.energy),
     preferredAngle: lowest.angle,
     complete: scan.complete,
   };

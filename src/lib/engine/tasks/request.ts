@@ -35,6 +35,18 @@ export interface ScanTask extends ForceFieldSettings {
   readonly seed: number;
 }
 
+export interface MapTask extends ForceFieldSettings {
+  readonly kind: 'map';
+  /** Two torsions about different bonds. */
+  readonly torsions: readonly [
+    readonly [number, number, number, number],
+    readonly [number, number, number, number],
+  ];
+  /** Degrees between two cells; divides 360. */
+  readonly step: number;
+  readonly seed: number;
+}
+
 export interface ConjugationTask extends ForceFieldSettings {
   readonly kind: 'conjugation';
   readonly temperature: number;
@@ -49,7 +61,7 @@ export interface StrainTask extends ForceFieldSettings {
 }
 
 export type Task =
-  EnergyTask | MinimizeTask | ConformersTask | ScanTask | ConjugationTask | StrainTask;
+  EnergyTask | MinimizeTask | ConformersTask | ScanTask | MapTask | ConjugationTask | StrainTask;
 export type TaskKind = Task['kind'];
 export type TaskOf<Kind extends TaskKind> = Extract<Task, { readonly kind: Kind }>;
 

@@ -4,6 +4,8 @@ import type { Conformer, SearchEnd } from '../conformers/conformers';
 import type { InputWarning } from '../errors';
 import type { TermEnergies, Variant } from '../forcefield/forcefield';
 import type { TorsionStrain } from '../strain/strain';
+import type { MapCell, MapMinimum, MapResult } from '../torsion/map';
+import type { ProfileSummary } from '../torsion/profile';
 import type { ScanPoint, ScanResult, StationaryPoint } from '../torsion/scan-result';
 import type { Task, TaskKind } from './request';
 
@@ -62,10 +64,21 @@ export interface ConformersFields {
   readonly ended: SearchEnd;
 }
 
-export interface ScanFields extends Omit<ScanResult, 'points' | 'stationary'> {
+/** Basins and crossings name stationary points by their position in the list. */
+export interface ScanFields extends Omit<ScanResult, 'points' | 'stationary'>, ProfileSummary {
   /** Ascending in angle over (-180, 180]. */
   readonly points: readonly AsMolfile<ScanPoint>[];
   readonly stationary: readonly AsMolfile<StationaryPoint>[];
+}
+
+export interface MapFields extends Omit<MapResult, 'cells' | 'minima'> {
+  /** Row by row; energies and molfile are null where time ran out before the cell was reached. */
+  readonly cells: readonly (Omit<MapCell, 'coordinates' | 'energy' | 'relative'> & {
+    readonly energy: number | null;
+    readonly relative: number | null;
+    readonly molfile: string | null;
+  })[];
+  readonly minima: readonly AsMolfile<MapMinimum>[];
 }
 
 type OpenBond = Omit<OpenConjugation, 'sCis' | 'sTrans'> & {
@@ -105,6 +118,7 @@ export interface FieldsByKind {
   readonly minimize: MinimizeFields;
   readonly conformers: ConformersFields;
   readonly scan: ScanFields;
+  readonly map: MapFields;
   readonly conjugation: ConjugationFields;
   readonly strain: StrainFields;
 }

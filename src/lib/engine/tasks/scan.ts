@@ -2,6 +2,7 @@
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import { checkTorsion, torsionOfBond } from '../molecule/rotatable';
+import { summarizeProfile } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import type { TorsionAtoms } from '../torsion/scan-symmetry';
 import { withMolfile } from './geometry-text';
@@ -9,13 +10,16 @@ import { incompleteSearch } from './prepare';
 import type { ScanTask } from './request';
 import type { Outcome, ScanFields } from './result';
 
-/** Scans the torsion given, or the reference torsion of the bond given. */
+/**
+ * Scans the torsion given, or the reference torsion of the bond given; populations and rates are those at the
+ * temperature.
+ */
 export async function scanBond(
   forceField: ForceField,
   task: ScanTask,
   control: Control,
 ): Promise<Outcome<ScanFields>> {
-  const { step, relaxed, seed } = task;
+  const { step, relaxed, temperature, seed } = task;
   const { molecule } = forceField;
   const torsion = torsionOf(forceField, task);
   const scan = await scanTorsion(forceField, { torsion, step, relaxed, seed }, control);
@@ -27,6 +31,7 @@ export async function scanBond(
       ...scan,
       points: scan.points.map((point) => withMolfile(molecule, point)),
       stationary: scan.stationary.map((point) => withMolfile(molecule, point)),
+      ...summarizeProfile(scan, temperature),
     },
     coordinates: lowest.coordinates,
     warnings: scan.complete ? [] : [incompleteSearch],

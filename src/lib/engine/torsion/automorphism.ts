@@ -9,11 +9,14 @@ export interface SymmetryQuestion {
   readonly molecule: Molecule;
   /** Symmetry class of each atom. */
   readonly classes: Readonly<Int32Array>;
+  /** The configuration of the geometry to be transformed. */
   readonly handedness: Handedness;
+  /** The configuration it must have afterwards; the same unless given. */
+  readonly wanted?: Handedness;
 }
 
 /** Assignments tried before the search gives up: symmetry that is so hard to see is not worth the time. */
-const MOST_TRIALS = 20000;
+const MOST_TRIALS = 5000;
 
 /**
  * Returns `source`, where atom a of the transformed geometry takes the place of atom source[a], with source[from] = to
@@ -57,7 +60,9 @@ export function findAutomorphism(
   const place = (position: number): boolean => {
     if (position === order.length) return true;
     const { atom, from } = order[position];
-    for (const { atom: image } of molecule.neighbors[source[from]]) {
+    const images = molecule.neighbors[source[from]].map((neighbor) => neighbor.atom);
+    // An atom that may stay where it is, stays.
+    for (const image of images.includes(atom) ? [atom, ...images] : images) {
       if (++trials > MOST_TRIALS) return false;
       if (!assign(atom, image)) continue;
       if (place(position + 1)) return true;
@@ -88,7 +93,7 @@ function walkingOrder(molecule: Molecule, root: number): { atom: number; from: n
 
 /** Creates the test, after each assignment, that no rigid center and no double bond near the atom changed. */
 function createConfigurationCheck(
-  { molecule, classes, handedness }: SymmetryQuestion,
+  { molecule, classes, handedness, wanted = handedness }: SymmetryQuestion,
   source: Int32Array,
   mirror: boolean,
 ): (atom: number) => boolean {
@@ -110,7 +115,7 @@ function createConfigurationCheck(
     );
   };
   const centerKept = (atom: number): boolean => {
-    const center = handedness.centers[atom];
+    const center = wanted.centers[atom];
     if (!center || source[atom] === -1) return true;
     const images = imagesOf(center);
     const target = handedness.centers[source[atom]];
@@ -119,7 +124,7 @@ function createConfigurationCheck(
     return center.sign === side * target.sign * parity(images, target.neighbors);
   };
   const bondsKept = (atom: number): boolean =>
-    handedness.bonds.every(({ atoms, cis }) => {
+    wanted.bonds.every(({ atoms, cis }) => {
       if (!atoms.includes(atom) || atoms.some((member) => source[member] === -1)) return true;
       const [a, b, c, d] = atoms.map((member) => source[member]);
       return handedness.bonds.some(

@@ -22,13 +22,16 @@ export interface Handedness {
 }
 
 const NITROGEN = 7;
+/** Volume below which three bonds lie in one plane, Å³; about 1 for a tetrahedral carbon. */
+const FLAT = 0.1;
 
 /** Reads the configuration, labels and all, off a geometry (Å, 3N). */
 export function readHandedness(molecule: Molecule, x: Float64Array): Handedness {
   const centers = molecule.neighbors.map((around, atom): RigidCenter | null => {
     const neighbors = around.map((neighbor) => neighbor.atom);
     if (!holdsItsShape(molecule, atom)) return null;
-    return { atom, neighbors, sign: Math.sign(signedVolume(x, atom, neighbors)) };
+    const volume = signedVolume(x, atom, neighbors);
+    return Math.abs(volume) < FLAT ? null : { atom, neighbors, sign: Math.sign(volume) };
   });
   const bonds = molecule.bonds.flatMap(({ a, b, order }, bond): RigidBond[] => {
     if (order !== 2 || molecule.ringBonds[bond] === 1) return [];
@@ -55,8 +58,8 @@ function holdsItsShape(molecule: Molecule, atom: number): boolean {
   return number === NITROGEN && !flat && around.every(({ bond }) => molecule.ringBonds[bond] === 1);
 }
 
-/** Volume spanned by the bonds to the first three neighbors: its sign is the handedness. */
-function signedVolume(x: Float64Array, atom: number, neighbors: readonly number[]): number {
+/** Volume spanned by the bonds to the first three neighbors, Å³: its sign is the handedness. */
+export function signedVolume(x: Float64Array, atom: number, neighbors: readonly number[]): number {
   const [u, v, w] = neighbors
     .slice(0, 3)
     .map((n) => [0, 1, 2].map((p) => x[3 * n + p] - x[3 * atom + p]));

@@ -12,8 +12,6 @@ import type { Start, Wave, WaveSettings } from './wave-front';
 export interface WaveGeometry extends HeldGeometry {
   /** Distances (Å) of the heavy atoms from the torsions' atoms, sorted within each class of alike atoms. */
   readonly signature: Float64Array;
-  /** Relaxed further, past saddles of the other coordinates. */
-  readonly thorough: boolean;
 }
 
 /** Two geometries of a cell are the same within these: kcal/mol and Å. */
@@ -48,10 +46,10 @@ export function createHeldWave(
         grid.neighbors(cell).map((neighbor) => startAt(grid, neighbor, coordinates)),
       settle: async ({ cell, coordinates, thorough = false }) => {
         const gradientRms = thorough ? THOROUGH_GRADIENT_RMS : SEARCHING_GRADIENT_RMS;
-        const relaxation = { gradientRms, maxEvaluations: MAX_EVALUATIONS, thorough };
+        const relaxation = { gradientRms, maxEvaluations: MAX_EVALUATIONS };
         const held = await drive.relax(coordinates, grid.angles(cell), relaxation, control);
         if (!held.converged || !isSound(held.coordinates)) return null;
-        return { ...held, thorough, signature: sign(held.coordinates) };
+        return { ...held, signature: sign(held.coordinates) };
       },
       same: (one, other) =>
         Math.abs(one.energy - other.energy) <= SAME_ENERGY &&

@@ -46,8 +46,9 @@ function saturatedLabel(
       smallest = Math.min(smallest, Math.abs(torsion(x, front, j, k, rear)));
   }
   if (smallest < ECLIPSED_WITHIN) return 'eclipsed';
-  if (kind === 'maximum' || !reference) return 'staggered';
-  const size = Math.abs(torsion(x, ...reference));
+  if (kind === 'minimum' && !reference) return 'staggered';
+  const size = Math.abs(torsion(x, ...(reference ?? [fronts[0], j, k, rears[0]])));
+  if (kind === 'maximum') return rangeWords[torsionRange(size)];
   if (size > 150) return 'anti';
   return size < 100 ? 'gauche' : 'staggered';
 }

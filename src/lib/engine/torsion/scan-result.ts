@@ -43,7 +43,10 @@ export interface ScanPoint {
 /** A minimum or maximum of the profile. */
 export interface StationaryPoint {
   readonly kind: StationaryKind;
-  /** Degrees, of the geometry itself and not of a grid point. */
+  /**
+   * Degrees, of the geometry itself and not of a grid point; but 0 or 180 where two mirror images lie within 2 degrees of
+   * each other and count as one.
+   */
   readonly angle: number;
   /** kcal/mol */
   readonly energy: number;

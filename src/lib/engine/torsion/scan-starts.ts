@@ -1,22 +1,40 @@
-/** Geometries a torsion scan starts from. */
+/** Geometries a torsion scan starts from: conformers, all numbered the same way round. */
 import { defaultConformerSearchOptions } from '../conformers/conformers';
 import { searchConformers } from '../conformers/search';
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import type { Molecule } from '../molecule/molecule';
-import { readHandedness } from './handedness';
+import { symmetryClasses } from '../molecule/symmetry-classes';
+import { findAutomorphism } from './automorphism';
+import { readHandedness, signedVolume } from './handedness';
 import type { Handedness } from './handedness';
+import { applySymmetry } from './scan-symmetry';
+import type { TorsionAtoms } from './scan-symmetry';
 
 /** Low conformers taken as starts, and how high they may lie, kcal/mol. */
 const MOST_STARTS = 12;
 const START_WINDOW = 6;
 
-/** The molecule's low conformers (Å, 3N), lowest first, their alike end atoms numbered the same way round. */
+export interface ScanStarts {
+  /** Å, 3N: conformers, lowest first, and the geometry given; never empty. */
+  readonly starts: readonly Float64Array[];
+  /** Their mirror images, as far as the molecule is achiral. */
+  readonly mirrored: readonly Float64Array[];
+  /** False when the search ran out of time. */
+  readonly complete: boolean;
+}
+
+/**
+ * Finds the molecule's low conformers and numbers alike atoms in all of them the same way round, as turning about bonds
+ * leaves it. Which of two alike groups the torsion's end atom is (of an isopropyl's methyls, say) is settled by the
+ * given geometry, or else by a rule that does not depend on the order of the atoms.
+ */
 export async function findStarts(
   forceField: ForceField,
+  torsions: readonly TorsionAtoms[],
   seed: number,
   control: Control,
-): Promise<{ starts: Float64Array[]; complete: boolean }> {
+): Promise<ScanStarts> {
   const options = {
     ...defaultConformerSearchOptions,
     limit: MOST_STARTS,
@@ -25,29 +43,99 @@ export async function findStarts(
     seed,
   } as const;
   const { conformers, ended } = await searchConformers(forceField, options, control);
-  const starts = conformers.map(({ coordinates }) => Float64Array.from(coordinates));
   const { molecule } = forceField;
-  const handedness = readHandedness(molecule, starts[0]);
-  for (const x of starts) alignEndAtoms(molecule, handedness, x);
-  return { starts, complete: ended !== 'budget' };
+  const found = conformers.map(({ coordinates }) => Float64Array.from(coordinates));
+  const geometries = isWrongEnantiomer(molecule, found[0]) ? found.map(mirrorImage) : found;
+  const numbering = createNumbering(molecule, torsions, geometries[0]);
+  const numbered = (x: Float64Array): Float64Array[] => numbering(x) ?? [];
+  const starts = geometries.flatMap(numbered);
+  if (molecule.coordinates) starts.push(Float64Array.from(molecule.coordinates));
+  return {
+    starts: starts.length > 0 ? starts : geometries,
+    mirrored: geometries.map(mirrorImage).flatMap(numbered),
+    complete: ended !== 'budget',
+  };
 }
 
 /**
- * Renumbers alike end atoms of one center (the hydrogens of a CH2 or CH3) where they run the other way round than in the
- * reference, in place: geometries along a scan then follow each other without atoms that change places.
+ * Of a molecule all of whose stereocenters were left open, either mirror image may have been built; the one to scan is
+ * told by its first such center, whatever the order of the atoms.
  */
-function alignEndAtoms(molecule: Molecule, reference: Handedness, x: Float64Array): void {
-  const own = readHandedness(molecule, x);
-  reference.centers.forEach((center, atom) => {
-    if (!center || own.centers[atom]?.sign === center.sign) return;
-    const ends = center.neighbors.filter(
-      (neighbor) =>
-        molecule.neighbors[neighbor].length === 1 &&
-        molecule.atomicNumbers[neighbor] === 1 &&
-        molecule.massNumbers[neighbor] === 0,
-    );
-    if (ends.length < 2) return;
-    const [a, b] = ends.slice(-2);
-    for (let p = 0; p < 3; p++) [x[3 * a + p], x[3 * b + p]] = [x[3 * b + p], x[3 * a + p]];
-  });
+function isWrongEnantiomer(molecule: Molecule, x: Float64Array): boolean {
+  if (molecule.stereocenters.length > 0 || molecule.coordinates) return false;
+  const classes = symmetryClasses(molecule);
+  const open = molecule.warnings
+    .flatMap(({ code, atom }) =>
+      code === 'undefined-stereocenter' && atom !== undefined ? [atom] : [],
+    )
+    .sort((a, b) => classes[a] - classes[b]);
+  if (open.length === 0) return false;
+  const neighbors = molecule.neighbors[open[0]].map(({ atom }) => atom);
+  return (
+    signedVolume(
+      x,
+      open[0],
+      neighbors.sort((a, b) => classes[a] - classes[b]),
+    ) < 0
+  );
+}
+
+/** The function that renumbers alike atoms of a geometry; null where no renumbering gives the wanted configuration. */
+function createNumbering(
+  molecule: Molecule,
+  torsions: readonly TorsionAtoms[],
+  first: Float64Array,
+): (x: Float64Array) => [Float64Array] | null {
+  const classes = symmetryClasses(molecule);
+  const root = torsions[0][1];
+  const renumber = (x: Float64Array, wanted: Handedness): [Float64Array] | null => {
+    const question = { molecule, classes, handedness: readHandedness(molecule, x), wanted };
+    const source = findAutomorphism(question, [[root, root]], false);
+    if (!source) return null;
+    const out = new Float64Array(x.length);
+    applySymmetry({ source, mirror: false }, x, out);
+    return [out];
+  };
+  if (molecule.coordinates) {
+    const given = readHandedness(molecule, Float64Array.from(molecule.coordinates));
+    if (renumber(first, given)) return (x) => renumber(x, given);
+  }
+  let wanted = readHandedness(molecule, first);
+  for (const [i, j, k, l] of torsions) {
+    for (const ends of [
+      [i, j, k],
+      [l, k, j],
+    ]) {
+      const turned = withEndTurned(molecule, classes, wanted, ends, first);
+      if (turned && renumber(first, turned)) wanted = turned;
+    }
+  }
+  return (x) => renumber(x, wanted);
+}
+
+/**
+ * Of two alike substituents of `center`, `end` shall be the one from which, seen against the axis, the other lies
+ * clockwise; the configuration with them exchanged where it is not so, else null.
+ */
+function withEndTurned(
+  molecule: Molecule,
+  classes: Readonly<Int32Array>,
+  handedness: Handedness,
+  [end, center, axis]: readonly number[],
+  x: Float64Array,
+): Handedness | null {
+  const twins = molecule.neighbors[center]
+    .map(({ atom }) => atom)
+    .filter((atom) => atom !== axis && atom !== end && classes[atom] === classes[end]);
+  const known = handedness.centers[center];
+  if (twins.length !== 1 || !known || signedVolume(x, center, [end, twins[0], axis]) > 0)
+    return null;
+  const centers = handedness.centers.map((other) =>
+    other === known ? { ...known, sign: -known.sign } : other,
+  );
+  return { ...handedness, centers };
+}
+
+function mirrorImage(x: Float64Array): Float64Array {
+  return x.map((value, n) => (n % 3 === 2 ? -value : value));
 }

@@ -1,4 +1,5 @@
 /** Symmetries of a molecule that a torsion scan can use: a point of the profile gives others without computing them. */
+import { torsion } from '../geometry';
 import type { ForceField } from '../forcefield/forcefield';
 import { symmetryClasses } from '../molecule/symmetry-classes';
 import type { Random } from '../random';
@@ -21,15 +22,21 @@ export interface ExactSymmetry extends SymmetryOperation {
   readonly sign: 1 | -1;
 }
 
+/** An operation after which the scanned torsion reads another torsion about the same bond. */
+export interface ShiftingSymmetry extends SymmetryOperation {
+  /** Degrees from the (mirrored) angle of the original to that of the transformed geometry: about 60, 120 or 180. */
+  readonly shift: number;
+}
+
 export interface ScanSymmetry {
   /** Without the identity. */
   readonly exact: readonly ExactSymmetry[];
   /**
-   * Operations after which the scanned torsion reads another torsion about the same bond: about 120 or 180 degrees
-   * away (a methyl, a phenyl). Not exact points of the profile, because only one of these torsions is held at a grid angle,
-   * but excellent starts, and exact for stationary points. Empty for maps.
+   * One for each way to turn the profile into itself (a methyl by 120, a phenyl by 180). Not exact away from stationary
+   * points, because only one of the torsions about the bond is held at a grid angle, but they give excellent
+   * starts, and stationary points they give exactly. Empty for maps.
    */
-  readonly shifting: readonly SymmetryOperation[];
+  readonly shifting: readonly ShiftingSymmetry[];
 }
 
 /** Puts the transformed geometry into `out`. */
@@ -75,8 +82,14 @@ export function findScanSymmetry(
     const operation = { ...candidate, source, mirror: candidate.sign === -1 };
     return prove(operation) ? [operation] : [];
   });
-  const shifting =
-    torsions.length === 1 ? shiftingOperations(question, torsions[0]).filter(prove) : [];
+  if (torsions.length > 1) return { exact, shifting: [] };
+  const known = new Set([...exact.map(() => 'true 0'), 'false 0']);
+  const shifting = shiftingOperations(question, torsions[0], x).filter((operation) => {
+    const key = `${operation.mirror} ${operation.shift}`;
+    if (known.has(key) || !prove(operation)) return false;
+    known.add(key);
+    return true;
+  });
   return { exact, shifting };
 }
 
@@ -110,10 +123,15 @@ function findForTorsions(
   return null;
 }
 
-function shiftingOperations(question: SymmetryQuestion, atoms: TorsionAtoms): SymmetryOperation[] {
+function shiftingOperations(
+  question: SymmetryQuestion,
+  atoms: TorsionAtoms,
+  x: Float64Array,
+): ShiftingSymmetry[] {
   const { molecule, classes } = question;
   const [i, j, k, l] = atoms;
-  const found: SymmetryOperation[] = [];
+  const own = torsion(x, i, j, k, l);
+  const found: ShiftingSymmetry[] = [];
   for (const [first, second] of [
     [j, k],
     [k, j],
@@ -124,14 +142,21 @@ function shiftingOperations(question: SymmetryQuestion, atoms: TorsionAtoms): Sy
         if (front === second || rear === first || sameEitherWay(images, atoms)) continue;
         if (classes[front] !== classes[i] || classes[rear] !== classes[l]) continue;
         const anchors = atoms.map((atom, n) => [atom, images[n]] as const);
+        const angle = torsion(x, front, first, second, rear);
         for (const mirror of [false, true]) {
           const source = findAutomorphism(question, anchors, mirror);
-          if (source) found.push({ source, mirror });
+          if (source) found.push({ source, mirror, shift: shiftBetween(own, angle, mirror) });
         }
       }
     }
   }
   return found;
+}
+
+/** The shift from a torsion to its image, to the nearest of the turns that substituents are apart. */
+function shiftBetween(own: number, image: number, mirror: boolean): number {
+  const turn = mirror ? own + image : image - own;
+  return 60 * ((Math.round(turn / 60) + 12) % 6);
 }
 
 /** How far atoms are moved for the proof, Å, and how equal two energies must be, kcal/mol per kcal/mol. */

@@ -1,11 +1,10 @@
 /** Minima and maxima of a relaxed torsion profile, as geometries of their own and not as grid points. */
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
-import { minimizeToMinimum } from '../minimizer/minimize-to-minimum';
-import { REPORTED_GRADIENT_RMS } from '../minimizer/minimizer';
 import { createPeriodicCurve } from '../thermo/periodic-curve';
 import { turnBetween } from '../units';
 import type { BondCharacter } from './bond-character';
+import { minimizeFreely } from './free-minimum';
 import { klynePrelog } from './klyne-prelog';
 import { labelGeometry } from './labels';
 import type { StationaryKind } from './labels';
@@ -32,7 +31,6 @@ const SAME_ANGLE = 2;
 const NO_BARRIER = 0.005;
 /** A free minimum may lie this much above the curve through the grid and still belong to the profile, kcal/mol. */
 const ABOVE_PROFILE = 0.1;
-const MAX_EVALUATIONS = 2000;
 
 /**
  * Finds the stationary points, ascending in angle, minima and maxima in turn. A minimum of the profile is kept only if a
@@ -70,11 +68,13 @@ export async function findStationaryPoints(
 }
 
 function describe(
-  { character }: ProfileSetting,
+  { character, symmetry }: ProfileSetting,
   found: readonly (ProfileSample & { kind: StationaryKind })[],
 ): StationaryPoint[] {
   const lowest = Math.min(...found.map(({ energy }) => energy));
-  return [...found]
+  const mirrored = symmetry.exact.length > 0;
+  return found
+    .map((sample) => (mirrored ? { ...sample, angle: ontoMirror(sample.angle) } : sample))
     .sort((a, b) => a.angle - b.angle)
     .map((sample) => ({
       ...sample,
@@ -82,6 +82,12 @@ function describe(
       label: labelGeometry(character, sample.coordinates, sample.kind),
       range: klynePrelog(sample.angle),
     }));
+}
+
+/** Of a stationary point and its mirror image so near to each other that they count as one, the angle between them. */
+function ontoMirror(angle: number): number {
+  if (Math.abs(angle) < SAME_ANGLE / 2) return 0;
+  return Math.abs(angle) > 180 - SAME_ANGLE / 2 ? 180 : angle;
 }
 
 /** Free minima from the grid's lowest places and from the starts, ascending in angle. */
@@ -103,14 +109,17 @@ async function findMinima(setting: ProfileSetting, control: Control): Promise<Pr
 
   const minima: ProfileSample[] = [];
   for (const [n, candidate] of candidates.entries()) {
+    if (control.expired() && minima.length > 0) break;
     control.report(n / candidates.length, 'minima');
     const isKnown = minima.some(
       ({ angle, energy }) =>
         Math.abs(turnBetween(angle, candidate.angle)) < SAME_ANGLE && energy <= candidate.energy,
     );
     if (isKnown) continue;
-    const sample = await minimizeFreely(setting, candidate.coordinates, control);
-    if (!sample || sample.energy > curve.at(sample.angle) + ABOVE_PROFILE) continue;
+    const minimum = await minimizeFreely(forceField, candidate.coordinates, control);
+    if (!minimum) continue;
+    const sample = { ...minimum, angle: drive.measure(minimum.coordinates)[0] };
+    if (sample.energy > curve.at(sample.angle) + ABOVE_PROFILE) continue;
     for (const image of [sample, ...imagesOf(setting, sample)]) addMinimum(minima, image);
   }
   return minima.sort((a, b) => a.angle - b.angle);
@@ -131,21 +140,6 @@ function addMinimum(minima: ProfileSample[], sample: ProfileSample): void {
   );
   if (twin === -1) minima.push(sample);
   else if (sample.energy < minima[twin].energy - 1e-6) minima[twin] = sample;
-}
-
-async function minimizeFreely(
-  { forceField, drive }: ProfileSetting,
-  start: Float64Array,
-  control: Control,
-): Promise<ProfileSample | null> {
-  const x = start.slice();
-  const options = {
-    gradientRms: REPORTED_GRADIENT_RMS,
-    maxEvaluations: MAX_EVALUATIONS,
-    curvature: forceField.curvature,
-  };
-  const { energy, converged } = await minimizeToMinimum(forceField.energy, x, options, control);
-  return converged ? { angle: drive.measure(x)[0], energy, coordinates: x, converged } : null;
 }
 
 /** The same stationary point elsewhere on the circle, by the molecule's symmetry. */

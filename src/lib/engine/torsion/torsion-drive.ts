@@ -4,7 +4,6 @@ import { InputError } from '../errors';
 import type { ForceField } from '../forcefield/forcefield';
 import { angle, rotateAbout, torsion } from '../geometry';
 import { minimize } from '../minimizer/minimize';
-import { minimizeToMinimum } from '../minimizer/minimize-to-minimum';
 import { sumTerms, torsionRestraint } from '../minimizer/restraints';
 import type { Molecule } from '../molecule/molecule';
 import { checkTorsion, movedAtoms } from '../molecule/rotatable';
@@ -27,7 +26,7 @@ export interface TorsionDrive {
   measure(x: Float64Array): number[];
   /** Turns one side about each bond, rigidly and in place, until the torsions have these angles. */
   turnTo(x: Float64Array, angles: readonly number[]): void;
-  /** Relaxes a copy of `start` with the torsions held; `thorough` leaves saddles of the other coordinates too. */
+  /** Relaxes a copy of `start` with the torsions held. */
   relax(
     start: Float64Array,
     angles: readonly number[],
@@ -40,7 +39,6 @@ export interface RelaxSettings {
   /** kcal/mol/Å */
   readonly gradientRms: number;
   readonly maxEvaluations: number;
-  readonly thorough?: boolean;
 }
 
 /** Farthest a held torsion may be from its target, degrees. */
@@ -68,16 +66,15 @@ export function createTorsionDrive(
   const relax = async (
     start: Float64Array,
     angles: readonly number[],
-    { gradientRms, maxEvaluations, thorough }: RelaxSettings,
+    { gradientRms, maxEvaluations }: RelaxSettings,
     control: Control,
   ): Promise<HeldGeometry> => {
     const x = start.slice();
     turnTo(x, angles);
     const restraints = torsions.map((atoms, t) => torsionRestraint(atoms, angles[t]));
     const { energy, curvature } = sumTerms(forceField, ...restraints);
-    const minimizeFully = thorough ? minimizeToMinimum : minimize;
     const options = { gradientRms, maxEvaluations, curvature };
-    const result = await minimizeFully(energy, x, options, control);
+    const result = await minimize(energy, x, options, control);
     const unused = new Float64Array(x.length);
     const held = measure(x).every(
       (reached, t) => Math.abs(turnBetween(reached, angles[t])) <= TARGET_TOLERANCE,

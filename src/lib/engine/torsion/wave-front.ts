@@ -79,6 +79,7 @@ export function createWave<Geometry extends { readonly energy: number }>(
       if (control.due()) await control.pause();
       const geometry = await problem.settle(start);
       if (geometry && take(start.cell, geometry)) open.push({ cell: start.cell, geometry });
+      control.report(kept.filter((cell) => cell.length > 0).length / kept.length, 'torsion scan');
     };
     for (const start of starts) {
       if (control.expired() && kept.some((cell) => cell.length > 0)) return false;

@@ -48,12 +48,13 @@ async function faultOf(response: Response): Promise<string> {
 }
 
 async function* newsOf(stream: ReadableStream<Uint8Array>): AsyncGenerator<ReadingNews> {
-  const reader = stream.pipeThrough(new TextDecoderStream()).getReader();
+  const reader = stream.getReader();
+  const decoder = new TextDecoder();
   let rest = '';
   for (;;) {
     const { done, value } = await reader.read();
     if (done) return;
-    const lines = (rest + value).split('\n');
+    const lines = (rest + decoder.decode(value, { stream: true })).split('\n');
     rest = lines.pop() ?? '';
     for (const line of lines) yield JSON.parse(line) as ReadingNews;
   }
