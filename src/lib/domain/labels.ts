@@ -1,0 +1,18 @@
+/** What things are called on pages, in letters and in bundles. */
+
+const taskKinds = {
+  conformers: 'Conformers',
+  scan: 'Torsion scan',
+  conjugation: 'Conjugation',
+  strain: 'Strain',
+} as const;
+
+/** The kind of a task, as people call it. */
+export function taskKindName(kind: keyof typeof taskKinds): string {
+  return taskKinds[kind];
+}
+
+/** An atom by element and number, counted from 1: "C2". */
+export function atomName(symbol: string, atom: number): string {
+  return `${symbol}${atom + 1}`;
+}
