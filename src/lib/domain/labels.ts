@@ -11,8 +11,3 @@ const taskKinds = {
 export function taskKindName(kind: keyof typeof taskKinds): string {
   return taskKinds[kind];
 }
-
-/** An atom by element and number, counted from 1: "C2". */
-export function atomName(symbol: string, atom: number): string {
-  return `${symbol}${atom + 1}`;
-}

@@ -1,0 +1,66 @@
+/** The JSON files of a bundle, described by a schema that goes with them. */
+import { z } from 'zod';
+
+const coordinates = z
+  .array(z.number())
+  .describe('x, y, z of every atom in the order of the molfile, Å');
+const kcal = (what: string) => z.number().describe(`${what}, kcal/mol`);
+
+export const answerSchema = z.looseObject({
+  name: z.string(),
+  smiles: z.string().describe('Canonical isomeric SMILES'),
+  kind: z.enum(['conformers', 'scan', 'conjugation', 'strain']),
+  settings: z.record(z.string(), z.unknown()).describe('The settings, defaults and seed included'),
+  engineVersion: z.string(),
+  model: z.string().describe('Energy model'),
+  molfile: z.string().describe('V2000; the prepared molecule in its final atom order'),
+  details: z
+    .record(z.string(), z.unknown())
+    .describe(
+      'What has no table of its own; atoms counted from 0, angles in degrees, energies in kcal/mol',
+    ),
+  warnings: z.array(z.looseObject({ code: z.string(), message: z.string() })),
+  seconds: z.number().describe('Time the computation took, s'),
+  conformers: z.array(
+    z.object({
+      rank: z.number().int().describe('0 is the lowest'),
+      energy: kcal('Model energy'),
+      relative: kcal('Energy above the lowest conformer'),
+      degeneracy: z.number().int(),
+      population: z.number().describe('Share of the set, 0 to 1'),
+      rmsdToLowest: z.number().describe('Å'),
+      coordinates,
+    }),
+  ),
+  profiles: z.array(
+    z.object({
+      torsion: z.array(z.number().int()).describe('The four atoms, counted from 0'),
+      model: z.string(),
+      relaxed: z.boolean(),
+      points: z.array(
+        z.object({
+          angle: z.number().describe('Target, degrees'),
+          energy: kcal('Model energy without the restraint'),
+          relative: kcal('Energy above the lowest point'),
+          reached: z.number().describe('Angle of the geometry, degrees'),
+          coordinates,
+        }),
+      ),
+      stationary: z.array(
+        z.looseObject({
+          kind: z.enum(['minimum', 'maximum']),
+          angle: z.number().describe('Degrees'),
+          energy: kcal('Model energy'),
+          relative: kcal('Energy above the lowest stationary point'),
+          label: z.string(),
+          coordinates,
+        }),
+      ),
+    }),
+  ),
+});
+
+/** The schema as the text of a JSON Schema document (draft 2020-12). */
+export function bundleSchemaText(): string {
+  return `${JSON.stringify(z.toJSONSchema(answerSchema), null, 2)}\n`;
+}

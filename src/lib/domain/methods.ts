@@ -1,0 +1,54 @@
+/** The paragraph about methods that goes with results, and what it cites. */
+
+export interface MethodFacts {
+  readonly engineVersion: string;
+  readonly models: readonly string[];
+  readonly kinds: readonly string[];
+}
+
+const REFERENCES = {
+  mmff94:
+    'T. A. Halgren, J. Comput. Chem. 1996, 17, 490-519; 520-552; 553-586; 587-615; 616-641 (MMFF94).',
+  mmff94s: 'T. A. Halgren, J. Comput. Chem. 1999, 20, 720-729 (MMFF94s).',
+  labels:
+    'G. P. Moss, Pure Appl. Chem. 1996, 68, 2193-2222 (torsion terms after Klyne and Prelog).',
+  eyring: 'H. Eyring, J. Chem. Phys. 1935, 3, 107-115 (rates).',
+  atropisomers:
+    'S. R. LaPlante et al., J. Med. Chem. 2011, 54, 7005-7022 (stability classes of axes).',
+} as const;
+
+const SENTENCES: Readonly<Record<string, string>> = {
+  conformers:
+    'Conformers were searched from distance geometry, systematic turns of all rotatable bonds and repeated kicks, minimized to an RMS gradient of at most 0.001 kcal/mol/Å, freed of duplicates under symmetry, and weighted by their Boltzmann factors and degeneracies.',
+  scan: 'Torsion profiles were relaxed at every grid angle with the torsion held, each angle started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely and maxima refined along the profile. Rates take the energy barrier in the place of the free energy of activation, with a transmission coefficient of 1.',
+  conjugation:
+    'Conjugated bonds were described by the twist between the local π axes, its overlap cos², and the energies of their s-cis and s-trans forms along a relaxed profile.',
+  strain:
+    'Strain of given geometries was measured after relaxing hydrogens and then all atoms within a flat-bottomed tether, as energy above the lowest conformer found; the strain of single torsions was read from profiles of fragments.',
+};
+
+/** A text in Markdown, ready to paste: what was done, the literature, and how far to trust it. */
+export function methodsText({ engineVersion, models, kinds }: MethodFacts): string {
+  const sentences = kinds.flatMap((kind) => SENTENCES[kind] ?? []);
+  const cited = [
+    REFERENCES.mmff94,
+    ...(models.includes('MMFF94s') ? [REFERENCES.mmff94s] : []),
+    ...(kinds.includes('scan')
+      ? [REFERENCES.labels, REFERENCES.eyring, REFERENCES.atropisomers]
+      : []),
+  ];
+  return [
+    '# Methods',
+    '',
+    `Energies and geometries were computed with Windlass ${engineVersion} and the ${models.join(' and ')} force field in the gas phase, unless a dielectric is named in the settings. ${sentences.join(' ')}`,
+    '',
+    '## Literature',
+    '',
+    ...cited.map((reference) => `- ${reference}`),
+    '',
+    '## Cautions',
+    '',
+    'These are model energies, typically 0.5 to 2 kcal/mol off, and more for charged, metal-bearing or strongly conjugated systems. They are estimates, not measurements: a decision about a reaction’s heat, a substance’s stability or a person’s safety rests on experiment, the safety data sheet, local rules and qualified people.',
+    '',
+  ].join('\n');
+}

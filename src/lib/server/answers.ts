@@ -1,0 +1,148 @@
+/** Stored answers, read back whole: for pages and bundles. */
+import { and, asc, desc, eq, inArray, isNotNull } from 'drizzle-orm';
+import { db } from './db';
+import { batches, conformers, entries, profileCurves, profiles, results, tasks } from './db/schema';
+import type { Member } from './member';
+import { unpack } from './packing';
+
+export interface StoredConformer {
+  readonly rank: number;
+  readonly energy: number;
+  readonly relative: number;
+  readonly degeneracy: number;
+  readonly population: number;
+  readonly rmsdToLowest: number;
+  readonly coordinates: Float64Array;
+}
+
+export interface StoredPoint {
+  readonly angle: number;
+  readonly energy: number;
+  readonly relative: number;
+  readonly reached: number;
+  readonly coordinates: Float64Array;
+}
+
+/** A stationary point as the engine describes it, with its geometry. */
+export interface StoredStationaryPoint {
+  readonly kind: 'minimum' | 'maximum';
+  readonly angle: number;
+  readonly energy: number;
+  readonly relative: number;
+  readonly label: string;
+  readonly range: string;
+  readonly coordinates: Float64Array;
+}
+
+export interface StoredProfile {
+  readonly torsion: readonly number[];
+  readonly model: string;
+  readonly relaxed: boolean;
+  readonly points: readonly StoredPoint[];
+  readonly stationary: readonly StoredStationaryPoint[];
+}
+
+/** One answer with all that hangs on it. */
+export interface Answer {
+  readonly id: string;
+  readonly kind: (typeof results.$inferSelect)['kind'];
+  readonly settings: Readonly<Record<string, unknown>>;
+  readonly engineVersion: string;
+  readonly model: string;
+  readonly molfile: string;
+  readonly details: Readonly<Record<string, unknown>>;
+  readonly warnings: readonly { readonly code: string; readonly message: string }[];
+  readonly seconds: number;
+  readonly conformers: readonly StoredConformer[];
+  readonly profiles: readonly StoredProfile[];
+}
+
+/** The results of a molecule's finished tasks in the member's team, those of one batch where it is named. */
+export async function resultIdsOf(
+  member: Member,
+  moleculeId: string,
+  batchId: string | null = null,
+): Promise<string[]> {
+  const rows = await db
+    .selectDistinctOn([tasks.resultId], { id: tasks.resultId })
+    .from(tasks)
+    .innerJoin(entries, eq(entries.id, tasks.entryId))
+    .innerJoin(batches, eq(batches.id, tasks.batchId))
+    .where(
+      and(
+        eq(batches.teamId, member.teamId),
+        eq(entries.moleculeId, moleculeId),
+        batchId === null ? undefined : eq(batches.id, batchId),
+        isNotNull(tasks.resultId),
+      ),
+    );
+  return rows.flatMap(({ id }) => id ?? []);
+}
+
+/** Reads answers by their ids, in the order of their kinds and the newest first. */
+export async function readAnswers(ids: readonly string[], atomCount: number): Promise<Answer[]> {
+  if (ids.length === 0) return [];
+  const wanted = [...ids];
+  const rows = await db
+    .select()
+    .from(results)
+    .where(inArray(results.id, wanted))
+    .orderBy(asc(results.kind), desc(results.createdAt), asc(results.id));
+  const found = await db
+    .select()
+    .from(conformers)
+    .where(inArray(conformers.resultId, wanted))
+    .orderBy(asc(conformers.rank));
+  const curves = await db
+    .select()
+    .from(profiles)
+    .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
+    .where(inArray(profiles.resultId, wanted))
+    .orderBy(asc(profileCurves.model));
+  return rows.map((row) => ({
+    id: row.id,
+    kind: row.kind,
+    settings: row.settings as Answer['settings'],
+    engineVersion: row.engineVersion,
+    model: row.model,
+    molfile: row.molfile,
+    details: row.details as Answer['details'],
+    warnings: row.warnings as Answer['warnings'],
+    seconds: row.seconds,
+    conformers: found
+      .filter(({ resultId }) => resultId === row.id)
+      .map(({ resultId: _resultId, coordinates, ...conformer }) => ({
+        ...conformer,
+        coordinates: unpack(coordinates, atomCount)[0],
+      })),
+    profiles: curves
+      .filter(({ profiles: { resultId } }) => resultId === row.id)
+      .map(({ profiles: profile, profile_curves: curve }) => toProfile(profile, curve, atomCount)),
+  }));
+}
+
+function toProfile(
+  profile: typeof profiles.$inferSelect,
+  curve: typeof profileCurves.$inferSelect,
+  atomCount: number,
+): StoredProfile {
+  const geometries = unpack(curve.coordinates, atomCount);
+  const lowest = Math.min(...curve.energies);
+  const stationary = curve.stationary as Omit<StoredStationaryPoint, 'coordinates'>[];
+  return {
+    torsion: profile.torsion,
+    model: curve.model,
+    relaxed: curve.relaxed,
+    points: profile.angles.map((angle, n) => ({
+      angle,
+      energy: curve.energies[n],
+      relative: curve.energies[n] - lowest,
+      reached: curve.reached[n],
+      coordinates: geometries[n],
+    })),
+    stationary: stationary.map((point, n) => ({
+      ...point,
+      coordinates: geometries[profile.angles.length + n],
+    })),
+  };
+}

@@ -1,0 +1,243 @@
+/** The files of one molecule in a bundle. */
+import { atomLabel, writeSdf, type Molecule } from '../engine';
+import { profilePlot } from '../charts/profile-plot';
+import { csvTable } from '../domain/csv';
+import { createNamer } from '../domain/file-names';
+import type { Answer, StoredProfile } from './answers';
+
+export interface BundleFile {
+  readonly path: string;
+  readonly content: string;
+}
+
+export interface BundledMolecule {
+  readonly name: string;
+  /** Folder of the molecule, safe and unique in the bundle. */
+  readonly folder: string;
+  readonly smiles: string;
+  readonly molecule: Molecule;
+  readonly answers: readonly Answer[];
+}
+
+/** Energies are written to a ten-thousandth; more digits would only pretend. */
+const energy = (value: number): string => value.toFixed(4);
+
+/** Every file of a molecule, answer by answer. */
+export function filesOf(bundled: BundledMolecule): BundleFile[] {
+  const nameFor = createNamer();
+  return bundled.answers.flatMap((answer) => {
+    const base = nameFor(baseName(bundled, answer));
+    const path = (ending: string): string => `${bundled.folder}/${base}.${ending}`;
+    return [
+      ...tableAndGeometries(bundled, answer, path),
+      { path: path('json'), content: `${JSON.stringify(asJson(bundled, answer), null, 2)}\n` },
+    ];
+  });
+}
+
+function baseName({ molecule }: BundledMolecule, { kind, profiles }: Answer): string {
+  const [profile] = profiles;
+  if (!profile) return kind;
+  return `${kind}_${profile.torsion.map((atom) => atomName(molecule, atom)).join('-')}${profile.relaxed ? '' : '_rigid'}`;
+}
+
+function tableAndGeometries(
+  bundled: BundledMolecule,
+  answer: Answer,
+  path: (ending: string) => string,
+): BundleFile[] {
+  if (answer.conformers.length > 0) return conformerFiles(bundled, answer, path);
+  if (answer.profiles.length > 0) {
+    return answer.profiles.flatMap((profile) => profileFiles(bundled, answer, profile, path));
+  }
+  if (answer.kind === 'conjugation')
+    return [{ path: path('csv'), content: conjugationTable(bundled, answer) }];
+  return [
+    { path: path('csv'), content: strainTable(bundled, answer) },
+    { path: path('mol'), content: answer.molfile },
+  ];
+}
+
+function conformerFiles(
+  { name, smiles, molecule }: BundledMolecule,
+  answer: Answer,
+  path: (ending: string) => string,
+): BundleFile[] {
+  const sdf = writeSdf(
+    answer.conformers.map((conformer) => ({
+      molecule,
+      coordinates: conformer.coordinates,
+      title: `${name} conformer ${conformer.rank + 1}`,
+      data: {
+        SMILES: smiles,
+        'ENERGY_kcal/mol': energy(conformer.energy),
+        'RELATIVE_kcal/mol': energy(conformer.relative),
+        DEGENERACY: conformer.degeneracy,
+        POPULATION: conformer.population.toPrecision(6),
+        MODEL: answer.model,
+      },
+    })),
+  );
+  const csv = csvTable(
+    [
+      'conformer',
+      'energy_kcal_per_mol',
+      'relative_kcal_per_mol',
+      'degeneracy',
+      'population',
+      'rmsd_to_lowest_angstrom',
+    ],
+    answer.conformers.map((conformer) =>
+      [
+        conformer.rank + 1,
+        energy(conformer.energy),
+        energy(conformer.relative),
+        conformer.degeneracy,
+        conformer.population.toPrecision(6),
+        conformer.rmsdToLowest.toFixed(4),
+      ].map(Number),
+    ),
+  );
+  return [
+    { path: path('sdf'), content: sdf },
+    { path: path('csv'), content: csv },
+  ];
+}
+
+function profileFiles(
+  { name, smiles, molecule }: BundledMolecule,
+  answer: Answer,
+  profile: StoredProfile,
+  path: (ending: string) => string,
+): BundleFile[] {
+  const torsion = profile.torsion.map((atom) => atomName(molecule, atom)).join('-');
+  const points = [
+    ...profile.points.map((point) => ({ ...point, label: '', kind: 'grid' })),
+    ...profile.stationary.map((point) => ({ ...point, reached: point.angle })),
+  ];
+  const sdf = writeSdf(
+    points.map((point) => ({
+      molecule,
+      coordinates: point.coordinates,
+      title: `${name} ${torsion} ${point.angle.toFixed(1)}`,
+      data: {
+        SMILES: smiles,
+        TORSION_ATOMS: profile.torsion.map((atom) => atom + 1).join(' '),
+        ANGLE_degrees: point.angle.toFixed(3),
+        KIND: point.kind,
+        ...(point.label ? { LABEL: point.label } : {}),
+        'ENERGY_kcal/mol': energy(point.energy),
+        'RELATIVE_kcal/mol': energy(point.relative),
+        MODEL: profile.model,
+      },
+    })),
+  );
+  const csv = csvTable(
+    [
+      'kind',
+      'angle_degrees',
+      'reached_degrees',
+      'energy_kcal_per_mol',
+      'relative_kcal_per_mol',
+      'label',
+    ],
+    points.map((point) => [
+      point.kind,
+      Number(point.angle.toFixed(3)),
+      Number(point.reached.toFixed(3)),
+      Number(energy(point.energy)),
+      Number(energy(point.relative)),
+      point.label,
+    ]),
+  );
+  const plot = profilePlot({
+    title: `${name}: ${torsion} (${profile.model}${profile.relaxed ? '' : ', rigid'})`,
+    points: profile.points,
+    stationary: profile.stationary,
+  });
+  return [
+    { path: path('sdf'), content: sdf },
+    { path: path('csv'), content: csv },
+    { path: path('svg'), content: plot },
+  ];
+}
+
+function conjugationTable({ molecule }: BundledMolecule, { details }: Answer): string {
+  const bonds = details.bonds as readonly Record<string, number | string | boolean | null>[];
+  const columns = [
+    'twist',
+    'difference',
+    'sCisFraction',
+    'planarSCisCost',
+    'barrier',
+    'meanOverlap',
+  ] as const;
+  return csvTable(
+    [
+      'bond',
+      'kind',
+      'twist_degrees',
+      's_cis_minus_s_trans_kcal_per_mol',
+      's_cis_fraction',
+      'planar_s_cis_cost_kcal_per_mol',
+      'barrier_kcal_per_mol',
+      'mean_overlap',
+    ],
+    bonds.map((bond) => [
+      (bond.bond as unknown as readonly number[]).map((atom) => atomName(molecule, atom)).join('-'),
+      bond.kind,
+      ...columns.map((column) => {
+        const value = bond[column];
+        return typeof value === 'number' ? Number(value.toPrecision(6)) : null;
+      }),
+    ]),
+  );
+}
+
+function strainTable({ molecule }: BundledMolecule, { details }: Answer): string {
+  const torsions = details.torsions as readonly {
+    bond: readonly number[];
+    angle: number;
+    strain: number;
+    preferredAngle: number;
+  }[];
+  return csvTable(
+    ['bond', 'angle_degrees', 'strain_kcal_per_mol', 'preferred_angle_degrees'],
+    [
+      ['whole molecule', null, Number(energy(details.strain as number)), null],
+      ...torsions.map(({ bond, angle, strain, preferredAngle }) => [
+        bond.map((atom) => atomName(molecule, atom)).join('-'),
+        Number(angle.toFixed(3)),
+        Number(energy(strain)),
+        Number(preferredAngle.toFixed(3)),
+      ]),
+    ],
+  );
+}
+
+/** An answer as JSON, with full coordinates; the schema is beside it in the bundle. */
+function asJson({ name, smiles }: BundledMolecule, answer: Answer) {
+  const { conformers, profiles, id: _id, ...rest } = answer;
+  const plain = (coordinates: Float64Array): number[] => [...coordinates];
+  return {
+    name,
+    smiles,
+    ...rest,
+    conformers: conformers.map((conformer) => ({
+      ...conformer,
+      coordinates: plain(conformer.coordinates),
+    })),
+    profiles: profiles.map((profile) => ({
+      ...profile,
+      points: profile.points.map((point) => ({ ...point, coordinates: plain(point.coordinates) })),
+      stationary: profile.stationary.map((point) => ({
+        ...point,
+        coordinates: plain(point.coordinates),
+      })),
+    })),
+  };
+}
+
+function atomName(molecule: Molecule, atom: number): string {
+  return atomLabel(molecule.atomicNumbers[atom], atom);
+}

@@ -1,0 +1,36 @@
+/** Gives every flow test file a database of its own, cloned from the migrated template and dropped afterwards. */
+import { randomBytes } from 'node:crypto';
+import postgres from 'postgres';
+import { afterAll, inject } from 'vitest';
+
+const { adminUrl, url } = inject('cluster');
+const template = new URL(url).pathname.slice(1);
+const name = `flow_${randomBytes(6).toString('hex')}`;
+
+async function asAdmin(command: string): Promise<void> {
+  const admin = postgres(adminUrl, { max: 1, onnotice: () => undefined });
+  try {
+    await admin.unsafe(command);
+  } finally {
+    await admin.end();
+  }
+}
+
+await asAdmin(`create database ${name} template ${template} owner windlass`);
+
+const own = new URL(url);
+own.pathname = `/${name}`;
+// Set before any module of the server is loaded, since they read their settings once.
+Object.assign(process.env, {
+  DATABASE_URL: own.href,
+  AUTH_SECRET: randomBytes(32).toString('hex'),
+  WINDLASS_SMTP_URL: inject('mail').smtpUrl,
+  WINDLASS_DEMO_PASSWORD: 'nine lanterns over the pier',
+  WINDLASS_LOG_LEVEL: process.env['WINDLASS_LOG_LEVEL'] ?? 'silent',
+});
+
+afterAll(async () => {
+  const { closeDatabase } = await import('../../src/lib/server/db');
+  await closeDatabase();
+  await asAdmin(`drop database ${name} with (force)`);
+});

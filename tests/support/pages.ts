@@ -1,0 +1,53 @@
+/** What the page tests share: how to sign in, and the check of a page's accessibility. */
+import { AxeBuilder } from '@axe-core/playwright';
+import { expect, type Page } from '@playwright/test';
+
+function setting(name: string): string {
+  const value = process.env[name];
+  if (!value)
+    throw new Error(`${name} is not set; run the page tests through playwright.config.ts`);
+  return value;
+}
+
+export const lettersUrl = () => setting('WINDLASS_TEST_LETTERS_URL');
+export const databaseUrl = () => setting('WINDLASS_TEST_DATABASE_URL');
+export const demoPassword = () => setting('WINDLASS_TEST_DEMO_PASSWORD');
+
+export const demoMembers = {
+  lead: 'ines.vogt@skerry.example',
+  modeler: 'malik.osei@skerry.example',
+  chemist: 'yuki.tanabe@skerry.example',
+  reader: 'jo.marsh@tideline.example',
+} as const;
+
+/** Opens a page and waits until it is alive: what is typed before would be overwritten. */
+export async function open(page: Page, path: string): Promise<void> {
+  await page.goto(path);
+  await page.locator('html[data-alive]').waitFor();
+}
+
+export async function signIn(page: Page, email: string, password: string): Promise<void> {
+  await open(page, '/sign-in');
+  await page.getByLabel('E-mail address').fill(email);
+  await page.getByLabel('Password').fill(password);
+  await page.getByRole('button', { name: 'Sign in' }).click();
+  await page.waitForURL('**/desk');
+}
+
+export function signInAs(page: Page, role: keyof typeof demoMembers): Promise<void> {
+  return signIn(page, demoMembers[role], demoPassword());
+}
+
+/** Checks the page as it stands against WCAG 2.2 A and AA, and that nothing makes it scroll sideways. */
+export async function expectAccessible(page: Page): Promise<void> {
+  const { violations } = await new AxeBuilder({ page })
+    .withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa'])
+    .analyze();
+  expect(
+    violations.map(({ id, nodes }) => `${id}: ${nodes.map(({ html }) => html).join(' ')}`),
+  ).toEqual([]);
+  const overflow = await page.evaluate(
+    () => document.documentElement.scrollWidth - document.documentElement.clientWidth,
+  );
+  expect(overflow, 'pixels that the page is wider than the window').toBe(0);
+}
