@@ -48,7 +48,7 @@ function tableAndGeometries(
 ): BundleFile[] {
   if (answer.conformers.length > 0) return conformerFiles(bundled, answer, path);
   if (answer.profiles.length > 0) {
-    return answer.profiles.flatMap((profile) => profileFiles(bundled, answer, profile, path));
+    return answer.profiles.flatMap((profile) => profileFiles(bundled, profile, path));
   }
   if (answer.kind === 'conjugation')
     return [{ path: path('csv'), content: conjugationTable(bundled, answer) }];
@@ -106,7 +106,6 @@ function conformerFiles(
 
 function profileFiles(
   { name, smiles, molecule }: BundledMolecule,
-  answer: Answer,
   profile: StoredProfile,
   path: (ending: string) => string,
 ): BundleFile[] {
