@@ -12,6 +12,9 @@ const engineLayers = [
 ];
 const frontDoors = '^src/lib/engine/(run|index|light)[.]ts$';
 const tests = '[.]test[.]ts$';
+/** What a browser loads: pages and widgets, but not the parts of a route that only the server runs. */
+const browser = '^src/(routes|lib/(components|charts|viewer))/';
+const serverParts = '([+](server|(page|layout)[.]server)[.]ts|[.]server[.]ts)$';
 
 /** One rule for each engine room: it may not import a room that stands above it, nor a front door. */
 const layerRules = engineLayers.map((layer, position) => ({
@@ -61,6 +64,82 @@ module.exports = {
       to: { pathNot: ['^src/lib/domain/', '^src/lib/engine/light[.]ts$', '^node_modules/zod/'] },
     },
     {
+      name: 'only-server-touches-the-database',
+      comment:
+        'SQL and the queue live in one place, where every query asks who wants to know; nobody reaches around it.',
+      severity: 'error',
+      from: {
+        pathNot: ['^src/lib/server/', '^tests/', '^drizzle[.]config[.]ts$', '^node_modules/'],
+      },
+      to: { path: '^node_modules/(drizzle-orm|postgres|pg-boss)/' },
+    },
+    {
+      name: 'routes-ask-the-nouns',
+      comment:
+        'A route calls one function of a noun (users, batches …), which checks who asks; tables and connection are none of its business.',
+      severity: 'error',
+      from: { path: '^src/routes/' },
+      to: { path: '^src/lib/server/db/' },
+    },
+    {
+      name: 'browser-loads-only-the-light-engine',
+      comment:
+        'The force field and openchemlib’s tables are megabytes; pages get the small pure parts through engine/light.ts. Types cost nothing.',
+      severity: 'error',
+      from: { path: browser, pathNot: [serverParts, tests] },
+      to: {
+        path: '^src/lib/engine/',
+        pathNot: '^src/lib/engine/light[.]ts$',
+        dependencyTypesNot: ['type-only'],
+      },
+    },
+    {
+      name: 'browser-has-no-server',
+      comment: 'What a browser loads must not contain the server; only types may cross.',
+      severity: 'error',
+      from: { path: browser, pathNot: [serverParts, tests] },
+      to: { path: ['^src/lib/server/', '^worker/'], dependencyTypesNot: ['type-only'] },
+    },
+    {
+      name: 'server-only-reads-molecules',
+      comment:
+        'The web answers in milliseconds, so the server may read and write molecules; whatever computes runs in the worker’s threads.',
+      severity: 'error',
+      from: { path: '^src/lib/server/', pathNot: tests },
+      to: {
+        path: '^src/lib/engine/((forcefield|minimizer|conformers|thermo|torsion|conjugation|strain|tasks)/|run[.]ts$)',
+        dependencyTypesNot: ['type-only'],
+      },
+    },
+    {
+      name: 'server-stands-without-the-web',
+      comment:
+        'The worker runs the same server code, where there is no SvelteKit application and no page.',
+      severity: 'error',
+      from: { path: '^(src/lib/server|worker)/' },
+      to: {
+        path: [
+          '^src/(routes|lib/(components|charts|viewer))/',
+          '^src/(auth|hooks[.]server)[.]ts$',
+          '^[$](app|env)/',
+        ],
+      },
+    },
+    {
+      name: 'server-does-not-know-the-worker',
+      comment: 'The worker calls the server’s functions; the way back goes through the queue.',
+      severity: 'error',
+      from: { path: '^src/' },
+      to: { path: '^worker/' },
+    },
+    {
+      name: 'charts-are-arithmetic',
+      comment: 'Scales and paths of the charts are plain functions, tested without a page.',
+      severity: 'error',
+      from: { path: '^src/lib/charts/.*[.]ts$', pathNot: tests },
+      to: { path: ['^src/(routes|lib/(components|viewer|server))/', '^node_modules/svelte/'] },
+    },
+    {
       name: 'nothing-imports-tests',
       comment: 'What ships must not need what checks it.',
       severity: 'error',
@@ -78,7 +157,8 @@ module.exports = {
   options: {
     doNotFollow: { path: 'node_modules' },
     tsPreCompilationDeps: true,
-    tsConfig: { fileName: 'tsconfig.json' },
+    // It does not follow the paths of the tsconfig that SvelteKit generates.
+    tsConfig: { fileName: 'tsconfig.doors.json' },
     enhancedResolveOptions: {
       exportsFields: ['exports'],
       conditionNames: ['import', 'node', 'default', 'types'],

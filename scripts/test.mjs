@@ -1,49 +1,82 @@
-/** `npm test`: installs what is missing, runs the static checks and every test, and sums all of it up in the last line. */
+/**
+ * `npm test`: installs what is missing, runs the static checks and every test, and sums all of it up in the last line.
+ * Arguments choose test files by a part of their path.
+ */
 import { spawnSync } from 'node:child_process';
 import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { runChecks } from './check.mjs';
+import { installChromium } from './chromium.mjs';
 import { projectRoot } from './folders.mjs';
 import { installPackages } from './install.mjs';
+import { installPostgres } from './postgres.mjs';
 
-/** Runs Vitest and returns its counts; a run that ends without a report counts as one failure. */
-function runVitest(extraArguments) {
+/** Runs a test runner that writes a JSON report; a run that ends without one counts as a failure. */
+function runRunner({ name, command, env, count }) {
   const folder = mkdtempSync(join(tmpdir(), 'windlass-test-'));
-  const report = join(folder, 'vitest.json');
+  const report = join(folder, 'report.json');
   try {
-    const { status } = spawnSync(
-      'npx',
-      [
-        '--no-install',
-        'vitest',
-        'run',
-        '--reporter=default',
-        '--reporter=json',
-        `--outputFile.json=${report}`,
-        ...extraArguments,
-      ],
-      { cwd: projectRoot, stdio: 'inherit' },
-    );
-    const { numPassedTests, numFailedTests, numPendingTests, numTotalTestSuites } = JSON.parse(
-      readFileSync(report, 'utf8'),
-    );
+    const { status } = spawnSync('npx', ['--no-install', ...command(report)], {
+      cwd: projectRoot,
+      stdio: 'inherit',
+      env: { ...process.env, ...env?.(report) },
+    });
+    const counts = count(JSON.parse(readFileSync(report, 'utf8')));
     // A file that could not be loaded fails the run without failing a single test.
-    const failed = status !== 0 && numFailedTests === 0 ? 1 : numFailedTests;
-    return { passed: numPassedTests, failed, skipped: numPendingTests, suites: numTotalTestSuites };
+    return status !== 0 && counts.failed === 0 ? { ...counts, failed: 1 } : counts;
   } catch (error) {
-    console.error(error.message);
-    return { passed: 0, failed: 1, skipped: 0, suites: 0 };
+    console.error(`${name} left no report: ${error.message}`);
+    return { passed: 0, failed: 1, skipped: 0 };
   } finally {
     rmSync(folder, { recursive: true, force: true });
   }
 }
 
+const vitest = (files) => ({
+  name: 'Vitest',
+  command: (report) => [
+    'vitest',
+    'run',
+    '--reporter=default',
+    '--reporter=json',
+    `--outputFile.json=${report}`,
+    ...(files.length > 0 ? ['--passWithNoTests', ...files] : []),
+  ],
+  count: (report) => ({
+    passed: report.numPassedTests,
+    failed: report.numFailedTests,
+    skipped: report.numPendingTests,
+  }),
+});
+
+const playwright = (files) => ({
+  name: 'Playwright',
+  command: () => [
+    'playwright',
+    'test',
+    '--reporter=list,json',
+    ...(files.length > 0 ? ['--pass-with-no-tests', ...files] : []),
+  ],
+  env: (report) => ({ PLAYWRIGHT_JSON_OUTPUT_NAME: report }),
+  // A test that passes only at its second try counts as failed: it hides something.
+  count: ({ stats }) => ({
+    passed: stats.expected,
+    failed: stats.unexpected + stats.flaky,
+    skipped: stats.skipped,
+  }),
+});
+
+const files = process.argv.slice(2);
 await installPackages();
-const checks = runChecks();
-const tests = runVitest(process.argv.slice(2));
-const passed = checks.passed + tests.passed;
-const failed = checks.failed + tests.failed;
-process.exitCode = failed === 0 && tests.passed > 0 ? 0 : 1;
-const skipped = tests.skipped > 0 ? `, ${tests.skipped} skipped` : '';
-console.log(`\n${passed} passed, ${failed} failed${skipped}`);
+installPostgres();
+installChromium();
+const results = [
+  { ...runChecks(), skipped: 0 },
+  runRunner(vitest(files)),
+  runRunner(playwright(files)),
+];
+const sum = (name) => results.reduce((total, result) => total + result[name], 0);
+const skipped = sum('skipped') > 0 ? `, ${sum('skipped')} skipped` : '';
+process.exitCode = sum('failed') === 0 && results[1].passed + results[2].passed > 0 ? 0 : 1;
+console.log(`\n${sum('passed')} passed, ${sum('failed')} failed${skipped}`);
