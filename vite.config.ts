@@ -8,8 +8,31 @@ export default defineConfig({
   optimizeDeps: { include: ['ngl', 'openchemlib'] },
   ssr: { external: ['openchemlib'] },
   test: {
-    include: ['src/**/*.test.ts', 'worker/**/*.test.ts', 'tests/**/*.test.ts'],
-    setupFiles: ['tests/support/chemistry-resources.ts'],
+    projects: [
+      {
+        extends: true,
+        test: {
+          name: 'unit',
+          include: ['src/**/*.test.ts', 'worker/**/*.test.ts', 'tests/**/*.test.ts'],
+          exclude: ['tests/flow/**'],
+          setupFiles: ['tests/support/chemistry-resources.ts'],
+          // Enough for modules that read their settings when loaded; nothing listens there.
+          env: {
+            DATABASE_URL: 'postgres://nobody@127.0.0.1:1/none',
+            AUTH_SECRET: 'only for tests, which sign nothing',
+          },
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'flow',
+          include: ['tests/flow/**/*.test.ts'],
+          globalSetup: ['tests/support/cluster.ts'],
+          setupFiles: ['tests/support/chemistry-resources.ts', 'tests/support/database.ts'],
+        },
+      },
+    ],
     testTimeout: 60_000,
     // openchemlib is one large file; a pool of forked processes would parse it once per test file.
     pool: 'threads',

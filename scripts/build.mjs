@@ -30,6 +30,12 @@ const SOURCES = [
   'vite.config.ts',
   'vite.worker.config.ts',
 ];
+/** SvelteKit loads the server once while building, where settings are read but nothing is connected. */
+const BUILD_SETTINGS = {
+  NODE_ENV: 'production',
+  DATABASE_URL: 'postgres://nobody@127.0.0.1:1/none',
+  AUTH_SECRET: 'only while building, where nothing is signed',
+};
 const KEPT_BUILDS = 3;
 const builds = join(projectRoot, 'build');
 
@@ -52,8 +58,8 @@ function hashSources() {
 }
 
 async function runVite(folder, config) {
-  const args = ['node_modules/vite/bin/vite.js', 'build', '--logLevel=warn', ...config];
-  const env = { ...process.env, NODE_ENV: 'production', WINDLASS_BUILD_FOLDER: folder };
+  const args = ['node_modules/vite/bin/vite.js', 'build', '--logLevel=error', ...config];
+  const env = { ...process.env, ...BUILD_SETTINGS, WINDLASS_BUILD_FOLDER: folder };
   await runProgram({ args, env }, { name: 'build', print: (name, line) => console.log(line) });
 }
 
