@@ -5,7 +5,9 @@ export default defineConfig({
   testDir: 'tests/pages',
   globalSetup: './tests/support/product.ts',
   outputDir: 'test-results',
-  timeout: 60_000,
+  // Nothing here measures time; a busy machine may take long.
+  timeout: 300_000,
+  expect: { timeout: 30_000 },
   // One product and one queue serve all tests, and two cores serve the product.
   workers: 1,
   reporter: 'list',

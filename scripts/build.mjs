@@ -60,7 +60,15 @@ function hashSources() {
 async function runVite(folder, config) {
   const args = ['node_modules/vite/bin/vite.js', 'build', '--logLevel=error', ...config];
   const env = { ...process.env, ...BUILD_SETTINGS, WINDLASS_BUILD_FOLDER: folder };
-  await runProgram({ args, env }, { name: 'build', print: (name, line) => console.log(line) });
+  // Bundlers talk much about what is well; it is shown when something is not.
+  const lines = [];
+  const print = (name, line) => lines.push(line);
+  try {
+    await runProgram({ args, env }, { name: 'build', print });
+  } catch (error) {
+    console.error(lines.join('\n'));
+    throw error;
+  }
 }
 
 function removeOldBuilds() {

@@ -34,7 +34,7 @@ async function signUpAndConfirm(page: Page): Promise<string> {
 }
 
 async function signOut(page: Page): Promise<void> {
-  await page.getByText('Account:').click();
+  await page.locator('summary', { hasText: 'Account:' }).click();
   await page.getByRole('button', { name: 'Sign out' }).click();
   await expect(page.getByRole('link', { name: 'Sign in' }).first()).toBeVisible();
 }
@@ -224,7 +224,7 @@ for (const colorScheme of ['light', 'dark'] as const) {
       await open(page, path);
       await expectAccessible(page);
     }
-    await page.getByText('Open:').filter({ visible: true }).click();
+    await page.locator('summary', { hasText: 'Open:' }).click();
     await expect(page.getByRole('link', { name: 'Batches' })).toBeVisible();
     await expectAccessible(page);
     await page.keyboard.press('Escape');
