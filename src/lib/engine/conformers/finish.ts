@@ -73,6 +73,7 @@ export async function finish(
     })),
     complete: end === 'stable',
     ended: end,
+    settled: ended === 'stable',
     counts: trial.counts,
   };
 }
