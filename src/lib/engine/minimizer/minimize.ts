@@ -8,11 +8,11 @@ import type { MinimizeOptions, MinimizeResult } from './minimizer';
 import { createPreconditioner } from './preconditioner';
 
 /** Pairs of steps and gradient changes remembered. */
-const MEMORY = 12;
+const MEMORY = 7;
 /** Steps after which the curvature is computed anew. */
-const REFRESH_INTERVAL = 8;
+const REFRESH_INTERVAL = 6;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
-const LONGEST_STEP = 0.5;
+const LONGEST_STEP = 0.2;
 
 /**
  * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
