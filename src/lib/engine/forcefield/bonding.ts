@@ -2,6 +2,7 @@
 import type { Molecule } from '../molecule/molecule';
 import type { Bonding } from './structure';
 
+const CARBON = 6;
 const NITROGEN = 7;
 const OXYGEN = 8;
 const PHOSPHORUS = 15;
@@ -10,7 +11,8 @@ const CHLORINE = 17;
 
 /**
  * Copies bond orders and charges and brings them to the convention of the typing rules: S=O, P=O and Cl=O instead of
- * S⁺–O⁻; N⁺–O⁻ instead of pentavalent N=O; azides and diazo groups as =N⁺=N⁻; sulfinates as O=S–O⁻.
+ * S⁺–O⁻; N⁺–O⁻ instead of pentavalent N=O; azides and diazo groups as =N⁺=N⁻;
+ * sulfinates as O=S–O⁻; enolates and nitronates with the charge on oxygen.
  */
 export function normalizeBonding(molecule: Molecule): Bonding {
   const bonding: Bonding = {
@@ -28,6 +30,7 @@ export function normalizeBonding(molecule: Molecule): Bonding {
       cumulateDiazo(bonding, atom);
     }
   }
+  for (let atom = 0; atom < molecule.atomCount; atom++) enolize(bonding, atom);
   return bonding;
 }
 
@@ -98,4 +101,28 @@ function cumulateDiazo(bonding: Bonding, center: number): void {
     bonding.charges[other.atom] = 0;
     return;
   }
+}
+
+/**
+ * ⁻C–X=O becomes C=X–O⁻, X carbon or positive nitrogen. With more than one such oxygen the form would be a guess, and
+ * the carbon stays as it is, to be refused.
+ */
+function enolize(bonding: Bonding, carbon: number): void {
+  const neighbors = bonding.neighbors[carbon];
+  if (bonding.elements[carbon] !== CARBON || bonding.charges[carbon] !== -1) return;
+  if (neighbors.length !== 3 || neighbors.some(({ bond }) => bonding.orders[bond] !== 1)) return;
+  const ways = neighbors.flatMap((inner) =>
+    bonding.elements[inner.atom] === CARBON || bonding.charges[inner.atom] === 1
+      ? bonding.neighbors[inner.atom]
+          .filter(({ atom, bond }) => isTerminal(bonding, atom) && bonding.orders[bond] === 2)
+          .filter(({ atom }) => bonding.elements[atom] === OXYGEN)
+          .map((outer) => ({ inner, outer }))
+      : [],
+  );
+  if (ways.length !== 1) return;
+  const [{ inner, outer }] = ways;
+  bonding.orders[inner.bond] = 2;
+  bonding.orders[outer.bond] = 1;
+  bonding.charges[carbon] = 0;
+  bonding.charges[outer.atom] = -1;
 }

@@ -68,7 +68,10 @@ export function stretchBendClass(angleClass: number, classIJ: number): number {
   }
 }
 
-/** The torsion classes to try, in this order (part IV). */
+/**
+ * The torsion classes to try, in this order (part IV): the one of a ring, the one of the bonds, and class 0, to which
+ * RDKit and openchemlib both step down before they turn to the empirical rules.
+ */
 export function torsionClasses(
   structure: Structure,
   types: Readonly<Int32Array>,
@@ -82,11 +85,11 @@ export function torsionClasses(
   const plain = classJK === 0 && isSingle && (classIJ === 1 || classKL === 1) ? 2 : classJK;
   // Four atoms round a ring of two fused three-membered rings are no four-membered ring.
   if (areBonded(structure, i, l)) {
-    return areBonded(structure, i, k) || areBonded(structure, j, l) ? [plain] : [4, plain];
+    return areBonded(structure, i, k) || areBonded(structure, j, l) ? [plain, 0] : [4, plain];
   }
   const inFiveRing = structure.neighbors[i].some(
     ({ atom }) => atom !== j && atom !== k && areBonded(structure, atom, l),
   );
   const isSaturated = atoms.some((atom) => types[atom] === AtomType.alkylCarbon);
-  return plain === 0 && inFiveRing && isSaturated ? [5, 0] : [plain];
+  return plain === 0 && inFiveRing && isSaturated ? [5, 0] : [plain, 0];
 }

@@ -4,7 +4,9 @@ import { bondClass, torsionClasses } from './interaction-classes';
 import type { Interactions } from './interactions';
 import type { Parameterization } from './parameterization';
 import { findTorsion } from './torsion-parameters';
+import type { Structure } from './structure';
 import { estimateTorsion } from './torsion-rules';
+import type { CentralBond } from './torsion-rules';
 import { unsupported } from './typing';
 
 interface TorsionPath {
@@ -66,9 +68,13 @@ function parameterizeTorsion(
   const estimated = estimateTorsion({
     j: parameters.properties.get(types[j])!,
     k: parameters.properties.get(types[k])!,
-    order: structure.orders[central],
-    isAromatic: structure.aromaticBonds[central] === 1,
+    kind: bondKind(structure, central),
   });
   if (!estimated) throw unsupported(structure, j);
   return estimated;
+}
+
+function bondKind(structure: Structure, bond: number): CentralBond['kind'] {
+  if (structure.aromaticBonds[bond]) return 'aromatic';
+  return (['single', 'double', 'triple'] as const)[structure.orders[bond] - 1];
 }
