@@ -8,7 +8,7 @@ import {
   translate,
   type OpenchemlibMolecule,
 } from './openchemlib';
-import { hasEqualEnds, isHeldByCage, isHeldByRing } from './stereo-limits';
+import { hasEqualEnds, isHeldByCage, isHeldByRing, isImineConfiguration } from './stereo-limits';
 import { symmetryClasses } from './symmetry-classes';
 import { writeSmiles } from './write-smiles';
 
@@ -62,7 +62,9 @@ export function resolveConfiguration(
     ({ atom }) => parityOf(atom) !== OclMolecule.cAtomParityNone,
   );
   const stereobonds = doubleBonds.filter(
-    ({ bond }) => bondParityOf(bond) !== OclMolecule.cBondParityNone,
+    (stereobond) =>
+      bondParityOf(stereobond.bond) !== OclMolecule.cBondParityNone ||
+      isImineConfiguration(molecule, classes, stereobond),
   );
   return {
     stereocenters,
@@ -82,7 +84,12 @@ export function resolveConfiguration(
           !statedBonds.has(bond) &&
           bondParityOf(bond) === OclMolecule.cBondParityUnknown,
       ),
-    smiles: canonicalSmiles(molecule, translated, stereocenters, stereobonds),
+    smiles: canonicalSmiles(
+      molecule,
+      translated,
+      stereocenters,
+      stereobonds.filter(({ bond }) => bondParityOf(bond) !== OclMolecule.cBondParityNone),
+    ),
   };
 }
 

@@ -69,7 +69,7 @@ export function isHeldByCage(
   const inRings = around.filter(({ bond }) => molecule.ringBonds[bond] === 1);
   const meetAgain = (one: number, other: number): boolean =>
     molecule.neighbors[one].some(
-      (to) => to.atom !== atom && bondBetween(molecule, to.atom, other) >= 0,
+      (to) => to.atom !== atom && (to.atom === other || bondBetween(molecule, to.atom, other) >= 0),
     );
   return (
     inRings.length > 2 &&
@@ -93,4 +93,26 @@ function isBridgehead(molecule: Molecule, atom: number): boolean {
       return shared.length > 2 && continues.length === 1;
     }),
   );
+}
+
+/**
+ * True for C=N-H with two different substituents on carbon and a hydrogen that was given, not added: a configuration
+ * that is kept when stated, though SMILES without explicit hydrogens cannot say it.
+ */
+export function isImineConfiguration(
+  molecule: Molecule,
+  classes: ArrayLike<number>,
+  { atoms: [first, left, right, last] }: Stereobond,
+): boolean {
+  return [
+    { hydrogen: first, nitrogen: left, carbon: right },
+    { hydrogen: last, nitrogen: right, carbon: left },
+  ].some(({ hydrogen, nitrogen, carbon }) => {
+    if (molecule.atomicNumbers[hydrogen] !== 1 || molecule.atomicNumbers[nitrogen] !== 7)
+      return false;
+    if (hydrogen >= molecule.givenAtomCount || molecule.neighbors[nitrogen].length !== 2)
+      return false;
+    const others = molecule.neighbors[carbon].filter((to) => to.atom !== nitrogen);
+    return others.length === 2 && classes[others[0].atom] !== classes[others[1].atom];
+  });
 }
