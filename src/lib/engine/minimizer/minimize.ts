@@ -6,6 +6,7 @@ import { searchLine } from './line-search';
 import type { Point } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
 import { createPreconditioner } from './preconditioner';
+import { separateCoincident } from './separate';
 
 /** Pairs of steps and gradient changes remembered. */
 const MEMORY = 7;
@@ -17,7 +18,7 @@ const LONGEST_STEP = 0.2;
 /**
  * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
  * (kcal/mol/Å). Pauses by `control`, and throws only when the control does. Where it stops unconverged, the result says
- * so and `x` is the lowest point reached.
+ * so and `x` is the lowest point reached. Atoms on top of each other are taken apart first.
  */
 export async function minimize(
   energy: EnergyTerm,
@@ -26,6 +27,7 @@ export async function minimize(
   control: Control,
 ): Promise<MinimizeResult> {
   const size = x.length;
+  separateCoincident(x);
   const { gradientRms, maxEvaluations, curvature } = options;
   const history = createHistory(size, MEMORY);
   const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
