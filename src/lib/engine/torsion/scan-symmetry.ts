@@ -153,9 +153,9 @@ function shiftingOperations(
   return found;
 }
 
-/** The shift from a torsion to its image, to the nearest of the turns that substituents are apart. */
-function shiftBetween(own: number, image: number, mirror: boolean): number {
-  const turn = mirror ? own + image : image - own;
+/** The shift from a torsion to what reads `angle` before any mirror, to the nearest turn that substituents are apart. */
+function shiftBetween(own: number, angle: number, mirror: boolean): number {
+  const turn = mirror ? own - angle : angle - own;
   return 60 * ((Math.round(turn / 60) + 12) % 6);
 }
 
