@@ -68,6 +68,8 @@ function isWrongEnantiomer(molecule: Molecule, x: Float64Array): boolean {
     .flatMap(({ code, atom }) =>
       code === 'undefined-stereocenter' && atom !== undefined ? [atom] : [],
     )
+    // The middle of a chiral allene has two neighbors only, which span no volume.
+    .filter((atom) => molecule.neighbors[atom].length > 2)
     .sort((a, b) => classes[a] - classes[b]);
   if (open.length === 0) return false;
   const neighbors = molecule.neighbors[open[0]].map(({ atom }) => atom);
