@@ -1,5 +1,5 @@
 /** Reads the configuration from a drawing: wedges at centers, and the sides of double bonds. */
-import type { RawMolfile } from './molfile';
+import type { RawMolfile } from './connection-table';
 import type { RawCenter, RawDoubleBond } from './raw';
 import { handedness } from './stereo';
 
