@@ -1,11 +1,21 @@
 /** The integer classes that MMFF94 tells bonds, angles, stretch-bends and torsions apart by (part I and part IV). */
 import { AtomType } from './atom-types';
+import { areBonded } from './bonding';
 import type { Parameters } from './parameters';
 import type { Structure } from './structure';
-import { areBonded } from './structure';
 
-/** 1 for a single bond between two multiply bonded atoms that is no edge of an aromatic ring, 0 otherwise. */
-export function bondClass(
+/** Per bond: 1 for a single bond between two multiply bonded atoms that is no edge of an aromatic ring, 0 otherwise. */
+export function findBondClasses(
+  structure: Structure,
+  types: Readonly<Int32Array>,
+  parameters: Parameters,
+): Uint8Array {
+  return Uint8Array.from(structure.molecule.bonds, (_, bond) =>
+    bondClass(structure, types, parameters, bond),
+  );
+}
+
+function bondClass(
   structure: Structure,
   types: Readonly<Int32Array>,
   parameters: Parameters,

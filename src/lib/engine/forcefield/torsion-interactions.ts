@@ -1,6 +1,6 @@
 /** The torsions of a molecule with their parameters. */
 import type { Neighbor } from '../molecule/molecule';
-import { bondClass, torsionClasses } from './interaction-classes';
+import { torsionClasses } from './interaction-classes';
 import type { Interactions } from './interactions';
 import type { Parameterization } from './parameterization';
 import { findTorsion } from './torsion-parameters';
@@ -48,18 +48,15 @@ function torsionPaths({ structure, types, parameters }: Parameterization): Torsi
 }
 
 function parameterizeTorsion(
-  { structure, types, parameters }: Parameterization,
+  { structure, types, bondClasses, parameters }: Parameterization,
   { atoms, bonds }: TorsionPath,
 ): readonly number[] {
   const [left, central, right] = bonds;
-  const bondClasses = [left, central, right].map((bond) =>
-    bondClass(structure, types, parameters, bond),
-  );
   const classes = torsionClasses(
     structure,
     types,
     atoms,
-    [bondClasses[0], bondClasses[1], bondClasses[2]],
+    [bondClasses[left], bondClasses[central], bondClasses[right]],
     central,
   );
   const [i, j, k, l] = atoms;
