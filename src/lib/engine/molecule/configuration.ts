@@ -8,7 +8,12 @@ import {
   translate,
   type OpenchemlibMolecule,
 } from './openchemlib';
-import { hasEqualEnds, isHeldByCage, isHeldByRing, isImineConfiguration } from './stereo-limits';
+import {
+  canBeStereocenter,
+  isHeldByCage,
+  isHeldByRing,
+  isImineConfiguration,
+} from './stereo-limits';
 import { symmetryClasses } from './symmetry-classes';
 import { writeSmiles } from './write-smiles';
 
@@ -44,7 +49,7 @@ export function resolveConfiguration(
       smiles: hydrogenSmiles(molecule),
     };
   }
-  const centers = statedCenters.filter(({ atom }) => !hasEqualEnds(molecule, atom));
+  const centers = statedCenters.filter(({ atom }) => canBeStereocenter(molecule, atom));
   const doubleBonds = statedDoubleBonds.filter((stereobond) => !isHeldByRing(molecule, stereobond));
   const tables = { ...molecule, stereocenters: centers, stereobonds: doubleBonds };
   const translated = translate(tables, kept);
@@ -73,7 +78,7 @@ export function resolveConfiguration(
       (atom) =>
         !stated.has(atom) &&
         parityOf(atom) === OclMolecule.cAtomParityUnknown &&
-        !hasEqualEnds(molecule, atom) &&
+        canBeStereocenter(molecule, atom) &&
         !isHeldByCage(molecule, classes, atom),
     ),
     undefinedBonds: molecule.bonds

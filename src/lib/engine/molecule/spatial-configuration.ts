@@ -1,6 +1,6 @@
 /** Reads the configuration from a 3-D geometry. */
 import type { Molecule, Stereobond, Stereocenter } from './molecule';
-import { isLinear, isPi } from './pi-systems';
+import { isLinear } from './pi-systems';
 import { handedness, isCis } from './stereo';
 
 /** Handedness below which a center is too flat to have a configuration. */
@@ -15,7 +15,7 @@ export function spatialConfiguration(
 ): { centers: Stereocenter[]; doubleBonds: Stereobond[] } {
   const centers: Stereocenter[] = [];
   molecule.neighbors.forEach((around, atom) => {
-    const pyramid = around.length === 3 && isPyramid(molecule, atom);
+    const pyramid = around.length === 3 && PYRAMIDAL.has(molecule.atomicNumbers[atom]);
     if (around.length !== 4 && !pyramid) return;
     const atoms = around.map((neighbor) => neighbor.atom);
     if (atoms.filter((other) => molecule.atomicNumbers[other] === 1).length > 3) return;
@@ -33,14 +33,4 @@ export function spatialConfiguration(
     doubleBonds.push({ bond, atoms, cis: isCis(coordinates, atoms) });
   });
   return { centers, doubleBonds };
-}
-
-/** An amine's nitrogen inverts freely, unless it is a bridgehead with all three bonds in rings. */
-function isPyramid(molecule: Molecule, atom: number): boolean {
-  if (PYRAMIDAL.has(molecule.atomicNumbers[atom])) return true;
-  return (
-    molecule.atomicNumbers[atom] === 7 &&
-    !isPi(molecule, atom) &&
-    molecule.neighbors[atom].every(({ bond }) => molecule.ringBonds[bond] === 1)
-  );
 }

@@ -7,15 +7,18 @@ import { bondBetween, type Molecule, type Stereobond } from './molecule';
 const SMALLEST_RING_WITH_TRANS = 8;
 
 /**
- * True for centers with two terminal neighbors of one kind, which resonance or a proton's move makes equal whatever
- * was drawn: the oxygens of a phosphate, a sulfonate, two methyl hydrogens.
+ * False for a nitrogen with three neighbors, which inverts (or, as a bridgehead, follows the rest of its cage), and for
+ * centers with two terminal neighbors of one kind, which resonance or a proton's move makes equal whatever was drawn:
+ * the oxygens of a phosphate or sulfonate, two hydrogens.
  */
-export function hasEqualEnds(molecule: Molecule, atom: number): boolean {
-  const ends = molecule.neighbors[atom]
+export function canBeStereocenter(molecule: Molecule, atom: number): boolean {
+  const around = molecule.neighbors[atom];
+  if (molecule.atomicNumbers[atom] === 7 && around.length === 3) return false;
+  const ends = around
     .map((neighbor) => neighbor.atom)
     .filter((neighbor) => molecule.neighbors[neighbor].length === 1)
     .map((end) => `${molecule.atomicNumbers[end]}-${molecule.massNumbers[end]}`);
-  return new Set(ends).size < ends.length;
+  return new Set(ends).size === ends.length;
 }
 
 /** True for double bonds in rings too small to be anything but cis. */

@@ -27,7 +27,6 @@ MOLECULES = {
     "fluorochlorobromoethene": "F/C(Br)=C/Cl",
     "butanone oxime": "CC/C(C)=N/O",
     "azobenzene": "c1ccc(/N=N\\c2ccccc2)cc1",
-    "trans-cyclooctene": "C1CCC/C=C/CC1",
     "deuterated ethanol": "C[C@H]([2H])O",
     "nitrobenzoate": "O=C([O-])c1cccc([N+](=O)[O-])c1",
     "penicillin G": "CC1(C)S[C@@H]2[C@H](NC(=O)Cc3ccccc3)C(=O)N2[C@H]1C(=O)O",
