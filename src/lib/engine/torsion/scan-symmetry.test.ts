@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { initialGeometry } from '../conformers/initial-geometry';
+import { unattended } from '../control';
 import { createForceField } from '../forcefield/create';
 import { torsion as torsionAngle } from '../geometry';
 import { readMolecule } from '../molecule/read';
@@ -12,7 +13,8 @@ async function symmetryOf(smiles: string, ...torsions: TorsionAtoms[]) {
   const molecule = readMolecule({ smiles });
   const forceField = createForceField(molecule);
   const x = await initialGeometry(molecule, 1);
-  return { forceField, x, symmetry: findScanSymmetry(forceField, torsions, x, createRandom(1)) };
+  const symmetry = await findScanSymmetry(forceField, torsions, x, createRandom(1), unattended);
+  return { forceField, x, symmetry };
 }
 
 /** Turns that bring the profile onto itself without mirror, degrees. */

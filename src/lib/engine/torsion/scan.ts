@@ -48,7 +48,13 @@ export async function scanTorsion(
   const character = characterizeBond(molecule, torsion, classes);
   if (!relaxed) return scanRigidly(forceField, drive, starts[0], step, character);
 
-  const symmetry = findScanSymmetry(forceField, [torsion], starts[0], createRandom(seed));
+  const symmetry = await findScanSymmetry(
+    forceField,
+    [torsion],
+    starts[0],
+    createRandom(seed),
+    control,
+  );
   const all = symmetry.exact.length > 0 ? starts : [...starts, ...found.mirrored];
   const grid = createGrid(1, step, symmetry.exact);
   const waveControl = control.part(STARTS_SHARE, WAVE_SHARE);
