@@ -39,9 +39,11 @@ export async function analyzeConjugation(
   control: Control,
 ): Promise<ConjugationResult> {
   const { molecule } = forceField;
-  const searchOptions = { ...defaultConformerSearchOptions, seed };
-  const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
   const found = findConjugatedBonds(molecule);
+  // Without conjugated bonds a geometry is shown, and no number depends on it.
+  const effort = found.length > 0 ? 'normal' : 'quick';
+  const searchOptions = { ...defaultConformerSearchOptions, effort, seed } as const;
+  const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
   const scans = await scanBonds(forceField, found, seed, control.part(SEARCH_SHARE, 1));
   const lowest = lowestShape(search.conformers[0], [...scans.values()]);
   const bonds = found.map((bond): BondConjugation => {
