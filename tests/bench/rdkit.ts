@@ -21,7 +21,7 @@ interface Requests {
       torsion: readonly number[];
       repeats: number;
     };
-    answer: { seconds: number; energies: number[] };
+    answer: { seconds: number; energies: number[]; gradientRms: number[] };
   };
   conformers: {
     request: { smiles: string; count: number };

@@ -63,7 +63,7 @@ def constrained(request):
     best = None
     for _ in range(request['repeats']):
         seconds = 0.0
-        energies = []
+        energies, gradients = [], []
         for molecule, angle in starts:
             copy = Chem.Mol(molecule)
             properties = AllChem.MMFFGetMoleculeProperties(copy, mmffVariant='MMFF94s')
@@ -73,9 +73,10 @@ def constrained(request):
             field.MMFFAddTorsionConstraint(*atoms, False, angle, angle, TORSION_FORCE)
             run_to_end(field)
             seconds += time.process_time() - start
+            gradients.append(rms(field.CalcGrad()))
             energies.append(AllChem.MMFFGetMoleculeForceField(copy, properties, nonBondedThresh=CUTOFF).CalcEnergy())
         best = seconds if best is None else min(best, seconds)
-    return {'seconds': best, 'energies': energies}
+    return {'seconds': best, 'energies': energies, 'gradientRms': gradients}
 
 
 def conformers(request):

@@ -64,6 +64,7 @@ async function turnedStarts(smiles: string, torsion: readonly [number, number, n
 async function constrainedOurs(
   starts: readonly { angle: number; molfile: string }[],
   torsion: readonly number[],
+  gradientRms: readonly number[],
 ) {
   const molecules = starts.map(({ molfile }) => readMolecule({ molfile }));
   const forceField = createForceField(molecules[0]);
@@ -76,7 +77,7 @@ async function constrainedOurs(
         (at, gradient) => forceField.energy(at, gradient) + restraint.energy(at, gradient),
         x,
         {
-          gradientRms: SEARCHING_GRADIENT_RMS,
+          gradientRms: gradientRms[n],
           maxEvaluations: 10_000,
           curvature: (at, hessian) => {
             forceField.curvature(at, hessian);
@@ -96,12 +97,16 @@ export async function scanSection(rdkit: boolean): Promise<string> {
   const rows: string[][] = [];
   for (const { name, smiles, torsion } of scans) {
     const starts = await turnedStarts(smiles, torsion);
-    const ours = await constrainedOurs(starts, torsion);
-    const whole = await fastest(() => compute({ smiles }, 'scan', { torsion, step: STEP }));
-    const wholeEnergies = whole.value.points.map(({ energy }) => energy);
     const theirs = rdkit
       ? askRdkit('constrained', { starts, torsion, repeats: RDKIT_PASSES })
       : null;
+    // Same or tighter convergence: never looser than where RDKit stopped from the same start.
+    const gradientRms = starts.map((_, n) =>
+      Math.min(SEARCHING_GRADIENT_RMS, theirs?.gradientRms[n] ?? SEARCHING_GRADIENT_RMS),
+    );
+    const ours = await constrainedOurs(starts, torsion, gradientRms);
+    const whole = await fastest(() => compute({ smiles }, 'scan', { torsion, step: STEP }));
+    const wholeEnergies = whole.value.points.map(({ energy }) => energy);
     rows.push([
       name,
       String(readMolecule({ smiles }).atomCount),
