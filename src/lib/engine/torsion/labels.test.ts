@@ -19,7 +19,7 @@ async function labelsOf(
   const molecule = readMolecule({ smiles });
   const forceField = createForceField(molecule);
   const drive = createTorsionDrive(forceField, [torsion]);
-  const { starts } = await findStarts(forceField, [torsion], 1, unattended);
+  const { starts } = await findStarts(forceField, [torsion], { seed: 1 }, unattended);
   const character = characterizeBond(molecule, torsion, symmetryClasses(molecule));
   return wanted.map(([angle, kind]) => {
     const x = starts[0].slice();

@@ -86,7 +86,7 @@ export async function scanTorsionMap(
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, torsions);
   checkTwoBonds(torsions);
-  const found = await findStarts(forceField, torsions, seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, torsions, { seed }, control.part(0, STARTS_SHARE));
   const { starts } = found;
   for (const atoms of torsions) checkBent(starts[0], atoms);
   const symmetry = await findScanSymmetry(

@@ -41,7 +41,7 @@ export async function scanTorsion(
   checkStep(step, SMALLEST_STEP);
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, [torsion]);
-  const found = await findStarts(forceField, [torsion], seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, [torsion], options, control.part(0, STARTS_SHARE));
   const { starts } = found;
   checkBent(starts[0], torsion);
   const classes = symmetryClasses(molecule);

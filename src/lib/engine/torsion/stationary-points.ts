@@ -27,6 +27,8 @@ export interface ProfileSetting {
 
 /** Minima nearer to each other than this are one, degrees. */
 const SAME_ANGLE = 2;
+/** Mirrored humps on one barrier, with no minimum between them, are one if nearer than this, degrees. */
+const SAME_MAXIMUM = 6;
 /** A barrier lower than this above the higher of its two minima is noise and separates nothing, kcal/mol. */
 const NO_BARRIER = 0.005;
 /** A free minimum may lie this much above the curve through the grid and still belong to the profile, kcal/mol. */
@@ -75,7 +77,7 @@ function describe(
   const lowest = Math.min(...found.map(({ energy }) => energy));
   const mirrored = symmetry.exact.length > 0;
   return found
-    .map((sample) => (mirrored ? { ...sample, angle: ontoMirror(sample.angle) } : sample))
+    .map((sample) => (mirrored ? { ...sample, angle: ontoMirror(sample) } : sample))
     .sort((a, b) => a.angle - b.angle)
     .map((sample) => ({
       ...sample,
@@ -105,9 +107,10 @@ function mergeMinima(
 }
 
 /** Of a stationary point and its mirror image so near to each other that they count as one, the angle between them. */
-function ontoMirror(angle: number): number {
-  if (Math.abs(angle) < SAME_ANGLE / 2) return 0;
-  return Math.abs(angle) > 180 - SAME_ANGLE / 2 ? 180 : angle;
+function ontoMirror({ kind, angle }: { kind: StationaryKind; angle: number }): number {
+  const within = (kind === 'minimum' ? SAME_ANGLE : SAME_MAXIMUM) / 2;
+  if (Math.abs(angle) < within) return 0;
+  return Math.abs(angle) > 180 - within ? 180 : angle;
 }
 
 /** Free minima from the grid's lowest places and from the starts, ascending in angle. */
