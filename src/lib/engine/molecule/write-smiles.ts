@@ -78,7 +78,8 @@ export function writeSmiles(molecule: Molecule, view: SmilesView): string {
 }
 
 /** A depth-first tree from the first atom, shorter branches first. */
-function growTree(molecule: Molecule, { ranks }: SmilesView): Branch {
+function growTree(molecule: Molecule, view: SmilesView): Branch {
+  const { ranks } = view;
   const visited = new Map<number, Branch>();
   const grow = (atom: number, parent: Neighbor | null): Branch => {
     const branch: Branch = { atom, parent, children: [], closures: [], size: 1 };
@@ -108,13 +109,19 @@ function growTree(molecule: Molecule, { ranks }: SmilesView): Branch {
     );
     return branch;
   };
-  return grow(firstAtom(molecule, ranks), null);
+  return grow(firstAtom(molecule, view), null);
 }
 
-/** The atom of lowest rank among the ends of chains, or among all where there is no end. */
-function firstAtom(molecule: Molecule, ranks: ArrayLike<number>): number {
+/**
+ * The atom of lowest rank among the ends of chains, or among all where there is no end. Programs disagree on where the
+ * lone pair of a first atom stands, so centers that have one do not come first.
+ */
+function firstAtom(molecule: Molecule, { ranks, stereocenters }: SmilesView): number {
   const isWritten = (atom: number): boolean => ranks[atom] >= 0;
-  const atoms = Array.from({ length: molecule.atomCount }, (_, atom) => atom).filter(isWritten);
+  const withPair = stereocenters.filter(({ neighbors }) => neighbors[3] < 0);
+  const atoms = Array.from({ length: molecule.atomCount }, (_, atom) => atom).filter(
+    (atom) => isWritten(atom) && !withPair.some((center) => center.atom === atom),
+  );
   const ends = atoms.filter(
     (atom) => molecule.neighbors[atom].filter((to) => isWritten(to.atom)).length < 2,
   );
