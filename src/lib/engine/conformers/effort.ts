@@ -26,7 +26,7 @@ export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan 
   const scaled = (count: number): number => Math.ceil(scale * count);
   return {
     embeddings:
-      corners + inversions.length === 0 ? 2 : scaled(10 + 5 * corners + 4 * inversions.length),
+      corners + inversions.length === 0 ? 3 : scaled(10 + 3 * (corners + inversions.length)),
     combinations: scaled(1500),
     samples: scaled(30 * drives.length),
     patience: freedom === 0 ? 0 : scaled(20 * (1 + freedom)),

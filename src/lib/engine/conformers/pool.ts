@@ -29,8 +29,8 @@ export interface Pool {
 /** Energies of one conformer found twice differ by less, kcal/mol. */
 const SAME_ENERGY = 0.01;
 /** How far above a conformer, kcal/mol, and how near to it, Å RMSD, a half-finished minimization counts as its. */
-const APPROACH_ENERGY = 0.3;
-const APPROACH_RMSD = 0.12;
+const APPROACH_ENERGY = 0.4;
+const APPROACH_RMSD = 0.25;
 /** Conformers kept beyond those to be returned: parents of others. */
 const KEPT_BEYOND_LIMIT = 2;
 

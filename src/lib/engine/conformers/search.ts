@@ -14,8 +14,7 @@ import { planSearch } from './effort';
 import { createEmbedder } from './embed';
 import type { Embedder } from './embed';
 import { describeConformers, finishMinima } from './finish';
-import { embedSoundly, initialGeometry } from './initial-geometry';
-import { pinConfiguration } from './pin-configuration';
+import { embedSoundly, settleConfiguration } from './initial-geometry';
 import type { Found, Pool } from './pool';
 import { createPool } from './pool';
 import type { ShapeMoves } from './shape-moves';
@@ -50,9 +49,7 @@ export async function searchConformers(
   control: Control,
 ): Promise<ConformerSearchResult> {
   const random = createRandom(options.seed);
-  const given = forceField.molecule;
-  const first = await initialGeometry(given, options.seed, control);
-  const molecule = pinConfiguration(given, first);
+  const molecule = await settleConfiguration(forceField.molecule, control);
   const classes = symmetryClasses(molecule);
   const graph = visibleGraph(molecule, classes);
   const moves = findShapeMoves(molecule, classes);
@@ -67,7 +64,6 @@ export async function searchConformers(
     cores: collectCoreShapes(molecule, moves),
     random,
   };
-  await tryGeometry(search, first, control);
   await collectSeeds(search, control.part(0, 0.15));
   if (pool.found.length === 0) throw new InputError('no-conformer', NO_MINIMUM);
   await turnSystematically(search, control.part(0.15, 0.5));
@@ -94,10 +90,11 @@ async function tryGeometry(search: Search, x: Float64Array, control: Control): P
   return reception === 'new';
 }
 
-/** Minimizes embeddings, and flaps and inverts what comes of them, so that all ring shapes are there. */
+/** Minimizes embeddings, from which ring shapes and pyramids come; one minimum must be there whatever the budget. */
 async function collectSeeds(search: Search, control: Control): Promise<void> {
-  const { plan, embedder, random, molecule } = search;
-  for (let n = 0; n < plan.embeddings && !control.expired(); n++) {
+  const { plan, embedder, random, molecule, pool } = search;
+  for (let n = 0; n < plan.embeddings; n++) {
+    if (control.expired() && pool.found.length > 0) return;
     control.report(n / plan.embeddings, 'Building first shapes');
     const x = await embedSoundly(molecule, embedder, random, control);
     if (x) await tryGeometry(search, x, control);
