@@ -85,7 +85,9 @@ export function rootMeanSquare(vector: Float64Array): number {
 function longestMove(direction: Float64Array): number {
   let longest = 1e-300;
   for (let a = 0; a < direction.length; a += 3) {
-    const [dx, dy, dz] = [direction[a], direction[a + 1], direction[a + 2]];
+    const dx = direction[a];
+    const dy = direction[a + 1];
+    const dz = direction[a + 2];
     longest = Math.max(longest, dx * dx + dy * dy + dz * dz);
   }
   return Math.sqrt(longest);

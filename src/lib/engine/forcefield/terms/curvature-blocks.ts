@@ -38,7 +38,9 @@ export function addDiagonalBlock(
   along: number,
   across: number,
 ): void {
-  const [xx, yy, zz] = [ux * ux, uy * uy, uz * uz].map((square) => along * square + across);
+  const xx = along * ux * ux + across;
+  const yy = along * uy * uy + across;
+  const zz = along * uz * uz + across;
   const start = i * size + i;
   addSymmetric(hessian, start, size, xx, yy, zz, along * ux * uy, along * ux * uz, along * uy * uz);
 }
