@@ -44,7 +44,6 @@ describe('symmetryRmsd', () => {
     const bent = Float64Array.from(x);
     rotateAbout(bent, [2], 1, 3, 40);
     expect(symmetryRmsd(molecule, x, bent, permutations)).toBeGreaterThan(0.1);
-    // Unturned, the two ortho atoms are 2.42 Å from where they were.
     const identity = permutations.slice(0, 1);
     const stretched = x.map((value, n) => (n === 3 * 2 + 2 ? value + 1 : value));
     expect(symmetryRmsd(molecule, x, stretched, identity)).toBeGreaterThan(0.2);
