@@ -9,6 +9,7 @@ const engineLayers = [
   'torsion',
   'conjugation',
   'strain',
+  'tasks',
 ];
 const frontDoors = '^src/lib/engine/(run|index|light)[.]ts$';
 const tests = '[.]test[.]ts$';

@@ -105,7 +105,16 @@ function readArguments(): { lines: boolean; budget: number | undefined } {
   return { lines: values.lines, budget: 1000 * seconds };
 }
 
-const { lines, budget } = readArguments();
+let lines: boolean;
+let budget: number | undefined;
+try {
+  ({ lines, budget } = readArguments());
+} catch (error) {
+  console.error(
+    `${(error as Error).message}\nUsage: npm run --silent compute -- [--lines] [--budget seconds]`,
+  );
+  process.exit(failed);
+}
 // A reader that has seen enough is no failure of ours.
 process.stdout.on('error', (error: NodeJS.ErrnoException) => {
   process.exit(error.code === 'EPIPE' ? succeeded : failed);

@@ -133,6 +133,12 @@ describe('a geometry', () => {
   });
 });
 
+it('scans a chiral allene, whose stereocenter has two neighbors only', async () => {
+  const scan = (await ask({ smiles: 'CC=C=CC' }, { kind: 'scan', bond: [0, 1] })) as Result<'scan'>;
+  expect(scan.symmetry.period).toBe(120);
+  expect(scan.warnings.map(({ code }) => code)).toContain('undefined-stereocenter');
+});
+
 it('refuses a strain without a geometry as something a person can mend', async () => {
   await expect(ask(ibuprofen, { kind: 'strain' })).rejects.toThrow(InputError);
 });

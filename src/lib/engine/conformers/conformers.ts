@@ -54,6 +54,8 @@ export interface ConformerSearchResult {
   /** True when the set within the window stopped changing and is here whole. */
   readonly complete: boolean;
   readonly ended: SearchEnd;
+  /** True when the set stopped changing, whether or not all of it is here: the lowest conformer can be relied on. */
+  readonly settled: boolean;
   readonly counts: {
     /** Geometries tried. */
     readonly starts: number;

@@ -49,15 +49,15 @@ function findAxes(molecule: Molecule, shapes: readonly AtomShape[]): [number, nu
     if (shapes[start] === 'linear') continue;
     for (const first of molecule.neighbors[start]) {
       let previous = start;
-      let { atom, bond } = first;
-      let turns = isTurnable(molecule, bond);
+      let { atom } = first;
+      let turns = isTurnable(molecule, first.bond);
       while (turns && shapes[atom] === 'linear') {
         const before = previous;
         const next = molecule.neighbors[atom].find((neighbor) => neighbor.atom !== before);
         if (!next || molecule.bonds[next.bond].order === 2) break;
         turns = !molecule.ringBonds[next.bond];
         previous = atom;
-        ({ atom, bond } = next);
+        ({ atom } = next);
       }
       if (turns && start < atom && shapes[atom] !== 'linear') axes.push([start, atom]);
     }

@@ -5,8 +5,10 @@ import type { ShapeMoves } from './shape-moves';
 export interface SearchPlan {
   /** Embeddings from which ring shapes and nitrogen pyramids are collected. */
   readonly embeddings: number;
-  /** Most combinations of torsions tried in the systematic part. */
+  /** Most combinations of torsions, times ring shapes, that are all tried. */
   readonly combinations: number;
+  /** Combinations tried where there are more. */
+  readonly samples: number;
   /** Kicks in a row without anything new after which the set counts as stable. */
   readonly patience: number;
   /** Most geometries tried in all. */
@@ -24,9 +26,10 @@ export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan 
   const scaled = (count: number): number => Math.ceil(scale * count);
   return {
     embeddings:
-      corners + inversions.length === 0 ? 2 : scaled(10 + 5 * corners + 4 * inversions.length),
+      corners + inversions.length === 0 ? 3 : scaled(10 + 3 * (corners + inversions.length)),
     combinations: scaled(1500),
-    patience: freedom === 0 ? 0 : scaled(20 + 20 * freedom),
+    samples: scaled(30 * drives.length),
+    patience: freedom === 0 ? 0 : scaled(20 * (1 + freedom)),
     starts: scaled(10_000),
   };
 }

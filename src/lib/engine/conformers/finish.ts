@@ -7,74 +7,79 @@ import type { Molecule } from '../molecule/molecule';
 import { hasRightStereo } from '../molecule/stereo';
 import { superpose } from '../superpose';
 import { GAS_CONSTANT } from '../units';
-import type { ConformerSearchOptions, ConformerSearchResult, SearchEnd } from './conformers';
+import type { Conformer, ConformerSearchOptions } from './conformers';
 import { degeneracies } from './degeneracy';
-import type { Pool } from './pool';
+import type { Found, Pool } from './pool';
 import { createPool } from './pool';
 import { lowestRmsd } from './sameness';
-import type { Trial } from './trial';
 import type { VisibleGraph } from './visible-graph';
 
-/** Energy by which a conformer just outside the window may still fall when minimized to the end, kcal/mol. */
-const LAST_FALL = 0.05;
+/** How much a conformer may still fall when minimized to the end, kcal/mol: a saddle, or the last of a soft mode. */
+const LAST_FALL = 0.1;
 const MOST_EVALUATIONS = 20_000;
 
-/** Minimizes what lies in the window to the end and describes it. */
-export async function finish(
+/**
+ * Minimizes the found geometries, lowest first, until no negative curvature is left and as many as wanted, and one
+ * more, are there.
+ */
+export async function finishMinima(
   forceField: ForceField,
+  molecule: Molecule,
   graph: VisibleGraph,
-  { pool, trial, molecule }: { pool: Pool; trial: Trial; molecule: Molecule },
+  pool: Pool,
   options: ConformerSearchOptions,
-  ended: SearchEnd,
   control: Control,
-): Promise<ConformerSearchResult> {
-  const last = createPool(graph, Infinity, options.window);
-  const ceiling =
-    Math.min(pool.ceiling(), (pool.found[0]?.energy ?? 0) + options.window) + LAST_FALL;
-  const inside = pool.found.filter(({ energy }) => energy <= ceiling);
-  for (const [n, { coordinates }] of inside.entries()) {
-    control.report(n / inside.length, 'Finishing minima');
+): Promise<readonly Found[]> {
+  const minima = createPool(graph, options.limit, options.window);
+  const settings = {
+    gradientRms: REPORTED_GRADIENT_RMS,
+    maxEvaluations: MOST_EVALUATIONS,
+    curvature: forceField.curvature,
+  };
+  for (const { coordinates, energy } of pool.found) {
+    if (energy > minima.ceiling() + LAST_FALL) break;
+    control.report(minima.found.length / (options.limit + 1), 'Finishing minima');
     const x = coordinates.slice();
-    const result = await minimizeToMinimum(
-      forceField.energy,
-      x,
-      {
-        gradientRms: REPORTED_GRADIENT_RMS,
-        maxEvaluations: MOST_EVALUATIONS,
-        curvature: forceField.curvature,
-      },
-      control,
-    );
-    if (result.converged && hasRightStereo(molecule, x)) last.offer(x, result.energy);
+    const result = await minimizeToMinimum(forceField.energy, x, settings, control);
+    if (result.converged && hasRightStereo(molecule, x)) minima.offer(x, result.energy);
   }
-  const within = last.found.filter(({ energy }) => energy - last.found[0].energy <= options.window);
-  const kept = within.slice(0, options.limit);
+  return minima.found.filter(({ energy }) => energy - minima.found[0].energy <= options.window);
+}
+
+/** Describes minima, lowest first: degeneracies, populations, distances from the lowest. */
+export async function describeConformers(
+  molecule: Molecule,
+  graph: VisibleGraph,
+  minima: readonly Found[],
+  temperature: number,
+  control: Control,
+): Promise<Conformer[]> {
   const weights = degeneracies(
     molecule,
     graph,
-    kept.map(({ coordinates }) => coordinates),
+    minima.map(({ coordinates }) => coordinates),
   );
-  const boltzmann = kept.map(
+  const lowestEnergy = minima[0].energy;
+  const shares = minima.map(
     ({ energy }, n) =>
-      weights[n] * Math.exp((kept[0].energy - energy) / (GAS_CONSTANT * options.temperature)),
+      weights[n] * Math.exp((lowestEnergy - energy) / (GAS_CONSTANT * temperature)),
   );
-  const sum = boltzmann.reduce((total, value) => total + value, 0);
-  const lowest = kept.length > 0 ? centered(kept[0].coordinates) : new Float64Array();
-  const end = ended === 'stable' && within.length > options.limit ? 'limit' : ended;
-  return {
-    conformers: kept.map(({ coordinates, energy }, n) => ({
-      coordinates: superpose(coordinates, lowest, graph.order).coordinates,
+  const sum = shares.reduce((total, share) => total + share, 0);
+  const lowest = centered(minima[0].coordinates);
+  const conformers: Conformer[] = [];
+  for (const [n, { coordinates, energy }] of minima.entries()) {
+    if (control.due()) await control.pause();
+    conformers.push({
+      coordinates: n === 0 ? lowest : superpose(coordinates, lowest, graph.order).coordinates,
       energy,
-      relative: energy - kept[0].energy,
+      relative: energy - lowestEnergy,
       degeneracy: weights[n],
-      population: boltzmann[n] / sum,
+      population: shares[n] / sum,
       rmsdToLowest: n === 0 ? 0 : lowestRmsd(graph, coordinates, lowest),
       converged: true,
-    })),
-    complete: end === 'stable',
-    ended: end,
-    counts: trial.counts,
-  };
+    });
+  }
+  return conformers;
 }
 
 /** The geometry with its center at the origin. */

@@ -5,9 +5,10 @@ import { InputError } from '../errors';
 import type { Molecule } from '../molecule/molecule';
 import { hasRightStereo } from '../molecule/stereo';
 import { createRandom } from '../random';
+import type { Random } from '../random';
 import { createEmbedder } from './embed';
 import type { Embedder } from './embed';
-import type { Random } from '../random';
+import { hasOpenCenters, pinCenters, pinDoubleBonds } from './pin-configuration';
 
 /** Embeddings tried for one geometry. */
 const ATTEMPTS = 40;
@@ -15,14 +16,36 @@ const ATTEMPTS = 40;
 const GOOD_ERROR = 0.2;
 
 /**
- * A rough geometry with the right configuration, 3N in Å, from the graph alone; the same seed gives the same one. It
- * wants minimizing before anything is read from it. Throws InputError 'no-conformer' when the configuration asked for
- * cannot be built.
+ * A rough geometry with the right configuration, 3N in Å, from the graph alone; the same seed gives the same one. What
+ * the input left open is settled as in `settleConfiguration`. It wants minimizing before anything is read from it.
+ * Throws InputError 'no-conformer' when the configuration asked for cannot be built.
  */
 export async function initialGeometry(
   molecule: Molecule,
   seed: number,
   control: Control = unattended,
+): Promise<Float64Array> {
+  const settled = await settleConfiguration(molecule, control);
+  return embedOrThrow(settled, seed, control);
+}
+
+/**
+ * The molecule with a configuration at every stereocenter and double bond: those left open become, whatever the
+ * seed of a search, trans (double bonds) or what a first embedding makes of them (stereocentres).
+ */
+export async function settleConfiguration(
+  molecule: Molecule,
+  control: Control = unattended,
+): Promise<Molecule> {
+  const pinned = pinDoubleBonds(molecule);
+  if (!hasOpenCenters(pinned)) return pinned;
+  return pinCenters(pinned, await embedOrThrow(pinned, 1, control));
+}
+
+async function embedOrThrow(
+  molecule: Molecule,
+  seed: number,
+  control: Control,
 ): Promise<Float64Array> {
   const random = createRandom(seed);
   const geometry = await embedSoundly(molecule, createEmbedder(molecule), random, control);
@@ -30,7 +53,7 @@ export async function initialGeometry(
   throw new InputError('no-conformer', 'No geometry with the configuration given could be built.');
 }
 
-/** The first of several embeddings that is sound, or else the least strained with the right configuration; null without one. */
+/** The first of several embeddings that is sound, or else the least strained; null when none has the configuration. */
 export async function embedSoundly(
   molecule: Molecule,
   embedder: Embedder,

@@ -16,7 +16,7 @@ export type Reception = 'new' | 'known' | 'outside';
 export interface Pool {
   /** Lowest energy first. */
   readonly found: readonly Found[];
-  /** Highest energy still of interest: the window's, or that of the last conformer that would be returned. */
+  /** Highest energy still of interest: the window's, or that of the first conformer the limit leaves out. */
   ceiling(): number;
   /** Takes a minimum in, unless it is known already or too high. */
   offer(coordinates: Float64Array, energy: number): Reception;
@@ -29,8 +29,8 @@ export interface Pool {
 /** Energies of one conformer found twice differ by less, kcal/mol. */
 const SAME_ENERGY = 0.01;
 /** How far above a conformer, kcal/mol, and how near to it, Å RMSD, a half-finished minimization counts as its. */
-const APPROACH_ENERGY = 0.3;
-const APPROACH_RMSD = 0.12;
+const APPROACH_ENERGY = 0.4;
+const APPROACH_RMSD = 0.25;
 /** Conformers kept beyond those to be returned: parents of others. */
 const KEPT_BEYOND_LIMIT = 2;
 
@@ -42,7 +42,7 @@ export function createPool(graph: VisibleGraph, limit: number, window: number): 
   const ceiling = (): number => {
     if (found.length === 0) return Infinity;
     const highest = found[0].energy + window;
-    return found.length < limit ? highest : Math.min(highest, found[limit - 1].energy);
+    return found.length <= limit ? highest : Math.min(highest, found[limit].energy);
   };
 
   const insert = (entry: Found): void => {

@@ -8,7 +8,7 @@ export const SAME_RMSD = 0.2;
 /** How far single distances may differ then, Å. */
 export const SAME_DISTANCE = 0.6;
 /** Renumberings tried for the RMSD of different conformers. */
-const MOST_RENUMBERINGS = 2000;
+const MOST_RENUMBERINGS = 500;
 
 /** True when some renumbering and superposition lays `x`, or its mirror image, on `y` within `rmsd`, Å. */
 export function isSameShape(

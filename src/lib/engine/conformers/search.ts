@@ -1,5 +1,6 @@
 /** The conformer search: seeds, systematic turns, then kicks from what is low already, until nothing new comes. */
 import type { Control } from '../control';
+import { InputError } from '../errors';
 import type { ForceField } from '../forcefield/forcefield';
 import type { Molecule } from '../molecule/molecule';
 import { symmetryClasses } from '../molecule/symmetry-classes';
@@ -12,9 +13,8 @@ import type { SearchPlan } from './effort';
 import { planSearch } from './effort';
 import { createEmbedder } from './embed';
 import type { Embedder } from './embed';
-import { finish } from './finish';
-import { embedSoundly, initialGeometry } from './initial-geometry';
-import { pinConfiguration } from './pin-configuration';
+import { describeConformers, finishMinima } from './finish';
+import { embedSoundly, settleConfiguration } from './initial-geometry';
 import type { Found, Pool } from './pool';
 import { createPool } from './pool';
 import type { ShapeMoves } from './shape-moves';
@@ -23,6 +23,8 @@ import { combination, countCombinations, spreadCombination } from './systematic'
 import { createTrial } from './trial';
 import type { Trial } from './trial';
 import { visibleGraph } from './visible-graph';
+
+const NO_MINIMUM = 'No energy minimum with the configuration given could be reached.';
 
 /** All that the stages of one search share. */
 interface Search {
@@ -39,7 +41,7 @@ interface Search {
 /**
  * Searches the conformers of a molecule within `options.window` of the lowest: every one a minimum with the molecule's
  * configuration, all different, lowest first. Deterministic for a seed as long as no time budget ends it. Throws
- * InputError 'no-conformer' where no geometry can be built at all.
+ * InputError 'no-conformer' where no geometry with the configuration can be built or minimized.
  */
 export async function searchConformers(
   forceField: ForceField,
@@ -47,9 +49,7 @@ export async function searchConformers(
   control: Control,
 ): Promise<ConformerSearchResult> {
   const random = createRandom(options.seed);
-  const given = forceField.molecule;
-  const first = await initialGeometry(given, options.seed, control);
-  const molecule = pinConfiguration(given, first);
+  const molecule = await settleConfiguration(forceField.molecule, control);
   const classes = symmetryClasses(molecule);
   const graph = visibleGraph(molecule, classes);
   const moves = findShapeMoves(molecule, classes);
@@ -64,11 +64,23 @@ export async function searchConformers(
     cores: collectCoreShapes(molecule, moves),
     random,
   };
-  await tryGeometry(search, first, control);
   await collectSeeds(search, control.part(0, 0.15));
+  if (pool.found.length === 0) throw new InputError('no-conformer', NO_MINIMUM);
   await turnSystematically(search, control.part(0.15, 0.5));
   const ended = await kickUntilStable(search, control.part(0.5, 0.9));
-  return finish(forceField, graph, search, options, ended, control.part(0.9, 1));
+  const last = control.part(0.9, 1);
+  const minima = await finishMinima(forceField, molecule, graph, pool, options, last);
+  if (minima.length === 0) throw new InputError('no-conformer', NO_MINIMUM);
+  const isTruncated = minima.length > options.limit;
+  const reason = ended === 'stable' && isTruncated ? 'limit' : ended;
+  const kept = minima.slice(0, options.limit);
+  return {
+    conformers: await describeConformers(molecule, graph, kept, options.temperature, last),
+    complete: reason === 'stable',
+    ended: reason,
+    settled: ended === 'stable',
+    counts: search.trial.counts,
+  };
 }
 
 /** Minimizes a geometry in place and remembers what is new; answers whether the set to be returned has changed. */
@@ -78,10 +90,11 @@ async function tryGeometry(search: Search, x: Float64Array, control: Control): P
   return reception === 'new';
 }
 
-/** Minimizes embeddings, and flaps and inverts what comes of them, so that all ring shapes are there. */
+/** Minimizes embeddings, from which ring shapes and pyramids come; one minimum must be there whatever the budget. */
 async function collectSeeds(search: Search, control: Control): Promise<void> {
-  const { plan, embedder, random, molecule } = search;
-  for (let n = 0; n < plan.embeddings && !control.expired(); n++) {
+  const { plan, embedder, random, molecule, pool } = search;
+  for (let n = 0; n < plan.embeddings; n++) {
+    if (control.expired() && pool.found.length > 0) return;
     control.report(n / plan.embeddings, 'Building first shapes');
     const x = await embedSoundly(molecule, embedder, random, control);
     if (x) await tryGeometry(search, x, control);
@@ -93,10 +106,11 @@ async function turnSystematically(search: Search, control: Control): Promise<voi
   const { drives } = search.moves;
   const cores = search.cores.list();
   const total = countCombinations(drives);
-  const count = Math.min(total, Math.ceil(search.plan.combinations / cores.length));
   if (drives.length === 0) return;
+  const isExhaustive = total * cores.length <= search.plan.combinations;
+  const count = isExhaustive ? total : Math.ceil(search.plan.samples / cores.length);
   for (let n = 0; n < count; n++) {
-    const angles = count === total ? combination(drives, n) : spreadCombination(drives, n);
+    const angles = isExhaustive ? combination(drives, n) : spreadCombination(drives, n);
     for (const { coordinates } of cores) {
       if (control.expired()) return;
       const x = coordinates.slice();
@@ -107,21 +121,48 @@ async function turnSystematically(search: Search, control: Control): Promise<voi
   }
 }
 
+/** While conformers were met only once others have likely been missed; then patience lasts this many times as long. */
+const LONGEST_PATIENCE = 3;
+
+/** True when a conformer that would be returned was met once only. */
+function hasSingles(pool: Pool): boolean {
+  const ceiling = pool.ceiling();
+  return pool.found.some(({ energy, hits }) => energy <= ceiling && hits === 1);
+}
+
 /** Kicks low conformers until the set has not changed for long. */
 async function kickUntilStable(search: Search, control: Control): Promise<SearchEnd> {
-  const { pool, trial, plan, moves, random } = search;
+  const { pool, trial, plan } = search;
   let quiet = 0;
-  while (quiet < plan.patience) {
+  while (quiet < plan.patience || (quiet < LONGEST_PATIENCE * plan.patience && hasSingles(pool))) {
     if (control.expired()) return 'budget';
     if (trial.counts.starts >= plan.starts) return 'limit';
-    const parent = chooseParent(pool, random);
-    parent.uses++;
-    const x = parent.coordinates.slice();
-    kick(x, moves, random);
+    const x = await nextGeometry(search, control);
     quiet = (await tryGeometry(search, x, control)) ? 0 : quiet + 1;
     control.report(quiet / plan.patience, 'Kicking low conformers');
   }
   return 'stable';
+}
+
+/** Share of fresh embeddings among the kicks where rings are so large that flaps alone mix their shapes slowly. */
+const FRESH_SHARE = 0.2;
+const LARGE_RING = 8;
+
+/** A kicked conformer, or now and then a new embedding. */
+async function nextGeometry(search: Search, control: Control): Promise<Float64Array> {
+  const { molecule, embedder, moves, pool, random } = search;
+  const hasLargeRing = moves.ringMoves.some(
+    ({ arc, rest }) => arc.length + rest.length + 2 >= LARGE_RING,
+  );
+  if (hasLargeRing && random.uniform() < FRESH_SHARE) {
+    const fresh = await embedSoundly(molecule, embedder, random, control);
+    if (fresh) return fresh;
+  }
+  const parent = chooseParent(pool, random);
+  parent.uses++;
+  const x = parent.coordinates.slice();
+  kick(x, moves, random);
+  return x;
 }
 
 /** Mean energy above the lowest, kcal/mol, of the parents chosen by energy. */

@@ -2,7 +2,7 @@
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import { minimize } from '../minimizer/minimize';
-import { SEARCHING_GRADIENT_RMS } from '../minimizer/minimizer';
+import { REPORTED_GRADIENT_RMS } from '../minimizer/minimizer';
 import type { Molecule } from '../molecule/molecule';
 import { hasRightStereo } from '../molecule/stereo';
 import type { Pool, Reception } from './pool';
@@ -20,39 +20,42 @@ export interface Trial {
   run(x: Float64Array, control: Control): Promise<Outcome>;
 }
 
-/** RMS gradient at which a minimization shows where it is going, kcal/mol/Å. */
-const COARSE_GRADIENT_RMS = 0.3;
-/** How much energy it may still lose from there, kcal/mol. */
-const COARSE_EXCESS = 2;
-const COARSE_EVALUATIONS = 400;
-const FINE_EVALUATIONS = 2000;
+/**
+ * A minimization pauses at these RMS gradients, kcal/mol/Å, and goes on only from energies that can still come into the
+ * window: from there it loses less than `fall`, kcal/mol, nine times in ten.
+ */
+const STAGES = [
+  { gradientRms: 1, fall: 4 },
+  { gradientRms: 0.3, fall: 1.5 },
+];
+const MOST_EVALUATIONS = 2000;
 
 /** Creates the trials of one search; `molecule` has the configuration that every geometry must keep. */
 export function createTrial(forceField: ForceField, molecule: Molecule, pool: Pool): Trial {
   const { energy, curvature } = forceField;
   const counts = { starts: 0, minimizations: 0 };
-  const coarse = {
-    gradientRms: COARSE_GRADIENT_RMS,
-    maxEvaluations: COARSE_EVALUATIONS,
-    curvature,
-  };
-  const fine = {
-    gradientRms: SEARCHING_GRADIENT_RMS,
-    maxEvaluations: FINE_EVALUATIONS,
-    curvature,
-  };
+  const options = { maxEvaluations: MOST_EVALUATIONS, curvature };
   return {
     counts,
     run: async (x, control) => {
       counts.starts++;
-      const rough = await minimize(energy, x, coarse, control);
-      if (!(rough.energy <= pool.ceiling() + COARSE_EXCESS))
-        return { reception: 'rejected', energy: rough.energy };
-      if (pool.approached(x, rough.energy)) return { reception: 'known', energy: rough.energy };
+      for (const { gradientRms, fall } of STAGES) {
+        const rough = await minimize(energy, x, { ...options, gradientRms }, control);
+        if (!(rough.energy <= pool.ceiling() + fall)) {
+          return { reception: 'rejected', energy: rough.energy };
+        }
+        if (pool.approached(x, rough.energy)) return { reception: 'known', energy: rough.energy };
+      }
       counts.minimizations++;
-      const result = await minimize(energy, x, fine, control);
-      if (!result.converged || !hasRightStereo(molecule, x))
+      const result = await minimize(
+        energy,
+        x,
+        { ...options, gradientRms: REPORTED_GRADIENT_RMS },
+        control,
+      );
+      if (!result.converged || !hasRightStereo(molecule, x)) {
         return { reception: 'rejected', energy: result.energy };
+      }
       return { reception: pool.offer(x, result.energy), energy: result.energy };
     },
   };

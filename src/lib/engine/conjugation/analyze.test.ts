@@ -4,7 +4,7 @@ import { createForceField } from '../forcefield/create';
 import { readMolecule } from '../molecule/read';
 import { ROOM_TEMPERATURE } from '../units';
 import { analyzeConjugation } from './analyze';
-import type { BondConjugation, OpenConjugation } from './conjugation';
+import type { BondConjugation } from './conjugation';
 import { overlapAt } from './pi-axis';
 
 async function bondsOf(smiles: string, temperature = ROOM_TEMPERATURE): Promise<BondConjugation[]> {
@@ -13,9 +13,9 @@ async function bondsOf(smiles: string, temperature = ROOM_TEMPERATURE): Promise<
   return [...bonds];
 }
 
-async function openBond(smiles: string, temperature?: number): Promise<OpenConjugation> {
+async function openBond(smiles: string, temperature?: number): Promise<BondConjugation> {
   const open = (await bondsOf(smiles, temperature)).find(({ inRing }) => !inRing);
-  if (!open || open.inRing) throw new Error('no bond that turns');
+  if (!open) throw new Error('no bond that turns');
   return open;
 }
 
@@ -44,7 +44,7 @@ describe('buta-1,3-diene', async () => {
     expect(other.difference).toBeCloseTo(bond.difference ?? NaN, 3);
     expect(other.planarSCisCost).toBeCloseTo(bond.planarSCisCost ?? NaN, 3);
     expect(other.sCisFraction).toBeCloseTo(bond.sCisFraction ?? NaN, 3);
-    expect(other.meanOverlap).toBeCloseTo(bond.meanOverlap, 3);
+    expect(other.meanOverlap).toBeCloseTo(bond.meanOverlap ?? NaN, 3);
   });
 
   it('is all in its lowest form in the cold, and mixes with heat', async () => {
@@ -53,7 +53,7 @@ describe('buta-1,3-diene', async () => {
     expect(cold.meanOverlap).toBeCloseTo(overlapAt(cold.twist ?? NaN), 1);
     const hot = await openBond('C=CC=C', 2000);
     expect(hot.sCisFraction).toBeGreaterThan(bond.sCisFraction ?? NaN);
-    expect(hot.meanOverlap).toBeLessThan(bond.meanOverlap);
+    expect(hot.meanOverlap).toBeLessThan(bond.meanOverlap ?? NaN);
   });
 });
 
@@ -86,7 +86,7 @@ it.each([
     planarSCisCost: null,
   });
   expect(bond.barrier).toBeGreaterThan(1);
-  expect(bond.profile.length).toBeGreaterThanOrEqual(24);
+  expect(bond.profile?.length).toBeGreaterThanOrEqual(24);
 });
 
 it('hindrance twists a biaryl and takes its overlap away', async () => {
@@ -97,7 +97,7 @@ it('hindrance twists a biaryl and takes its overlap away', async () => {
   expect(free.twist).toBeLessThan(60);
   expect(hindered.twist).toBeGreaterThan(80);
   expect(hindered.meanOverlap).toBeLessThan(0.05);
-  expect(hindered.meanOverlap).toBeLessThan(free.meanOverlap);
+  expect(hindered.meanOverlap).toBeLessThan(free.meanOverlap ?? NaN);
 });
 
 it('a bond in a ring is reported with its twist', async () => {

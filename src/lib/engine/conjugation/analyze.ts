@@ -19,14 +19,13 @@ import type {
   ConjugationForm,
   ConjugationOptions,
   ConjugationResult,
-  OpenConjugation,
 } from './conjugation';
 import { overlapAt, piAxis, twistAbout } from './pi-axis';
 
-/** Only the lowest conformer counts, so the search looks at what lies low and keeps all of it. */
-const SEARCH_OPTIONS = { ...defaultConformerSearchOptions, window: 4, limit: 500 };
 /** Share of the work that goes into the lowest conformer, for progress. */
 const SEARCH_SHARE = 0.2;
+/** Twist that stands for an end that has lost its plane on the way, degrees: nothing overlaps there. */
+const NO_OVERLAP = 90;
 /** Energies of mirror images differ by rounding only, kcal/mol. */
 const SAME_ENERGY = 1e-4;
 
@@ -40,32 +39,60 @@ export async function analyzeConjugation(
   control: Control,
 ): Promise<ConjugationResult> {
   const { molecule } = forceField;
-  const searchOptions = { ...SEARCH_OPTIONS, seed };
-  const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
   const found = findConjugatedBonds(molecule);
-  const turning = found.filter(({ inRing }) => !inRing);
-  const scans = new Map<number, ScanResult>();
-  for (const [n, bond] of turning.entries()) {
-    const from = SEARCH_SHARE + ((1 - SEARCH_SHARE) * n) / turning.length;
-    const to = SEARCH_SHARE + ((1 - SEARCH_SHARE) * (n + 1)) / turning.length;
-    const torsion = bond.dieneTorsion ?? torsionOfBond(molecule, bond.j, bond.k);
-    const options = { ...defaultScanOptions, torsion, seed };
-    scans.set(bond.bond, await scanTorsion(forceField, options, control.part(from, to)));
-  }
+  // Without conjugated bonds a geometry is shown, and no number depends on it.
+  const effort = found.length > 0 ? 'normal' : 'quick';
+  const searchOptions = { ...defaultConformerSearchOptions, effort, seed } as const;
+  const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
+  const scans = await scanBonds(forceField, found, seed, control.part(SEARCH_SHARE, 1));
   const lowest = lowestShape(search.conformers[0], [...scans.values()]);
   const bonds = found.map((bond): BondConjugation => {
     const scan = scans.get(bond.bond);
-    if (scan) return readProfile(molecule, bond, scan, lowest.energy, temperature);
-    return {
-      inRing: true,
-      bond: [bond.j, bond.k],
-      kind: bond.kind,
-      torsion: bond.dieneTorsion,
-      twist: twistOf(molecule, bond, lowest.coordinates),
-    };
+    return scan
+      ? readProfile(molecule, bond, scan, lowest.energy, temperature)
+      : withTwistOnly(molecule, bond, lowest.coordinates);
   });
-  const complete = search.complete && [...scans.values()].every((scan) => scan.complete);
+  const complete = search.settled && bonds.every((bond) => bond.complete);
   return { bonds, lowest, complete };
+}
+
+/** Scans the bonds that can turn as far as time suffices; by bond index. */
+async function scanBonds(
+  forceField: ForceField,
+  bonds: readonly ConjugatedBond[],
+  seed: number,
+  control: Control,
+): Promise<Map<number, ScanResult>> {
+  const { molecule } = forceField;
+  const turning = bonds.filter(({ inRing }) => !inRing);
+  const scans = new Map<number, ScanResult>();
+  for (const [n, bond] of turning.entries()) {
+    if (control.expired()) break;
+    const torsion = bond.dieneTorsion ?? torsionOfBond(molecule, bond.j, bond.k);
+    const options = { ...defaultScanOptions, torsion, seed };
+    const part = control.part(n / turning.length, (n + 1) / turning.length);
+    scans.set(bond.bond, await scanTorsion(forceField, options, part));
+  }
+  return scans;
+}
+
+function withTwistOnly(molecule: Molecule, bond: ConjugatedBond, x: Float64Array): BondConjugation {
+  return {
+    bond: [bond.j, bond.k],
+    kind: bond.kind,
+    inRing: bond.inRing,
+    torsion: bond.dieneTorsion,
+    twist: twistOf(molecule, bond, x),
+    sCis: null,
+    sTrans: null,
+    difference: null,
+    sCisFraction: null,
+    planarSCisCost: null,
+    barrier: null,
+    meanOverlap: null,
+    profile: null,
+    complete: bond.inRing,
+  };
 }
 
 /** Twist from planarity of a bond in a geometry (Å, 3N), degrees 0 to 90; null where an end has no plane. */
@@ -101,12 +128,12 @@ function readProfile(
   scan: ScanResult,
   lowestEnergy: number,
   temperature: number,
-): OpenConjugation {
+): BondConjugation {
   const samples = [...scan.points, ...scan.stationary]
     .map(({ angle, energy, coordinates }) => ({
       angle,
       relative: energy - lowestEnergy,
-      twist: twistOf(molecule, bond, coordinates) ?? 90,
+      twist: twistOf(molecule, bond, coordinates) ?? NO_OVERLAP,
     }))
     .sort((a, b) => a.angle - b.angle);
   const energyCurve = profileCurve(scan);
@@ -118,7 +145,7 @@ function readProfile(
   const form = (point: StationaryPoint | null): ConjugationForm | null =>
     point && {
       angle: point.angle,
-      twist: twistOf(molecule, bond, point.coordinates) ?? 90,
+      twist: twistOf(molecule, bond, point.coordinates) ?? NO_OVERLAP,
       energy: point.energy,
       relative: point.energy - lowestEnergy,
       label: point.label,
@@ -131,9 +158,9 @@ function readProfile(
   const planar = scan.points.find(({ angle }) => Math.abs(angle) < 1e-9);
   const lowest = lowestOf(minima);
   return {
-    inRing: false,
     bond: [bond.j, bond.k],
     kind: bond.kind,
+    inRing: false,
     torsion: scan.torsion,
     twist: lowest && twistOf(molecule, bond, lowest.coordinates),
     sCis: form(sCis),

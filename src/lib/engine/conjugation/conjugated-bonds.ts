@@ -1,5 +1,6 @@
 /** Finds the single bonds across which π systems, or a lone pair and a π system, are conjugated. */
-import { bondedBy, coordination, inAromaticRing, perceiveStructure } from '../forcefield/structure';
+import { bondedBy, coordination } from '../forcefield/bonding';
+import { inAromaticRing, perceiveStructure } from '../forcefield/structure';
 import type { Structure } from '../forcefield/structure';
 import type { Molecule } from '../molecule/molecule';
 

@@ -30,47 +30,38 @@ export interface ConjugationPoint {
   readonly twist: number;
 }
 
-/** What a conjugated bond in a ring has: nothing turns about it. */
-export interface RingConjugation {
-  readonly inRing: true;
+/**
+ * A conjugated bond. Nothing turns about a bond in a ring, so all but its twist is null there; so it is too for a bond that
+ * time did not suffice for.
+ */
+export interface BondConjugation {
   readonly bond: readonly [number, number];
   readonly kind: ConjugationKind;
+  readonly inRing: boolean;
+  /** Over both double bonds where there are two, so that 0 is s-cis; null in a ring without. */
   readonly torsion: TorsionAtoms | null;
-  /** Twist from planarity in the lowest conformer, degrees 0 to 90; null where an end has no plane. */
+  /** Twist from planarity in the lowest minimum, degrees 0 to 90; null where an end has no plane. */
   readonly twist: number | null;
-}
-
-/** A conjugated bond that can turn. */
-export interface OpenConjugation {
-  readonly inRing: false;
-  readonly bond: readonly [number, number];
-  readonly kind: ConjugationKind;
-  /** Over both double bonds where there are two, so that 0 is s-cis. */
-  readonly torsion: TorsionAtoms;
-  /** In the lowest minimum of the profile. */
-  readonly twist: number | null;
-  /** The three below are null where s-cis and s-trans mean nothing, or where that side has no minimum. */
+  /** Null where s-cis and s-trans mean nothing, or where that side has no minimum; so are the four below. */
   readonly sCis: ConjugationForm | null;
   readonly sTrans: ConjugationForm | null;
   /** E(s-cis) − E(s-trans), kcal/mol. */
   readonly difference: number | null;
-  /** Population of |angle| < 90 along the profile. Null where s-cis means nothing. */
+  /** Population of |angle| < 90 along the profile. */
   readonly sCisFraction: number | null;
   /** Energy at torsion 0 above the lowest minimum, kcal/mol: what a Diels-Alder reaction asks of a diene. */
   readonly planarSCisCost: number | null;
   /**
    * kcal/mol above the lowest minimum. Between s-trans and s-cis the easier way round; for all other bonds the highest point
-   * of a full turn. Null where nothing hinders the turn or time ran out.
+   * of a full turn. Null where nothing hinders the turn.
    */
   readonly barrier: number | null;
   /** Population average of cos²(twist) along the profile, 0 to 1. */
-  readonly meanOverlap: number;
-  readonly profile: readonly ConjugationPoint[];
+  readonly meanOverlap: number | null;
+  readonly profile: readonly ConjugationPoint[] | null;
   /** False when time ran out before the scan was through. */
   readonly complete: boolean;
 }
-
-export type BondConjugation = RingConjugation | OpenConjugation;
 
 export interface ConjugationResult {
   /** In the order of the molecule's bonds. */

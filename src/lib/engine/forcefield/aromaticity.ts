@@ -1,5 +1,5 @@
 /** Aromatic rings as MMFF94 sees them (part I, "aromatic ring perception"; part V): six π electrons in five or six atoms. */
-import type { Bonding } from './structure';
+import type { Bonding } from './bonding';
 
 /** Elements whose lone pair can complete the sextet of a five-membered ring. */
 const LONE_PAIR_ELEMENTS = [7, 8, 16];

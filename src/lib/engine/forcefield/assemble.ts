@@ -3,6 +3,7 @@ import type { Molecule } from '../molecule/molecule';
 import { bondedInteractions } from './bonded-interactions';
 import { partialCharges } from './charges';
 import type { Variant } from './forcefield';
+import { findBondClasses } from './interaction-classes';
 import type { Interactions } from './interactions';
 import { nonbondedInteractions } from './nonbonded-interactions';
 import { parametersOf } from './parameters';
@@ -27,8 +28,9 @@ export function assembleInteractions(molecule: Molecule, variant: Variant): Asse
   const parameters = parametersOf(variant);
   const structure = perceiveStructure(molecule);
   const atomTypes = assignAtomTypes(structure);
-  const charges = partialCharges(structure, atomTypes, parameters);
-  const context = { structure, types: atomTypes, parameters };
+  const bondClasses = findBondClasses(structure, atomTypes, parameters);
+  const context = { structure, types: atomTypes, bondClasses, parameters };
+  const charges = partialCharges(context);
   return {
     atomTypes,
     charges,

@@ -64,6 +64,6 @@ function estimateForce(
   );
   if (reference) return reference[1] * Math.pow(reference[0] / length, 6);
   const rows = [periodicRow(first), periodicRow(second)].sort((a, b) => a - b);
-  const constants = parameters.herschbachLaurie.get(tableKey(...rows));
+  const constants = parameters.herschbachLaurie.get(tableKey(rows[0], rows[1]));
   return constants && Math.pow(10, -(length - constants[0]) / constants[1]);
 }

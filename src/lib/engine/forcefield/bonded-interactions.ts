@@ -2,7 +2,7 @@
 import { angleParameters } from './angle-parameters';
 import { bondParameters } from './bond-parameters';
 import type { BondParameters } from './bond-parameters';
-import { angleClass, angleRingSize, bondClass, stretchBendClass } from './interaction-classes';
+import { angleClass, angleRingSize, stretchBendClass } from './interaction-classes';
 import type { Interactions } from './interactions';
 import { outOfPlaneForce } from './out-of-plane-parameters';
 import type { Parameterization } from './parameterization';
@@ -58,9 +58,9 @@ export function bondedInteractions(context: Parameterization): BondedInteraction
 }
 
 function parameterizeBond(context: Parameterization, bond: number): TypedBond {
-  const { structure, types, parameters } = context;
+  const { structure, types, bondClasses, parameters } = context;
   const { a, b } = structure.molecule.bonds[bond];
-  const typedClass = bondClass(structure, types, parameters, bond);
+  const typedClass = bondClasses[bond];
   const found = bondParameters(parameters, typedClass, types[a], types[b]);
   if (!found) throw unsupported(structure, a);
   return { ...found, bondClass: typedClass };

@@ -1,101 +1,42 @@
-/** One convention for what chemists draw in several: charge-separated or with expanded octets, and resonance forms. */
-import type { Molecule } from '../molecule/molecule';
-import type { Bonding } from './structure';
+/** The bonding picture of a molecule, and what can be asked of it. */
+import type { Neighbor } from '../molecule/molecule';
 
-const NITROGEN = 7;
-const OXYGEN = 8;
-const PHOSPHORUS = 15;
-const SULFUR = 16;
-const CHLORINE = 17;
-
-/**
- * Copies bond orders and charges and brings them to the convention of the typing rules: S=O, P=O and Cl=O instead of
- * S⁺–O⁻; N⁺–O⁻ instead of pentavalent N=O; azides and diazo groups as =N⁺=N⁻; sulfinates as O=S–O⁻.
- */
-export function normalizeBonding(molecule: Molecule): Bonding {
-  const bonding: Bonding = {
-    elements: molecule.atomicNumbers,
-    charges: Int8Array.from(molecule.formalCharges),
-    orders: Uint8Array.from(molecule.bonds, ({ order }) => order),
-    neighbors: molecule.neighbors,
-  };
-  for (let atom = 0; atom < molecule.atomCount; atom++) {
-    if ([PHOSPHORUS, SULFUR, CHLORINE].includes(bonding.elements[atom])) {
-      expandOctet(bonding, atom);
-      moveChargeOutward(bonding, atom);
-    } else if (bonding.elements[atom] === NITROGEN) {
-      splitPentavalent(bonding, atom);
-      cumulateDiazo(bonding, atom);
-    }
-  }
-  return bonding;
+/** Bond orders and formal charges in the convention of `normalizeBonding`. */
+export interface Bonding {
+  readonly elements: Readonly<Uint8Array>;
+  readonly charges: Int8Array;
+  /** One an entry of molecule.bonds. */
+  readonly orders: Uint8Array;
+  readonly neighbors: readonly (readonly Neighbor[])[];
 }
 
-function isTerminal(bonding: Bonding, atom: number): boolean {
-  return bonding.neighbors[atom].length === 1;
+/** Number of bonded atoms. */
+export function coordination(bonding: Bonding, atom: number): number {
+  return bonding.neighbors[atom].length;
 }
 
-/** X⁺–Y⁻ becomes X=Y for Y a chalcogen or nitrogen. */
-function expandOctet(bonding: Bonding, center: number): void {
-  for (const { atom, bond } of bonding.neighbors[center]) {
-    if (bonding.charges[center] <= 0) return;
-    if (bonding.charges[atom] >= 0 || bonding.orders[bond] !== 1) continue;
-    if (![NITROGEN, OXYGEN, SULFUR].includes(bonding.elements[atom])) continue;
-    bonding.orders[bond] = 2;
-    bonding.charges[center]--;
-    bonding.charges[atom]++;
-  }
+/** True when two atoms are bonded. */
+export function areBonded(bonding: Bonding, i: number, j: number): boolean {
+  return bonding.neighbors[i].some(({ atom }) => atom === j);
 }
 
-/** X⁻=Y becomes X–Y⁻ for a terminal chalcogen Y (sulfinates drawn with the charge on sulfur). */
-function moveChargeOutward(bonding: Bonding, center: number): void {
-  for (const { atom, bond } of bonding.neighbors[center]) {
-    if (bonding.charges[center] >= 0) return;
-    if (!isTerminal(bonding, atom) || bonding.orders[bond] !== 2) continue;
-    if (![OXYGEN, SULFUR].includes(bonding.elements[atom])) continue;
-    bonding.orders[bond] = 1;
-    bonding.charges[center]++;
-    bonding.charges[atom]--;
-  }
+/** Atoms bonded to `atom` by a bond of the given order. */
+export function bondedBy(bonding: Bonding, atom: number, order: number): number[] {
+  return bonding.neighbors[atom]
+    .filter(({ bond }) => bonding.orders[bond] === order)
+    .map((neighbor) => neighbor.atom);
 }
 
-/** Neutral nitrogen with five bonds: one of a terminal oxygen's or nitrogen's bonds becomes a charge pair. */
-function splitPentavalent(bonding: Bonding, center: number): void {
-  const valence = bonding.neighbors[center].reduce(
-    (sum, { bond }) => sum + bonding.orders[bond],
-    0,
-  );
-  if (valence !== 5 || bonding.charges[center] !== 0) return;
-  const terminal = bonding.neighbors[center].filter(
-    ({ atom, bond }) =>
-      bonding.orders[bond] > 1 &&
-      isTerminal(bonding, atom) &&
-      [NITROGEN, OXYGEN].includes(bonding.elements[atom]),
-  );
-  if (terminal.length === 0) return;
-  const { atom, bond } = terminal[0];
-  bonding.orders[bond]--;
-  bonding.charges[center]++;
-  bonding.charges[atom]--;
+/** True when the atom has a double bond to one of the elements. */
+export function hasDoubleTo(bonding: Bonding, atom: number, ...elements: number[]): boolean {
+  return bondedBy(bonding, atom, 2).some((other) => elements.includes(bonding.elements[other]));
 }
 
-/** X⁻–N⁺≡N becomes X=N⁺=N⁻. */
-function cumulateDiazo(bonding: Bonding, center: number): void {
-  const neighbors = bonding.neighbors[center];
-  if (bonding.charges[center] !== 1 || neighbors.length !== 2) return;
-  for (const [end, other] of [neighbors, [...neighbors].reverse()]) {
-    const isDiazo =
-      bonding.orders[end.bond] === 3 &&
-      bonding.elements[end.atom] === NITROGEN &&
-      isTerminal(bonding, end.atom) &&
-      bonding.orders[other.bond] === 1 &&
-      bonding.charges[other.atom] === -1 &&
-      bonding.elements[other.atom] !== OXYGEN;
-    if (!isDiazo) continue;
-    bonding.orders[end.bond] = 2;
-    bonding.charges[end.atom] = -1;
-    bonding.orders[other.bond] = 2;
-    bonding.charges[other.atom] = 0;
-    return;
-  }
+/** Neighbors that bear nothing else, of one of the elements. */
+export function terminalNeighbors(bonding: Bonding, atom: number, ...elements: number[]): number[] {
+  return bonding.neighbors[atom]
+    .map((neighbor) => neighbor.atom)
+    .filter(
+      (other) => coordination(bonding, other) === 1 && elements.includes(bonding.elements[other]),
+    );
 }

@@ -1,8 +1,9 @@
 /** Types of carbon and silicon outside aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { bondedBy, coordination, hasDoubleTo, terminalNeighbors } from './bonding';
 import { cationicNitrogens } from './delocalized-cations';
 import type { Structure } from './structure';
-import { bondedBy, coordination, hasDoubleTo, inRingOfSize, terminalNeighbors } from './structure';
+import { inRingOfSize } from './structure';
 
 const CARBON = 6;
 const NITROGEN = 7;

@@ -1,8 +1,8 @@
 /** Types of oxygen, sulfur and phosphorus outside aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { bondedBy, coordination, hasDoubleTo, terminalNeighbors } from './bonding';
 import { isCarboxylate } from './carbon-types';
 import type { Structure } from './structure';
-import { bondedBy, coordination, hasDoubleTo, terminalNeighbors } from './structure';
 
 const HYDROGEN = 1;
 const CARBON = 6;

@@ -1,26 +1,26 @@
 /** Partial charges by bond-charge increments (Halgren, J. Comput. Chem. 1996, 17, 520, equation 15). */
-import { bondClass } from './interaction-classes';
 import { tableKey } from './parameter-table';
+import type { Parameterization } from './parameterization';
 import type { Parameters } from './parameters';
 import { primaryCharges } from './primary-charges';
-import type { Structure } from './structure';
 
 /**
  * Partial charges in electron charges: q_i = (1 − M_i u_i) q⁰_i + Σ_k u_k q⁰_k + Σ_k w_ki over the neighbors k, with q⁰
  * the primary charges, M the number of neighbors, u the formal-charge adjustment and w the bond-charge increments.
  */
-export function partialCharges(
-  structure: Structure,
-  types: Readonly<Int32Array>,
-  parameters: Parameters,
-): Float64Array {
+export function partialCharges({
+  structure,
+  types,
+  bondClasses,
+  parameters,
+}: Parameterization): Float64Array {
   const primary = primaryCharges(structure, types);
   const charges = Float64Array.from(primary);
   const adjustment = (atom: number): number =>
     parameters.partialIncrements.get(tableKey(types[atom]))![1];
   for (const [bond, { a, b }] of structure.molecule.bonds.entries()) {
     const shift =
-      increment(parameters, bondClass(structure, types, parameters, bond), types[a], types[b]) +
+      increment(parameters, bondClasses[bond], types[a], types[b]) +
       adjustment(a) * primary[a] -
       adjustment(b) * primary[b];
     charges[b] += shift;

@@ -5,11 +5,11 @@ import type { Interactions } from './interactions';
 import { angleCurvature, angleTerm } from './terms/angle';
 import { bondCurvature, bondTerm } from './terms/bond';
 import { electrostaticTerm } from './terms/electrostatic';
-import { nonbondedTerm } from './terms/nonbonded';
 import { outOfPlaneCurvature, outOfPlaneTerm } from './terms/out-of-plane';
 import { stretchBendTerm } from './terms/stretch-bend';
 import { torsionCurvature, torsionTerm } from './terms/torsion';
 import { vanDerWaalsTerm } from './terms/van-der-waals';
+import { compiledEnergy } from './webassembly/energy';
 
 /** What a force field computes, compiled from parameterized interactions alone. */
 export type CompiledInteractions = Pick<ForceField, 'energy' | 'curvature' | 'terms'>;
@@ -29,16 +29,24 @@ export function compileInteractions(
     vanDerWaals: vanDerWaalsTerm(interactions.vanDerWaals),
     electrostatic: electrostaticTerm(interactions.electrostatics, dielectric),
   };
-  const { bond, angle, stretchBend, outOfPlane, torsion } = parts;
-  const nonbonded = nonbondedTerm(atomCount, interactions, dielectric);
-  const energy: EnergyTerm = (x, gradient) =>
-    bond(x, gradient) +
-    angle(x, gradient) +
-    stretchBend(x, gradient) +
-    outOfPlane(x, gradient) +
-    torsion(x, gradient) +
-    nonbonded(x, gradient);
+  const compiled = compiledEnergy(atomCount, interactions, dielectric);
+  const linear = linearAngles(interactions.angles);
+  const energy: EnergyTerm = linear
+    ? (x, gradient) => compiled(x, gradient) + linear(x, gradient)
+    : compiled;
   return { energy, curvature: compileCurvature(interactions), terms: (x) => evaluate(parts, x) };
+}
+
+/** The term of the angles with a linear vertex; null where there are none, as almost always. */
+function linearAngles({ atoms, angle, force, linear }: Interactions['angles']): EnergyTerm | null {
+  const chosen = Array.from(linear.keys()).filter((n) => linear[n] !== 0);
+  if (chosen.length === 0) return null;
+  return angleTerm({
+    atoms: Int32Array.from(chosen.flatMap((n) => [...atoms.subarray(3 * n, 3 * n + 3)])),
+    angle: Float64Array.from(chosen, (n) => angle[n]),
+    force: Float64Array.from(chosen, (n) => force[n]),
+    linear: Uint8Array.from(chosen, () => 1),
+  });
 }
 
 function evaluate(

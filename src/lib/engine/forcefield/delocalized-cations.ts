@@ -2,8 +2,9 @@
  * Amidinium, guanidinium and azolium groups, over whose nitrogens MMFF94 spreads the charge (part I, table III; part II,
  * table II). Written so that it does not matter on which of the equivalent nitrogens the charge was drawn.
  */
+import { areBonded, bondedBy, coordination, terminalNeighbors } from './bonding';
 import type { Structure } from './structure';
-import { areBonded, bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
+import { inAromaticRing } from './structure';
 
 const CARBON = 6;
 const NITROGEN = 7;

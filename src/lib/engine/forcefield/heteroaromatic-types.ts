@@ -1,8 +1,9 @@
 /** Types of atoms in aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { bondedBy, coordination, terminalNeighbors } from './bonding';
 import { azoliumNitrogens, cationicNitrogens } from './delocalized-cations';
 import type { Structure } from './structure';
-import { bondedBy, coordination, inAromaticRing, terminalNeighbors } from './structure';
+import { inAromaticRing } from './structure';
 
 const CARBON = 6;
 const NITROGEN = 7;

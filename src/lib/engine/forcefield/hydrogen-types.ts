@@ -1,7 +1,8 @@
 /** Types of hydrogen, which follow from the atom that bears it (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { hasDoubleTo } from './bonding';
 import type { Structure } from './structure';
-import { hasDoubleTo, inAromaticRing } from './structure';
+import { inAromaticRing } from './structure';
 
 const HYDROGEN = 1;
 const CARBON = 6;

@@ -1,11 +1,21 @@
 /** The integer classes that MMFF94 tells bonds, angles, stretch-bends and torsions apart by (part I and part IV). */
 import { AtomType } from './atom-types';
+import { areBonded } from './bonding';
 import type { Parameters } from './parameters';
 import type { Structure } from './structure';
-import { areBonded } from './structure';
 
-/** 1 for a single bond between two multiply bonded atoms that is no edge of an aromatic ring, 0 otherwise. */
-export function bondClass(
+/** Per bond: 1 for a single bond between two multiply bonded atoms that is no edge of an aromatic ring, 0 otherwise. */
+export function findBondClasses(
+  structure: Structure,
+  types: Readonly<Int32Array>,
+  parameters: Parameters,
+): Uint8Array {
+  return Uint8Array.from(structure.molecule.bonds, (_, bond) =>
+    bondClass(structure, types, parameters, bond),
+  );
+}
+
+function bondClass(
   structure: Structure,
   types: Readonly<Int32Array>,
   parameters: Parameters,
@@ -68,7 +78,10 @@ export function stretchBendClass(angleClass: number, classIJ: number): number {
   }
 }
 
-/** The torsion classes to try, in this order (part IV). */
+/**
+ * The torsion classes to try, in this order (part IV): the one of a ring, the one of the bonds, and class 0, to which
+ * RDKit and openchemlib both step down before they turn to the empirical rules.
+ */
 export function torsionClasses(
   structure: Structure,
   types: Readonly<Int32Array>,
@@ -82,11 +95,11 @@ export function torsionClasses(
   const plain = classJK === 0 && isSingle && (classIJ === 1 || classKL === 1) ? 2 : classJK;
   // Four atoms round a ring of two fused three-membered rings are no four-membered ring.
   if (areBonded(structure, i, l)) {
-    return areBonded(structure, i, k) || areBonded(structure, j, l) ? [plain] : [4, plain];
+    return areBonded(structure, i, k) || areBonded(structure, j, l) ? [plain, 0] : [4, plain];
   }
   const inFiveRing = structure.neighbors[i].some(
     ({ atom }) => atom !== j && atom !== k && areBonded(structure, atom, l),
   );
   const isSaturated = atoms.some((atom) => types[atom] === AtomType.alkylCarbon);
-  return plain === 0 && inFiveRing && isSaturated ? [5, 0] : [plain];
+  return plain === 0 && inFiveRing && isSaturated ? [5, 0] : [plain, 0];
 }

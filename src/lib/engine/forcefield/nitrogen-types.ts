@@ -1,14 +1,9 @@
 /** Types of nitrogen outside aromatic rings (MMFF94 part I, table III). */
 import { AtomType } from './atom-types';
+import { bondedBy, coordination, hasDoubleTo, terminalNeighbors } from './bonding';
 import { cationicGroupSize } from './delocalized-cations';
 import type { Structure } from './structure';
-import {
-  bondedBy,
-  coordination,
-  hasDoubleTo,
-  inAromaticRing,
-  terminalNeighbors,
-} from './structure';
+import { inAromaticRing } from './structure';
 
 const CARBON = 6;
 const NITROGEN = 7;

@@ -12,8 +12,8 @@ export function outOfPlaneForce(
   const middle = parameters.equivalents.get(tableKey(center))![1];
   const outer = neighbors.map((type) => parameters.equivalents.get(tableKey(type))!);
   for (let level = 0; level < 5; level++) {
-    const types = outer.map((levels) => levels[level]).sort((a, b) => a - b);
-    const row = parameters.outOfPlanes.get(tableKey(middle, ...types));
+    const [i, k, l] = outer.map((levels) => levels[level]).sort((a, b) => a - b);
+    const row = parameters.outOfPlanes.get(tableKey(middle, i, k, l));
     if (row) return row[0];
   }
   return undefined;

@@ -24,6 +24,6 @@ function readField(field: string): number | string {
 }
 
 /** One key for a few small integers: types up to 99, bond, angle and torsion classes up to 11. */
-export function tableKey(...numbers: readonly number[]): number {
-  return numbers.reduce((key, number) => key * 128 + number, 0);
+export function tableKey(a: number, b = 0, c = 0, d = 0, e = 0): number {
+  return (((a * 128 + b) * 128 + c) * 128 + d) * 128 + e;
 }

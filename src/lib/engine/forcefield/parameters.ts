@@ -98,17 +98,21 @@ function loadParameters(variant: Variant): Parameters {
   };
 }
 
+function keyOf([a, b, c, d, e]: readonly number[]): number {
+  return tableKey(a, b, c, d, e);
+}
+
 /** A table as a map from its first `keys` columns to the columns from `values` on. */
 function keyed(name: string, keys: number, values = keys): Map<number, readonly number[]> {
   return new Map(
-    readNumericTable(name).map((row) => [tableKey(...row.slice(0, keys)), row.slice(values)]),
+    readNumericTable(name).map((row) => [keyOf(row.slice(0, keys)), row.slice(values)]),
   );
 }
 
 function readOutOfPlanes(name: string): Map<number, readonly number[]> {
   const outOfPlanes = new Map<number, readonly number[]>(
     readNumericTable(name).map(([i, j, k, l, force]) => [
-      tableKey(j, ...[i, k, l].sort((a, b) => a - b)),
+      keyOf([j, ...[i, k, l].sort((a, b) => a - b)]),
       [force],
     ]),
   );

@@ -1,10 +1,12 @@
 /** The torsions of a molecule with their parameters. */
 import type { Neighbor } from '../molecule/molecule';
-import { bondClass, torsionClasses } from './interaction-classes';
+import { torsionClasses } from './interaction-classes';
 import type { Interactions } from './interactions';
 import type { Parameterization } from './parameterization';
 import { findTorsion } from './torsion-parameters';
+import type { Structure } from './structure';
 import { estimateTorsion } from './torsion-rules';
+import type { CentralBond } from './torsion-rules';
 import { unsupported } from './typing';
 
 interface TorsionPath {
@@ -46,18 +48,15 @@ function torsionPaths({ structure, types, parameters }: Parameterization): Torsi
 }
 
 function parameterizeTorsion(
-  { structure, types, parameters }: Parameterization,
+  { structure, types, bondClasses, parameters }: Parameterization,
   { atoms, bonds }: TorsionPath,
 ): readonly number[] {
   const [left, central, right] = bonds;
-  const bondClasses = [left, central, right].map((bond) =>
-    bondClass(structure, types, parameters, bond),
-  );
   const classes = torsionClasses(
     structure,
     types,
     atoms,
-    [bondClasses[0], bondClasses[1], bondClasses[2]],
+    [bondClasses[left], bondClasses[central], bondClasses[right]],
     central,
   );
   const [i, j, k, l] = atoms;
@@ -66,9 +65,13 @@ function parameterizeTorsion(
   const estimated = estimateTorsion({
     j: parameters.properties.get(types[j])!,
     k: parameters.properties.get(types[k])!,
-    order: structure.orders[central],
-    isAromatic: structure.aromaticBonds[central] === 1,
+    kind: bondKind(structure, central),
   });
   if (!estimated) throw unsupported(structure, j);
   return estimated;
+}
+
+function bondKind(structure: Structure, bond: number): CentralBond['kind'] {
+  if (structure.aromaticBonds[bond]) return 'aromatic';
+  return (['single', 'double', 'triple'] as const)[structure.orders[bond] - 1];
 }

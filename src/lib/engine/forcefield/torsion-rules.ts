@@ -18,9 +18,8 @@ const TORSION_FACTORS: Readonly<Record<number, { u: number; v: number; w?: numbe
 export interface CentralBond {
   readonly j: AtomProperties;
   readonly k: AtomProperties;
-  /** 1, 2 or 3 in the Kekulé structure. */
-  readonly order: number;
-  readonly isAromatic: boolean;
+  /** An edge of an aromatic ring is neither single nor double. */
+  readonly kind: 'single' | 'double' | 'triple' | 'aromatic';
 }
 
 type Coefficients = readonly [number, number, number];
@@ -37,9 +36,11 @@ export function estimateTorsion(bond: CentralBond): Coefficients | undefined {
   const second = TORSION_FACTORS[k.atomicNumber];
   if (!first || !second) return undefined;
   const u = Math.sqrt(first.u * second.u);
-  if (bond.isAromatic) return twofold(aromaticBarrier(j, k) * u);
+  if (bond.kind === 'aromatic' && j.aromatic && k.aromatic) {
+    return twofold(aromaticBarrier(j, k) * u);
+  }
   // Rule c.
-  if (bond.order === 2) {
+  if (bond.kind === 'double') {
     return twofold(6 * (j.multipleBond === 2 && k.multipleBond === 2 ? 1 : 0.4) * u);
   }
   const saturated = threefold(
@@ -49,7 +50,7 @@ export function estimateTorsion(bond: CentralBond): Coefficients | undefined {
   if (j.coordination === 4 && k.coordination === 4) return saturated;
   if (j.coordination === 4) return turnsFreely(k) ? NONE : saturated;
   if (k.coordination === 4) return turnsFreely(j) ? NONE : saturated;
-  const conjugation = conjugationFactor(j, k);
+  const conjugation = bond.kind === 'single' ? conjugationFactor(j, k) : undefined;
   if (conjugation !== undefined) return twofold(6 * conjugation * u);
   // Rule h.
   if (first.w !== undefined && second.w !== undefined) {
@@ -86,9 +87,15 @@ function conjugationFactor(j: AtomProperties, k: AtomProperties): number | undef
   return isPartial && !isCarbonPair ? 0.4 : 0.15;
 }
 
+/**
+ * Part V says "second row", and rows of the published table made by this rule (6-9, 8-9, 43-64: V2 = 3.6) show that
+ * lithium to fluorine is meant; but RDKit 2022.09.3 and openchemlib 9.25 both take sodium to chlorine, and a total
+ * energy that agrees with neither would serve nobody. It matters for a few bonds only, such as thiazole to
+ * sulfonamide nitrogen.
+ */
 function lonePairFactor(donor: AtomProperties, acceptor: AtomProperties): number {
   if (donor.multipleBond === 1) return 0.5;
-  const areSecondPeriod =
-    periodicRow(donor.atomicNumber) === 1 && periodicRow(acceptor.atomicNumber) === 1;
-  return areSecondPeriod ? 0.3 : 0.15;
+  const areSecondRow =
+    periodicRow(donor.atomicNumber) === 2 && periodicRow(acceptor.atomicNumber) === 2;
+  return areSecondRow ? 0.3 : 0.15;
 }

@@ -2,6 +2,7 @@
 import { InputError } from '../errors';
 import { ELEMENT_SYMBOLS } from '../molecule/elements';
 import { AtomType } from './atom-types';
+import { coordination } from './bonding';
 import { carbonType } from './carbon-types';
 import { oxygenType, phosphorusType, sulfurType } from './chalcogen-types';
 
@@ -9,7 +10,6 @@ import { aromaticType } from './heteroaromatic-types';
 import { hydrogenType } from './hydrogen-types';
 import { nitrogenType } from './nitrogen-types';
 import type { Structure } from './structure';
-import { coordination } from './structure';
 
 /** Monatomic ions by atomic number and charge. */
 const ionTypes: Readonly<Record<string, number>> = {

@@ -70,9 +70,20 @@ export function createHistory(size: number, depth: number): History {
 
 /** Inner product of two vectors of one length. */
 export function dot(a: Float64Array, b: Float64Array): number {
-  let sum = 0;
-  for (let n = 0; n < a.length; n++) sum += a[n] * b[n];
-  return sum;
+  // Four sums, because each addition would otherwise wait for the one before.
+  let sum0 = 0;
+  let sum1 = 0;
+  let sum2 = 0;
+  let sum3 = 0;
+  let n = 0;
+  for (; n < a.length - 3; n += 4) {
+    sum0 += a[n] * b[n];
+    sum1 += a[n + 1] * b[n + 1];
+    sum2 += a[n + 2] * b[n + 2];
+    sum3 += a[n + 3] * b[n + 3];
+  }
+  for (; n < a.length; n++) sum0 += a[n] * b[n];
+  return sum0 + sum1 + (sum2 + sum3);
 }
 
 function addScaled(target: Float64Array, scale: number, source: Float64Array): void {

@@ -6,18 +6,19 @@ import { searchLine } from './line-search';
 import type { Point } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
 import { createPreconditioner } from './preconditioner';
+import { separateCoincident } from './separate';
 
 /** Pairs of steps and gradient changes remembered. */
-const MEMORY = 12;
+const MEMORY = 7;
 /** Steps after which the curvature is computed anew. */
-const REFRESH_INTERVAL = 8;
+const REFRESH_INTERVAL = 6;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
-const LONGEST_STEP = 0.5;
+const LONGEST_STEP = 0.2;
 
 /**
  * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
  * (kcal/mol/Å). Pauses by `control`, and throws only when the control does. Where it stops unconverged, the result says
- * so and `x` is the lowest point reached.
+ * so and `x` is the lowest point reached. Atoms on top of each other are taken apart first.
  */
 export async function minimize(
   energy: EnergyTerm,
@@ -26,6 +27,7 @@ export async function minimize(
   control: Control,
 ): Promise<MinimizeResult> {
   const size = x.length;
+  separateCoincident(x);
   const { gradientRms, maxEvaluations, curvature } = options;
   const history = createHistory(size, MEMORY);
   const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
@@ -83,7 +85,9 @@ export function rootMeanSquare(vector: Float64Array): number {
 function longestMove(direction: Float64Array): number {
   let longest = 1e-300;
   for (let a = 0; a < direction.length; a += 3) {
-    const [dx, dy, dz] = [direction[a], direction[a + 1], direction[a + 2]];
+    const dx = direction[a];
+    const dy = direction[a + 1];
+    const dz = direction[a + 2];
     longest = Math.max(longest, dx * dx + dy * dy + dz * dz);
   }
   return Math.sqrt(longest);

@@ -1,6 +1,7 @@
 /** An approximate inverse Hessian from a curvature: regularized and factorized by Cholesky's method. */
 import type { CurvatureTerm } from '../energy-term';
 import { planElimination } from './elimination';
+import type { EliminationPlan } from './elimination';
 import { createFactor, factorize, solve } from './sparse-cholesky';
 import type { BlockFactor } from './sparse-cholesky';
 
@@ -26,7 +27,7 @@ export function createPreconditioner(curvature: CurvatureTerm, size: number): Pr
       curvature(x, matrix);
       // Couplings may appear as atoms move, so the pattern grows; it never shrinks.
       if (markCouplings(matrix, coupled, atoms) || factor === null) {
-        factor = createFactor(planElimination(coupled, atoms));
+        factor = createFactor(planFor(coupled, atoms));
       }
       factorize(factor, matrix, REGULARIZATION);
     },
@@ -34,6 +35,21 @@ export function createPreconditioner(curvature: CurvatureTerm, size: number): Pr
       if (factor) solve(factor, vector);
     },
   };
+}
+
+/** The plan of the pattern met last: scans and searches ask for the same one again and again. */
+let lastPattern = new Uint8Array(0);
+let lastPlan: EliminationPlan | null = null;
+
+function planFor(coupled: Uint8Array, atoms: number): EliminationPlan {
+  if (lastPlan && isSame(coupled, lastPattern)) return lastPlan;
+  lastPlan = planElimination(coupled, atoms);
+  lastPattern = coupled.slice();
+  return lastPlan;
+}
+
+function isSame(a: Uint8Array, b: Uint8Array): boolean {
+  return a.length === b.length && a.every((value, n) => value === b[n]);
 }
 
 /** Marks the pairs of atoms with a nonzero block; true when there are new ones. */

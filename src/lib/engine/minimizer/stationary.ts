@@ -3,6 +3,7 @@ import type { Control } from '../control';
 import type { CurvatureTerm, EnergyTerm } from '../energy-term';
 import { createRandom } from '../random';
 import { diagonalize } from './eigen';
+import type { Eigensystem } from './eigen';
 import { dot } from './history';
 import { createPreconditioner } from './preconditioner';
 import { orthonormalize, rigidMotions } from './rigid-motions';
@@ -58,15 +59,26 @@ function hessianProduct(
   };
 }
 
-/** Directions the search for the lowest mode may span. */
-const LARGEST_SUBSPACE = 60;
-/** Error of the lowest curvature that is small enough, kcal/mol/Å². */
-const CURVATURE_ERROR = 1e-3;
+/** Directions the search for the lowest mode spans before it gathers the best of them and starts anew. */
+const LARGEST_SUBSPACE = 12;
+/** Directions kept then. */
+const KEPT = 4;
+/** Products of the Hessian with a vector spent at most. */
+const MOST_PRODUCTS = 80;
+/** The residual that is small enough, kcal/mol/Å², or as a share of the curvature found. */
+const RESIDUAL = 1e-3;
+const RELATIVE_RESIDUAL = 0.2;
+
+/** Directions with their products with the Hessian. */
+interface Subspace {
+  basis: Float64Array[];
+  products: Float64Array[];
+}
 
 /**
  * The softest internal mode at a stationary point of an energy that does not feel rigid motions, by Davidson's method
- * (J. Comput. Phys. 1975, 17, 87) on gradient differences. Deterministic. Its curvature is an upper bound of
- * the lowest one; below zero it proves a saddle. Null for a molecule without internal freedom.
+ * (J. Comput. Phys. 1975, 17, 87) on gradient differences, with restarts. Deterministic. Its curvature is an upper bound
+ * of the lowest one; below zero it proves a saddle. Null for a molecule without internal freedom.
  */
 export async function softestMode(
   energy: EnergyTerm,
@@ -76,28 +88,34 @@ export async function softestMode(
 ): Promise<Mode | null> {
   const size = x.length;
   const rigid = rigidMotions(x);
-  const freedom = size - rigid.length;
-  if (freedom <= 0) return null;
+  if (size <= rigid.length) return null;
   const multiply = hessianProduct(energy, x);
   const preconditioner = createPreconditioner(curvature, size);
   preconditioner.refresh(Float64Array.from(x));
-  const basis: Float64Array[] = [];
-  const products: Float64Array[] = [];
-  let guess = startVector(size);
-  preconditioner.solve(guess);
+  const space: Subspace = { basis: [], products: [] };
   let mode: Mode | null = null;
+  let guess = startVector(size);
 
-  while (basis.length < Math.min(LARGEST_SUBSPACE, freedom)) {
+  for (let products = 0; products < MOST_PRODUCTS; products++) {
     if (control.due()) await control.pause();
-    if (!orthonormalize(guess, [...rigid, ...basis])) break;
+    preconditioner.solve(guess);
+    if (!orthonormalize(guess, [...rigid, ...space.basis])) break;
     const product = new Float64Array(size);
     multiply(guess, product);
-    basis.push(guess);
-    products.push(product);
-    const { residual, ...found } = lowestInSubspace(basis, products, rigid);
-    mode = found;
-    if (Math.sqrt(dot(residual, residual)) <= CURVATURE_ERROR) break;
-    preconditioner.solve(residual);
+    removeParts(product, rigid);
+    space.basis.push(guess);
+    space.products.push(product);
+    const { vectors, values } = diagonalizeIn(space);
+    mode = { curvature: values[0], direction: combine(space.basis, vectors[0]) };
+    const residual = combine(space.products, vectors[0]);
+    for (let a = 0; a < size; a++) residual[a] -= mode.curvature * mode.direction[a];
+    const error = Math.sqrt(dot(residual, residual));
+    if (error <= Math.max(RESIDUAL, RELATIVE_RESIDUAL * Math.abs(mode.curvature))) break;
+    if (space.basis.length === LARGEST_SUBSPACE) {
+      const best = vectors.slice(0, KEPT);
+      space.products = best.map((weights) => combine(space.products, weights));
+      space.basis = best.map((weights) => combine(space.basis, weights));
+    }
     guess = residual;
   }
   return mode;
@@ -109,29 +127,18 @@ function startVector(size: number): Float64Array {
   return Float64Array.from({ length: size }, () => random.uniform() - 0.5);
 }
 
-/** The lowest Ritz pair in the span of `basis`, and what is left of (Hessian - curvature) · direction. */
-function lowestInSubspace(
-  basis: readonly Float64Array[],
-  products: readonly Float64Array[],
-  rigid: readonly Float64Array[],
-): Mode & { readonly residual: Float64Array } {
+/** Eigenvalues and eigenvectors of the Hessian within the subspace. */
+function diagonalizeIn({ basis, products }: Subspace): Eigensystem {
   const count = basis.length;
   const projected = new Float64Array(count * count);
   for (let a = 0; a < count; a++) {
-    for (let b = 0; b < count; b++) {
-      projected[a * count + b] = 0.5 * (dot(basis[a], products[b]) + dot(basis[b], products[a]));
+    for (let b = 0; b <= a; b++) {
+      const element = 0.5 * (dot(basis[a], products[b]) + dot(basis[b], products[a]));
+      projected[a * count + b] = element;
+      projected[b * count + a] = element;
     }
   }
-  const { values, vectors } = diagonalize(projected, count);
-  const curvature = values[0];
-  const direction = combine(basis, vectors[0]);
-  const residual = combine(products, vectors[0]);
-  for (let a = 0; a < residual.length; a++) residual[a] -= curvature * direction[a];
-  for (const motion of rigid) {
-    const part = dot(residual, motion);
-    for (let a = 0; a < residual.length; a++) residual[a] -= part * motion[a];
-  }
-  return { curvature, direction, residual };
+  return diagonalize(projected, count);
 }
 
 function combine(vectors: readonly Float64Array[], weights: Float64Array): Float64Array {
@@ -140,4 +147,11 @@ function combine(vectors: readonly Float64Array[], weights: Float64Array): Float
     for (let a = 0; a < sum.length; a++) sum[a] += weights[n] * vectors[n][a];
   }
   return sum;
+}
+
+function removeParts(vector: Float64Array, directions: readonly Float64Array[]): void {
+  for (const direction of directions) {
+    const part = dot(vector, direction);
+    for (let a = 0; a < vector.length; a++) vector[a] -= part * direction[a];
+  }
 }

@@ -1,10 +1,10 @@
 /** Reads the configuration from a drawing: wedges at centers, and the sides of double bonds. */
-import type { RawMolfile } from './molfile';
+import type { RawMolfile } from './connection-table';
 import type { RawCenter, RawDoubleBond } from './raw';
 import { handedness } from './stereo';
 
 /** Handedness below which a drawing says nothing: neighbors in a line, wedges that contradict each other. */
-const AMBIGUOUS = 0.2;
+const AMBIGUOUS = 0.15;
 /** Sine of the angle to the double bond below which a neighbor lies on neither side. */
 const IN_LINE = 0.05;
 
@@ -45,7 +45,11 @@ function drawnCenters(file: RawMolfile, neighbors: readonly number[][]): RawCent
   return centers;
 }
 
-/** The center at the origin, then its neighbors at unit distance on the paper, raised or lowered by their wedges. */
+/**
+ * The center at the origin, then its neighbors at unit distance on the paper, raised or lowered by their wedges. A
+ * fourth neighbor that is not drawn stands opposite the others and rather above or below than beside them, so that a
+ * T of three bonds with a wedge for its stem still tells.
+ */
 function raisedNeighbors(
   file: RawMolfile,
   atom: number,
@@ -60,7 +64,8 @@ function raisedNeighbors(
     x.set([dx / length, dy / length, above.get(neighbor) ?? 0], 3 * n + 3);
   });
   if (around.length === 3) {
-    for (let axis = 0; axis < 3; axis++) x[12 + axis] = -(x[3 + axis] + x[6 + axis] + x[9 + axis]);
+    const opposite = (axis: number): number => -(x[3 + axis] + x[6 + axis] + x[9 + axis]);
+    x.set([0.8 * opposite(0), 0.8 * opposite(1), opposite(2)], 12);
   }
   return x;
 }

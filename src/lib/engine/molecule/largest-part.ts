@@ -1,5 +1,5 @@
 /** Strips salts and solvents: of a structure in several parts only the largest stays. */
-import type { RawMolfile } from './molfile';
+import type { RawMolfile } from './connection-table';
 import type { RawMolecule } from './raw';
 
 /** The atoms of the part with most heavy atoms; of equals the heavier one, then the first. */

@@ -3,7 +3,7 @@ import { InputError } from '../errors';
 import { STANDARD_ATOMIC_WEIGHTS } from './atomic-weights';
 import { ELEMENT_SYMBOLS } from './elements';
 import { ATOM_LIMIT } from './limits';
-import type { ConnectionTable, Wedge } from './molfile';
+import type { ConnectionTable, Wedge } from './connection-table';
 import {
   addBond,
   applyStatedValences,

@@ -1,6 +1,6 @@
 /** Reads V3000 connection tables, whose fields are separated by blanks. */
 import { ATOM_LIMIT } from './limits';
-import type { ConnectionTable, Wedge } from './molfile';
+import type { ConnectionTable, Wedge } from './connection-table';
 import {
   addBond,
   applyStatedValences,

@@ -1,31 +1,8 @@
 /** Reads the connection table of a molfile (CTfile formats, V2000 and V3000) to the letter, with line numbers. */
 import { InputError } from '../errors';
+import type { RawMolfile } from './connection-table';
 import { readV2000 } from './molfile-v2000';
 import { readV3000 } from './molfile-v3000';
-import type { RawMolecule } from './raw';
-
-/** How the single bond a-b is drawn: its narrow end at a, the wide one at b. */
-export type Wedge = 'up' | 'down' | 'either';
-
-/** A connection table with what belongs to its drawing or geometry. */
-export interface RawMolfile {
-  readonly molecule: RawMolecule;
-  /** 3N, Å (or drawing units). */
-  readonly coordinates: Float64Array;
-  /** By bond index. */
-  readonly wedges: ReadonlyMap<number, Wedge>;
-  /** Double bonds marked as either cis or trans. */
-  readonly openDoubleBonds: ReadonlySet<number>;
-  /** Atom parities as stated, 1 or 2, by atom. */
-  readonly parities: ReadonlyMap<number, number>;
-  /** Atoms of racemic or relative stereo groups: their configuration is one of two. */
-  readonly groupedCenters: readonly number[];
-  /** What the header says of the dimensions: "2D", "3D" or nothing. */
-  readonly dimensions: string;
-}
-
-/** The body of a connection table, as both versions read it. */
-export type ConnectionTable = Omit<RawMolfile, 'dimensions'>;
 
 /** The records of an SDF text, one molfile with its data each; records without content are left out. */
 export function splitRecords(text: string): string[] {

@@ -22,7 +22,8 @@ export interface OpenchemlibMolecule {
 
 /**
  * The molecule with all its hydrogens as an openchemlib molecule, for conformer seeds and energies. With `coordinates`
- * (3N, Å) it has that geometry; without, the configuration is carried by wedges in a drawing.
+ * (3N, Å) it has that geometry; without, it has parities and no coordinates: openchemlib's conformer generator takes a
+ * drawing for a first geometry and then misses some configurations.
  */
 export function toOpenchemlib(
   molecule: Molecule,
@@ -40,10 +41,8 @@ export function toOpenchemlib(
       translated.ocl.setAtomY(n, coordinates[3 * atom + 1]);
       translated.ocl.setAtomZ(n, coordinates[3 * atom + 2]);
     });
-    translated.ocl.ensureHelperArrays(OclMolecule.cHelperNeighbours);
-  } else {
-    drawConfiguration(translated.ocl);
   }
+  translated.ocl.ensureHelperArrays(OclMolecule.cHelperNeighbours);
   return translated;
 }
 

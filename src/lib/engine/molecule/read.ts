@@ -1,11 +1,11 @@
 /** The door into the engine: text in, a complete and checked molecule out. */
 import { InputError } from '../errors';
 import { completeAtoms, finishMolecule, statedConfiguration } from './complete';
-import { refuseSmallTransRings } from './configuration';
 import { keepLargestPart } from './largest-part';
 import type { Molecule } from './molecule';
 import { readMolfile } from './read-molfile';
 import { parseSmiles } from './smiles';
+import { refuseSmallTransRings } from './stereo-limits';
 
 export { splitRecords } from './molfile';
 

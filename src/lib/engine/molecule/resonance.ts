@@ -57,10 +57,17 @@ function rowsOf(shifts: readonly Shift[]): Shift[][] {
 function isDelocalized(molecule: Molecule, row: readonly Shift[]): boolean {
   const atoms = new Set(row.flatMap(({ a, b }) => [a, b]));
   if (row.some(({ change }) => Math.abs(change) !== 1)) return false;
-  if (atoms.size === row.length) return row.length % 4 === 2;
+  if (atoms.size === row.length) {
+    // In large benzenoid systems a row of 4n bonds is made up of shifts in their six-membered rings.
+    return row.length % 4 === 2 || [...atoms].every((atom) => isInRingOfSix(molecule, atom));
+  }
   if (row.length === 2) return true;
   return molecule.rings.some(
     (ring) =>
       ring.length <= LARGEST_CHARGED_RING && [...atoms].every((atom) => ring.includes(atom)),
   );
+}
+
+function isInRingOfSix(molecule: Molecule, atom: number): boolean {
+  return molecule.rings.some((ring) => ring.length === 6 && ring.includes(atom));
 }

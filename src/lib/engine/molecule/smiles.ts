@@ -1,8 +1,8 @@
 /** Reads SMILES (Weininger, J. Chem. Inf. Comput. Sci. 1988, 28, 31; OpenSMILES specification 1.0) to the letter. */
 import { InputError } from '../errors';
-import { atomicNumberOf } from './elements';
 import { ATOM_LIMIT } from './limits';
 import type { RawBond, RawCenter, RawDoubleBond, RawMolecule } from './raw';
+import { parseBracketAtom, smilesFault, symbolNumber } from './smiles-atoms';
 
 /** The bond symbols, and what each says; the two slashes are single bonds with a direction. */
 const BOND_ORDERS: Readonly<Record<string, RawBond['order']>> = {
@@ -14,10 +14,7 @@ const BOND_ORDERS: Readonly<Record<string, RawBond['order']>> = {
   '\\': 1,
 };
 
-const BRACKET_ATOM =
-  /^\[(\d+)?([A-Z][a-z]?|[bcnops]|se|as|te|si)(@(?:@|TH[12]|AL[12]|SP[123]|TB\d{1,2}|OH\d{1,2})?)?(H\d?)?(\+\d{1,2}|-\d{1,2}|\++|-+)?(?::\d+)?\]/;
 const ORGANIC_ATOM = /^(?:Cl|Br|[BCNOPSFIbcnops])/;
-const QUERY_MARK = /[*~!$&;,?<>{}]/;
 
 interface Opened {
   readonly atom: number;
@@ -69,14 +66,7 @@ export function parseSmiles(text: string): RawMolecule {
 }
 
 function fault(walk: Walk, problem: string): InputError {
-  const query = QUERY_MARK.test(walk.text[walk.at] ?? '') || walk.text.startsWith('[#', walk.at);
-  if (query) {
-    return new InputError(
-      'query-feature',
-      `Character ${walk.at + 1} of the SMILES ("${walk.text[walk.at]}") belongs to a search pattern, a reaction or a dummy atom; a whole molecule is needed.`,
-    );
-  }
-  return new InputError('unreadable', `Character ${walk.at + 1} of the SMILES: ${problem}.`);
+  return smilesFault(walk.text, walk.at, problem);
 }
 
 function readChain(walk: Walk): void {
@@ -90,7 +80,8 @@ function readChain(walk: Walk): void {
       bond = mark;
       walk.at++;
     } else if (mark === '(') {
-      if (bond || previous < 0) throw fault(walk, 'a branch that follows no atom');
+      const empty = branches.at(-1)?.atoms === walk.molecule.atoms.length;
+      if (bond || previous < 0 || empty) throw fault(walk, 'a branch that follows no atom');
       branches.push({ atom: previous, at: walk.at, atoms: walk.molecule.atoms.length });
       walk.at++;
     } else if (mark === ')') {
@@ -148,7 +139,7 @@ function readAtom(walk: Walk): number {
   walk.at += match[0].length;
   const aromatic = match[0] === match[0].toLowerCase();
   molecule.atoms.push({
-    atomicNumber: atomicNumberOf(capitalized(match[0])),
+    atomicNumber: symbolNumber(match[0]),
     charge: 0,
     massNumber: 0,
     hydrogens: null,
@@ -158,68 +149,14 @@ function readAtom(walk: Walk): number {
   return atom;
 }
 
-function capitalized(symbol: string): string {
-  return symbol[0].toUpperCase() + symbol.slice(1);
-}
-
 function readBracketAtom(walk: Walk, atom: number): number {
   const end = walk.text.indexOf(']', walk.at);
   if (end < 0) throw fault(walk, 'a bracket that is never closed');
-  const bracket = walk.text.slice(walk.at, end + 1);
-  const match = BRACKET_ATOM.exec(bracket);
-  if (!match) throw bracketFault(walk, bracket, atom);
-  const [, isotope, symbol, chirality, hydrogens, charge] = match;
-  const atomicNumber = atomicNumberOf(capitalized(symbol));
-  if (atomicNumber === 0) {
-    throw new InputError('unknown-element', `${bracket} names no element.`, { atom });
-  }
-  const massNumber = isotope ? Number(isotope) : 0;
-  if (isotope && (massNumber < atomicNumber || massNumber > 3 * atomicNumber)) {
-    throw new InputError('unreadable', `${bracket} is no isotope that exists.`, { atom });
-  }
-  const count = hydrogens ? Number(hydrogens.slice(1) || '1') : 0;
-  if (atomicNumber === 1 && count > 0) {
-    throw new InputError('unreadable', `Write ${bracket} as two atoms: [H][H].`, { atom });
-  }
-  if (chirality && !/^@(@|TH[12])?$/.test(chirality)) {
-    throw new InputError(
-      'unsupported-environment',
-      `${bracket}: only tetrahedral centers (@ and @@) are handled, not "${chirality}".`,
-      { atom },
-    );
-  }
-  if (chirality) walk.chirality.set(atom, chirality === '@@' || chirality === '@TH2');
-  walk.molecule.atoms.push({
-    atomicNumber,
-    charge: readCharge(charge),
-    massNumber,
-    hydrogens: count,
-    aromatic: symbol === symbol.toLowerCase(),
-    line: 0,
-  });
+  const { raw, clockwise } = parseBracketAtom(walk.text, walk.at, end + 1, atom);
+  if (clockwise !== undefined) walk.chirality.set(atom, clockwise);
+  walk.molecule.atoms.push(raw);
   walk.at = end + 1;
   return atom;
-}
-
-function bracketFault(walk: Walk, bracket: string, atom: number): InputError {
-  if (/[*~!$&;,?#]|^\[\d*(?:R\d*|X|A|a|Q|M)\b/.test(bracket)) {
-    return new InputError(
-      'query-feature',
-      `${bracket} stands for an open choice of atoms; a whole molecule is needed.`,
-      { atom },
-    );
-  }
-  const symbol = /^\[\d*([A-Za-z][a-z]?)/.exec(bracket)?.[1];
-  if (symbol && atomicNumberOf(capitalized(symbol)) === 0) {
-    return new InputError('unknown-element', `${bracket} names no element.`, { atom });
-  }
-  return fault(walk, `${bracket.slice(0, 40)} cannot be read as an atom`);
-}
-
-function readCharge(text: string | undefined): number {
-  if (!text) return 0;
-  const size = /\d/.test(text) ? Number(text.slice(1)) : text.length;
-  return text[0] === '-' ? -size : size;
 }
 
 function readRingNumber(walk: Walk, atom: number, bond: string): void {

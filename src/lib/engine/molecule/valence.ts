@@ -34,6 +34,10 @@ function isTerminal(molecule: RawMolecule, atom: number, atomicNumber: number): 
   return molecule.bonds.filter(({ a, b }) => a === atom || b === atom).length === 1;
 }
 
+/** Elements whose open valences stand for hydrogens unless the text says otherwise. */
+const FILLED = new Set([5, 6, 7, 8, 9, 14, 15, 16, 17, 33, 34, 35, 52, 53]);
+const HALOGENS = new Set([9, 17, 35, 53]);
+
 /**
  * How many hydrogens each atom still needs. Throws InputError 'valence' for too many bonds and 'radical' for bonds
  * that are missing where the input states the hydrogens.
@@ -50,6 +54,7 @@ export function countMissingHydrogens(molecule: RawMolecule): number[] {
     const label = atomLabel(atomicNumber, atom);
     const place: InputPlace = line > 0 ? { atom, line } : { atom };
     const sum = sums[atom] + (hydrogens ?? 0);
+    const fillsUp = hydrogens === null && FILLED.has(atomicNumber);
     const target = valences.find((valence) => valence >= sum);
     const charged = charge === 0 ? '' : ` with charge ${charge > 0 ? '+' : '−'}${Math.abs(charge)}`;
     if (target === undefined) {
@@ -59,7 +64,7 @@ export function countMissingHydrogens(molecule: RawMolecule): number[] {
         place,
       );
     }
-    if (hydrogens === null) return target - sum;
+    if (fillsUp && (!HALOGENS.has(atomicNumber) || sum === 0)) return target - sum;
     if (target !== sum) {
       throw new InputError(
         'radical',
@@ -67,7 +72,7 @@ export function countMissingHydrogens(molecule: RawMolecule): number[] {
         place,
       );
     }
-    return hydrogens;
+    return hydrogens ?? 0;
   });
 }
 

@@ -11,8 +11,6 @@ import type { StrainOptions, StrainResult } from './strain';
 import { torsionStrains } from './torsion-strain';
 
 const MAX_EVALUATIONS = 20_000;
-/** Only the lowest conformer counts, so the search looks at what lies low and keeps all of it. */
-const SEARCH_OPTIONS = { ...defaultConformerSearchOptions, window: 4, limit: 500 };
 /** Shares of the work, for progress. */
 const RELAXING_SHARE = 0.05;
 const SEARCH_SHARE = 0.5;
@@ -39,7 +37,7 @@ export async function analyzeStrain(
   control.report(RELAXING_SHARE, 'Searching the lowest conformer');
   const search = await searchConformers(
     forceField,
-    { ...SEARCH_OPTIONS, seed },
+    { ...defaultConformerSearchOptions, seed },
     control.part(RELAXING_SHARE, SEARCH_SHARE),
   );
   const own = await freeMinimum(forceField, relaxed.coordinates, control);
@@ -59,8 +57,8 @@ export async function analyzeStrain(
     givenEnergy: forceField.energy(given, new Float64Array(given.length)),
     relaxed,
     lowest: { coordinates: lowest.coordinates, energy: lowest.energy },
-    torsions,
-    complete: search.complete && torsions.every(({ complete }) => complete),
+    torsions: torsions.strains,
+    complete: search.settled && torsions.complete,
   };
 }
 

@@ -32,7 +32,7 @@ export interface StrainResult {
   readonly givenEnergy: number;
   readonly relaxed: RelaxedInPlace;
   readonly lowest: { readonly coordinates: Float64Array; readonly energy: number };
-  /** Most strained first. */
+  /** Most strained first; bonds that time did not suffice for are missing. */
   readonly torsions: readonly TorsionStrain[];
   readonly complete: boolean;
 }

@@ -11,20 +11,26 @@ import type { TorsionAtoms } from '../torsion/scan-symmetry';
 import { cutFragment } from './fragment';
 import type { TorsionStrain } from './strain';
 
-/** The strain of every rotatable bond of a geometry (Å, 3N), most strained first. */
+/**
+ * The strain of every rotatable bond of a geometry (Å, 3N), most strained first; those that time did not suffice for are
+ * missing, and `complete` is false.
+ */
 export async function torsionStrains(
   forceField: ForceField,
   x: Float64Array,
   seed: number,
   control: Control,
-): Promise<TorsionStrain[]> {
+): Promise<{ strains: TorsionStrain[]; complete: boolean }> {
   const bonds = rotatableBonds(forceField.molecule);
   const strains: TorsionStrain[] = [];
   for (const [n, { torsion: atoms }] of bonds.entries()) {
+    if (control.expired()) break;
     const part = control.part(n / bonds.length, (n + 1) / bonds.length);
     strains.push(await torsionStrain(forceField, x, atoms, seed, part));
   }
-  return strains.sort((a, b) => b.strain - a.strain);
+  strains.sort((a, b) => b.strain - a.strain);
+  const complete = strains.length === bonds.length && strains.every((bond) => bond.complete);
+  return { strains, complete };
 }
 
 async function torsionStrain(

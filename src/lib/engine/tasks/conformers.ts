@@ -13,7 +13,11 @@ export async function searchForConformers(
   control: Control,
 ): Promise<Outcome<ConformersFields>> {
   const options = { limit, window, temperature, seed, effort };
-  const { conformers, complete, ended } = await searchConformers(forceField, options, control);
+  const { conformers, complete, ended, settled } = await searchConformers(
+    forceField,
+    options,
+    control,
+  );
   return {
     fields: {
       conformers: conformers.map((conformer) => withMolfile(forceField.molecule, conformer)),
@@ -21,6 +25,6 @@ export async function searchForConformers(
       ended,
     },
     coordinates: conformers[0].coordinates,
-    warnings: ended === 'budget' ? [incompleteSearch] : [],
+    warnings: settled ? [] : [incompleteSearch],
   };
 }

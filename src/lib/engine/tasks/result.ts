@@ -1,5 +1,5 @@
 /** What the engine answers. Energies kcal/mol, angles degrees, atoms from 0, geometries as molfiles. */
-import type { ConjugationForm, OpenConjugation, RingConjugation } from '../conjugation/conjugation';
+import type { BondConjugation, ConjugationForm } from '../conjugation/conjugation';
 import type { Conformer, SearchEnd } from '../conformers/conformers';
 import type { InputWarning } from '../errors';
 import type { TermEnergies, Variant } from '../forcefield/forcefield';
@@ -81,17 +81,11 @@ export interface MapFields extends Omit<MapResult, 'cells' | 'minima'> {
   readonly minima: readonly AsMolfile<MapMinimum>[];
 }
 
-type OpenBond = Omit<OpenConjugation, 'sCis' | 'sTrans'> & {
-  readonly sCis: AsMolfile<ConjugationForm> | null;
-  readonly sTrans: AsMolfile<ConjugationForm> | null;
-};
-/** A bond in a ring has its twist only; what needs a turn is null. */
-type RingBond = RingConjugation & {
-  readonly [Field in Exclude<keyof OpenBond, keyof RingConjugation>]: null;
-};
-
 export interface ConjugationFields {
-  readonly bonds: readonly (OpenBond | RingBond)[];
+  readonly bonds: readonly (Omit<BondConjugation, 'sCis' | 'sTrans'> & {
+    readonly sCis: AsMolfile<ConjugationForm> | null;
+    readonly sTrans: AsMolfile<ConjugationForm> | null;
+  })[];
   readonly complete: boolean;
 }
 

@@ -30,7 +30,19 @@ export async function scanBond(
     fields: {
       ...scan,
       points: scan.points.map((point) => withMolfile(molecule, point)),
-      stationary: scan.stationary.map((point) => withMolfile(molecule, point)),
+      stationary: scan.stationary.map(
+        ({ kind, angle, energy, relative, label, range, coordinates, converged }) =>
+          withMolfile(molecule, {
+            kind,
+            angle,
+            energy,
+            relative,
+            label,
+            range,
+            coordinates,
+            converged,
+          }),
+      ),
       ...summarizeProfile(scan, temperature),
     },
     coordinates: lowest.coordinates,

@@ -1,5 +1,6 @@
 /** What kind of single bond a torsion turns about, as far as the names of its conformations depend on it. */
-import { bondedBy, inAromaticRing, perceiveStructure } from '../forcefield/structure';
+import { bondedBy } from '../forcefield/bonding';
+import { inAromaticRing, perceiveStructure } from '../forcefield/structure';
 import type { Structure } from '../forcefield/structure';
 import type { Molecule } from '../molecule/molecule';
 import { createPriorities, rankedSubstituents } from '../molecule/priority';

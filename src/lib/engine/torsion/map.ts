@@ -86,10 +86,16 @@ export async function scanTorsionMap(
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, torsions);
   checkTwoBonds(torsions);
-  const found = await findStarts(forceField, torsions, seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, torsions, { seed }, control.part(0, STARTS_SHARE));
   const { starts } = found;
   for (const atoms of torsions) checkBent(starts[0], atoms);
-  const symmetry = findScanSymmetry(forceField, torsions, starts[0], createRandom(seed));
+  const symmetry = await findScanSymmetry(
+    forceField,
+    torsions,
+    starts[0],
+    createRandom(seed),
+    control,
+  );
   const isMirrored = symmetry.exact.some(({ mirror }) => mirror);
   const all = isMirrored ? starts : [...starts, ...found.mirrored];
   const grid = createGrid(2, step, symmetry.exact);

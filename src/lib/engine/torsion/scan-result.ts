@@ -9,6 +9,8 @@ export interface ScanOptions {
   /** Whether everything else relaxes at each angle; otherwise one geometry is turned rigidly. */
   readonly relaxed: boolean;
   readonly seed: number;
+  /** Low conformers where they are known already (Å, 3N, lowest first); searched when not given. */
+  readonly conformers?: readonly Float64Array[] | undefined;
 }
 
 export const defaultScanOptions: Omit<ScanOptions, 'torsion'> = {
@@ -44,8 +46,8 @@ export interface ScanPoint {
 export interface StationaryPoint {
   readonly kind: StationaryKind;
   /**
-   * Degrees, of the geometry itself and not of a grid point; but 0 or 180 where two mirror images lie within 2 degrees of
-   * each other and count as one.
+   * Degrees, of the geometry itself and not of a grid point; but 0 or 180 where two mirror images are so near to each
+   * other (2 degrees for minima, 6 for humps of one barrier) that they count as one.
    */
   readonly angle: number;
   /** kcal/mol */

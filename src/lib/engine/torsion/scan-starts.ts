@@ -8,6 +8,7 @@ import { symmetryClasses } from '../molecule/symmetry-classes';
 import { findAutomorphism } from './automorphism';
 import { readHandedness, signedVolume } from './handedness';
 import type { Handedness } from './handedness';
+import type { ScanOptions } from './scan-result';
 import { applySymmetry } from './scan-symmetry';
 import type { TorsionAtoms } from './scan-symmetry';
 
@@ -32,9 +33,40 @@ export interface ScanStarts {
 export async function findStarts(
   forceField: ForceField,
   torsions: readonly TorsionAtoms[],
-  seed: number,
+  { seed, conformers: known }: Pick<ScanOptions, 'seed' | 'conformers'>,
   control: Control,
 ): Promise<ScanStarts> {
+  const { molecule } = forceField;
+  const { found, complete } = known?.length
+    ? { found: known.slice(0, MOST_STARTS).map((x) => x.slice()), complete: true }
+    : await searchStarts(forceField, seed, control);
+  const geometries = isWrongEnantiomer(molecule, found[0]) ? found.map(mirrorImage) : found;
+  const numbering = createNumbering(molecule, torsions, geometries[0]);
+  const numbered = async (from: readonly Float64Array[]): Promise<Float64Array[]> => {
+    const done: Float64Array[] = [];
+    for (const x of from) {
+      if (control.due()) await control.pause();
+      const renumbered = numbering(x);
+      // What holds for one holds for all, as they have one configuration.
+      if (!renumbered) break;
+      done.push(renumbered);
+    }
+    return done;
+  };
+  const starts = await numbered(geometries);
+  if (molecule.coordinates) starts.push(Float64Array.from(molecule.coordinates));
+  return {
+    starts: starts.length > 0 ? starts : geometries,
+    mirrored: await numbered(geometries.map(mirrorImage)),
+    complete,
+  };
+}
+
+async function searchStarts(
+  forceField: ForceField,
+  seed: number,
+  control: Control,
+): Promise<{ found: Float64Array[]; complete: boolean }> {
   const options = {
     ...defaultConformerSearchOptions,
     limit: MOST_STARTS,
@@ -43,18 +75,8 @@ export async function findStarts(
     seed,
   } as const;
   const { conformers, ended } = await searchConformers(forceField, options, control);
-  const { molecule } = forceField;
   const found = conformers.map(({ coordinates }) => Float64Array.from(coordinates));
-  const geometries = isWrongEnantiomer(molecule, found[0]) ? found.map(mirrorImage) : found;
-  const numbering = createNumbering(molecule, torsions, geometries[0]);
-  const numbered = (x: Float64Array): Float64Array[] => numbering(x) ?? [];
-  const starts = geometries.flatMap(numbered);
-  if (molecule.coordinates) starts.push(Float64Array.from(molecule.coordinates));
-  return {
-    starts: starts.length > 0 ? starts : geometries,
-    mirrored: geometries.map(mirrorImage).flatMap(numbered),
-    complete: ended !== 'budget',
-  };
+  return { found, complete: ended !== 'budget' };
 }
 
 /**
@@ -68,6 +90,8 @@ function isWrongEnantiomer(molecule: Molecule, x: Float64Array): boolean {
     .flatMap(({ code, atom }) =>
       code === 'undefined-stereocenter' && atom !== undefined ? [atom] : [],
     )
+    // The middle of a chiral allene has two neighbors only, which span no volume.
+    .filter((atom) => molecule.neighbors[atom].length > 2)
     .sort((a, b) => classes[a] - classes[b]);
   if (open.length === 0) return false;
   const neighbors = molecule.neighbors[open[0]].map(({ atom }) => atom);
@@ -85,16 +109,16 @@ function createNumbering(
   molecule: Molecule,
   torsions: readonly TorsionAtoms[],
   first: Float64Array,
-): (x: Float64Array) => [Float64Array] | null {
+): (x: Float64Array) => Float64Array | null {
   const classes = symmetryClasses(molecule);
   const root = torsions[0][1];
-  const renumber = (x: Float64Array, wanted: Handedness): [Float64Array] | null => {
+  const renumber = (x: Float64Array, wanted: Handedness): Float64Array | null => {
     const question = { molecule, classes, handedness: readHandedness(molecule, x), wanted };
     const source = findAutomorphism(question, [[root, root]], false);
     if (!source) return null;
     const out = new Float64Array(x.length);
     applySymmetry({ source, mirror: false }, x, out);
-    return [out];
+    return out;
   };
   if (molecule.coordinates) {
     const given = readHandedness(molecule, Float64Array.from(molecule.coordinates));

@@ -1,5 +1,6 @@
 /** Symmetries of a molecule that a torsion scan can use: a point of the profile gives others without computing them. */
 import { torsion } from '../geometry';
+import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import { symmetryClasses } from '../molecule/symmetry-classes';
 import type { Random } from '../random';
@@ -66,30 +67,36 @@ export function inverseSymmetry(operation: SymmetryOperation): SymmetryOperation
  * Finds the symmetries of a scan of one or two torsions. `x` (Å, 3N) is any sound geometry of the molecule, from which
  * the configuration is read: a chiral molecule has no mirror. Each operation is proved by the energy of a distorted geometry.
  */
-export function findScanSymmetry(
+export async function findScanSymmetry(
   forceField: ForceField,
   torsions: readonly TorsionAtoms[],
   x: Float64Array,
   random: Random,
-): ScanSymmetry {
+  control: Control,
+): Promise<ScanSymmetry> {
   const { molecule } = forceField;
   const classes = symmetryClasses(molecule);
   const question = { molecule, classes, handedness: readHandedness(molecule, x) };
   const prove = createProof(forceField, x, random);
-  const exact = exactCandidates(torsions.length).flatMap((candidate): ExactSymmetry[] => {
+  const exact: ExactSymmetry[] = [];
+  for (const candidate of exactCandidates(torsions.length)) {
+    if (control.due()) await control.pause();
     const source = findForTorsions(question, torsions, candidate.from, candidate.sign === -1);
-    if (!source) return [];
-    const operation = { ...candidate, source, mirror: candidate.sign === -1 };
-    return prove(operation) ? [operation] : [];
-  });
-  if (torsions.length > 1) return { exact, shifting: [] };
+    const operation = source && { ...candidate, source, mirror: candidate.sign === -1 };
+    if (operation && prove(operation)) exact.push(operation);
+  }
+  const shifting: ShiftingSymmetry[] = [];
+  if (torsions.length > 1) return { exact, shifting };
   const known = new Set([...exact.map(() => 'true 0'), 'false 0']);
-  const shifting = shiftingOperations(question, torsions[0], x).filter((operation) => {
-    const key = `${operation.mirror} ${operation.shift}`;
-    if (known.has(key) || !prove(operation)) return false;
+  for (const candidate of shiftingCandidates(question, torsions[0], x)) {
+    if (control.due()) await control.pause();
+    const key = `${candidate.mirror} ${candidate.shift}`;
+    if (known.has(key)) continue;
+    const source = findAutomorphism(question, candidate.anchors, candidate.mirror);
+    if (!source || !prove({ source, mirror: candidate.mirror })) continue;
     known.add(key);
-    return true;
-  });
+    shifting.push({ source, mirror: candidate.mirror, shift: candidate.shift });
+  }
   return { exact, shifting };
 }
 
@@ -123,15 +130,21 @@ function findForTorsions(
   return null;
 }
 
-function shiftingOperations(
-  question: SymmetryQuestion,
+interface ShiftingCandidate {
+  readonly anchors: readonly (readonly [number, number])[];
+  readonly mirror: boolean;
+  readonly shift: number;
+}
+
+/** The other torsions about the same bond, read either way, whose ends are like those of the one scanned. */
+function shiftingCandidates(
+  { molecule, classes }: SymmetryQuestion,
   atoms: TorsionAtoms,
   x: Float64Array,
-): ShiftingSymmetry[] {
-  const { molecule, classes } = question;
+): ShiftingCandidate[] {
   const [i, j, k, l] = atoms;
   const own = torsion(x, i, j, k, l);
-  const found: ShiftingSymmetry[] = [];
+  const found: ShiftingCandidate[] = [];
   for (const [first, second] of [
     [j, k],
     [k, j],
@@ -144,8 +157,7 @@ function shiftingOperations(
         const anchors = atoms.map((atom, n) => [atom, images[n]] as const);
         const angle = torsion(x, front, first, second, rear);
         for (const mirror of [false, true]) {
-          const source = findAutomorphism(question, anchors, mirror);
-          if (source) found.push({ source, mirror, shift: shiftBetween(own, angle, mirror) });
+          found.push({ anchors, mirror, shift: shiftBetween(own, angle, mirror) });
         }
       }
     }
@@ -153,9 +165,9 @@ function shiftingOperations(
   return found;
 }
 
-/** The shift from a torsion to its image, to the nearest of the turns that substituents are apart. */
-function shiftBetween(own: number, image: number, mirror: boolean): number {
-  const turn = mirror ? own + image : image - own;
+/** The shift from a torsion to what reads `angle` before any mirror, to the nearest turn that substituents are apart. */
+function shiftBetween(own: number, angle: number, mirror: boolean): number {
+  const turn = mirror ? own - angle : angle - own;
   return 60 * ((Math.round(turn / 60) + 12) % 6);
 }
 

@@ -157,6 +157,38 @@ describe('scanTorsion', () => {
     }
   });
 
+  it.each([
+    // An amine whose two pyramids differ by next to nothing at 0 and 180 degrees, and change into each other at a kink.
+    ['Nc1ccccc1', [7, 0, 1, 2]],
+    ['COC=C', [0, 1, 2, 3]],
+    ['OCCO', chain],
+  ] satisfies [string, TorsionAtoms][])(
+    'lists the stationary points of %s in turn and mirrored',
+    async (smiles, torsion) => {
+      const { stationary } = await scan(smiles, torsion);
+      stationary.forEach(({ kind }, n) => {
+        expect(kind).not.toBe(stationary[(n + 1) % stationary.length].kind);
+      });
+      for (const { kind, angle, energy } of stationary) {
+        const image = stationary.find(
+          (other) => other.kind === kind && Math.abs(turnBetween(other.angle, -angle)) < 0.5,
+        );
+        expect(Math.abs(image!.energy - energy)).toBeLessThan(1e-4);
+      }
+    },
+  );
+
+  it('takes conformers that are known already', async () => {
+    const searched = await scan('CCCC', chain);
+    const conformers = searched.stationary
+      .filter(({ kind }) => kind === 'minimum')
+      .map(({ coordinates }) => coordinates);
+    const given = await scan('CCCC', chain, { conformers });
+    for (const { angle, energy } of searched.points) {
+      expect(Math.abs(energyAt(given, angle) - energy)).toBeLessThan(0.01);
+    }
+  });
+
   it('gives bit for bit the same numbers again', async () => {
     const options = { step: 30 };
     const first = await scan('OCCO', chain, options);

@@ -41,14 +41,20 @@ export async function scanTorsion(
   checkStep(step, SMALLEST_STEP);
   const { molecule } = forceField;
   const drive = createTorsionDrive(forceField, [torsion]);
-  const found = await findStarts(forceField, [torsion], seed, control.part(0, STARTS_SHARE));
+  const found = await findStarts(forceField, [torsion], options, control.part(0, STARTS_SHARE));
   const { starts } = found;
   checkBent(starts[0], torsion);
   const classes = symmetryClasses(molecule);
   const character = characterizeBond(molecule, torsion, classes);
   if (!relaxed) return scanRigidly(forceField, drive, starts[0], step, character);
 
-  const symmetry = findScanSymmetry(forceField, [torsion], starts[0], createRandom(seed));
+  const symmetry = await findScanSymmetry(
+    forceField,
+    [torsion],
+    starts[0],
+    createRandom(seed),
+    control,
+  );
   const all = symmetry.exact.length > 0 ? starts : [...starts, ...found.mirrored];
   const grid = createGrid(1, step, symmetry.exact);
   const waveControl = control.part(STARTS_SHARE, WAVE_SHARE);

@@ -2,7 +2,7 @@
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import { createPeriodicCurve } from '../thermo/periodic-curve';
-import { turnBetween } from '../units';
+import { turnBetween, wrapDegrees } from '../units';
 import type { BondCharacter } from './bond-character';
 import { minimizeFreely } from './free-minimum';
 import { klynePrelog } from './klyne-prelog';
@@ -11,7 +11,7 @@ import type { StationaryKind } from './labels';
 import { refineMaximum } from './refine-maximum';
 import type { ProfileSample, ScanPoint, StationaryPoint } from './scan-result';
 import { applySymmetry } from './scan-symmetry';
-import type { ScanSymmetry } from './scan-symmetry';
+import type { ScanSymmetry, SymmetryOperation } from './scan-symmetry';
 import type { TorsionDrive } from './torsion-drive';
 
 /** What is known when the grid is done. */
@@ -27,6 +27,8 @@ export interface ProfileSetting {
 
 /** Minima nearer to each other than this are one, degrees. */
 const SAME_ANGLE = 2;
+/** Mirrored humps on one barrier, with no minimum between them, are one if nearer than this, degrees. */
+const SAME_MAXIMUM = 6;
 /** A barrier lower than this above the higher of its two minima is noise and separates nothing, kcal/mol. */
 const NO_BARRIER = 0.005;
 /** A free minimum may lie this much above the curve through the grid and still belong to the profile, kcal/mol. */
@@ -50,8 +52,9 @@ export async function findStationaryPoints(
     const top = complete ? await barrierBetween(setting, minima[n], next, known, control) : null;
     const rise = top ? top.energy - Math.max(minima[n].energy, next.energy) : Infinity;
     if (minima.length > 1 && rise < NO_BARRIER) {
-      const higher = minima[n].energy > next.energy ? minima[n] : next;
-      minima = minima.filter((minimum) => minimum !== higher);
+      const merged = mergeMinima(setting, minima[n], next);
+      const others = minima.filter((minimum) => minimum !== minima[n] && minimum !== next);
+      minima = [...others, merged].sort((a, b) => a.angle - b.angle);
       maxima.length = 0;
       n = 0;
       continue;
@@ -74,7 +77,7 @@ function describe(
   const lowest = Math.min(...found.map(({ energy }) => energy));
   const mirrored = symmetry.exact.length > 0;
   return found
-    .map((sample) => (mirrored ? { ...sample, angle: ontoMirror(sample.angle) } : sample))
+    .map((sample) => (mirrored ? { ...sample, angle: ontoMirror(sample) } : sample))
     .sort((a, b) => a.angle - b.angle)
     .map((sample) => ({
       ...sample,
@@ -84,15 +87,35 @@ function describe(
     }));
 }
 
+/** One minimum for two that no barrier parts, the second above the first in angle: between mirror images, else the lower. */
+function mergeMinima(
+  { symmetry }: ProfileSetting,
+  first: ProfileSample,
+  second: ProfileSample,
+): ProfileSample {
+  const areImages =
+    symmetry.exact.length > 0 &&
+    Math.abs(turnBetween(first.angle, -second.angle)) < SAME_ANGLE / 2 &&
+    Math.abs(first.energy - second.energy) < NO_BARRIER;
+  if (areImages) {
+    const middle = first.angle + spanBetween(first.angle, second.angle) / 2;
+    return { ...first, angle: wrapDegrees(middle) };
+  }
+  // Of two equal ones the nearer to 0 stays, so that mirrored pairs end alike.
+  const difference = first.energy - second.energy || Math.abs(first.angle) - Math.abs(second.angle);
+  return difference <= 0 ? first : second;
+}
+
 /** Of a stationary point and its mirror image so near to each other that they count as one, the angle between them. */
-function ontoMirror(angle: number): number {
-  if (Math.abs(angle) < SAME_ANGLE / 2) return 0;
-  return Math.abs(angle) > 180 - SAME_ANGLE / 2 ? 180 : angle;
+function ontoMirror({ kind, angle }: { kind: StationaryKind; angle: number }): number {
+  const within = (kind === 'minimum' ? SAME_ANGLE : SAME_MAXIMUM) / 2;
+  if (Math.abs(angle) < within) return 0;
+  return Math.abs(angle) > 180 - within ? 180 : angle;
 }
 
 /** Free minima from the grid's lowest places and from the starts, ascending in angle. */
 async function findMinima(setting: ProfileSetting, control: Control): Promise<ProfileSample[]> {
-  const { forceField, drive, points, starts } = setting;
+  const { forceField, drive, symmetry, points, starts } = setting;
   const curve = createPeriodicCurve(
     points.map(({ angle }) => angle),
     points.map(({ energy }) => energy),
@@ -120,7 +143,9 @@ async function findMinima(setting: ProfileSetting, control: Control): Promise<Pr
     if (!minimum) continue;
     const sample = { ...minimum, angle: drive.measure(minimum.coordinates)[0] };
     if (sample.energy > curve.at(sample.angle) + ABOVE_PROFILE) continue;
-    for (const image of [sample, ...imagesOf(setting, sample)]) addMinimum(minima, image);
+    const operations = [...symmetry.exact, ...symmetry.shifting];
+    const images = imagesOf(setting, sample, operations);
+    for (const image of [sample, ...images]) addMinimum(minima, image);
   }
   return minima.sort((a, b) => a.angle - b.angle);
 }
@@ -143,8 +168,12 @@ function addMinimum(minima: ProfileSample[], sample: ProfileSample): void {
 }
 
 /** The same stationary point elsewhere on the circle, by the molecule's symmetry. */
-function imagesOf({ symmetry, drive }: ProfileSetting, sample: ProfileSample): ProfileSample[] {
-  return [...symmetry.exact, ...symmetry.shifting].map((operation) => {
+function imagesOf(
+  { drive }: ProfileSetting,
+  sample: ProfileSample,
+  operations: readonly SymmetryOperation[],
+): ProfileSample[] {
+  return operations.map((operation) => {
     const coordinates = new Float64Array(sample.coordinates.length);
     applySymmetry(operation, sample.coordinates, coordinates);
     return { ...sample, angle: drive.measure(coordinates)[0], coordinates };
@@ -166,9 +195,12 @@ async function barrierBetween(
   };
   const between = setting.points.filter(inside);
   const highest = Math.max(...between.map(({ energy }) => energy));
-  const image = known
-    .flatMap((sample) => imagesOf(setting, sample))
-    .find((sample) => inside(sample) && sample.energy >= highest - 1e-3);
+  const fits = (sample: ProfileSample): boolean =>
+    inside(sample) && sample.energy >= highest - 1e-3;
+  const { exact, shifting } = setting.symmetry;
+  const image =
+    known.flatMap((sample) => imagesOf(setting, sample, exact)).find(fits) ??
+    known.flatMap((sample) => imagesOf(setting, sample, shifting)).find(fits);
   return image ?? refineMaximum(setting.drive, [from, ...between, to], span, control);
 }
 

@@ -5,10 +5,13 @@
  */
 import type { CurvatureTerm, EnergyTerm } from '../../energy-term';
 import type { Interactions } from '../interactions';
-import { COLLINEAR_GUARD, KCAL_PER_MDYN_ANGSTROM, RADIANS_PER_DEGREE } from './constants';
+import {
+  COLLINEAR_GUARD,
+  CUBIC_BEND as cb,
+  KCAL_PER_MDYN_ANGSTROM,
+  RADIANS_PER_DEGREE,
+} from './constants';
 import { addOuterProduct } from './curvature-blocks';
-
-const cb = -0.4;
 
 /** The bending energy of all angles, kcal/mol. */
 export function angleTerm({ atoms, angle, force, linear }: Interactions['angles']): EnergyTerm {

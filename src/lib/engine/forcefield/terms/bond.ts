@@ -4,11 +4,13 @@
  */
 import type { CurvatureTerm, EnergyTerm } from '../../energy-term';
 import type { Interactions } from '../interactions';
-import { COINCIDENT_GUARD, KCAL_PER_MDYN_ANGSTROM } from './constants';
+import {
+  COINCIDENT_GUARD,
+  CUBIC_STRETCH as cs,
+  KCAL_PER_MDYN_ANGSTROM,
+  QUARTIC_STRETCH as quartic,
+} from './constants';
 import { addPairBlock } from './curvature-blocks';
-
-const cs = -2;
-const quartic = (7 / 12) * cs * cs;
 
 /** The stretching energy of all bonds, kcal/mol. */
 export function bondTerm({ atoms, length, force }: Interactions['bonds']): EnergyTerm {

@@ -13,3 +13,9 @@ export const RADIANS_PER_DEGREE = Math.PI / 180;
 export const COLLINEAR_GUARD = 1e-12;
 /** Added to squared distances in Å², so that atoms on top of each other have a finite gradient. */
 export const COINCIDENT_GUARD = 1e-20;
+
+/** cs of bond stretching, 1/Å, and 7/12 of its square, 1/Å². */
+export const CUBIC_STRETCH = -2;
+export const QUARTIC_STRETCH = (7 / 12) * CUBIC_STRETCH ** 2;
+/** cb of angle bending, 1/radian; -0.006981317 1/degree. */
+export const CUBIC_BEND = -0.4;

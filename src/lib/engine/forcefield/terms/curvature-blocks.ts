@@ -38,7 +38,9 @@ export function addDiagonalBlock(
   along: number,
   across: number,
 ): void {
-  const [xx, yy, zz] = [ux * ux, uy * uy, uz * uz].map((square) => along * square + across);
+  const xx = along * ux * ux + across;
+  const yy = along * uy * uy + across;
+  const zz = along * uz * uz + across;
   const start = i * size + i;
   addSymmetric(hessian, start, size, xx, yy, zz, along * ux * uy, along * ux * uz, along * uy * uz);
 }
@@ -78,15 +80,26 @@ export function addOuterProduct(
   scale: number,
 ): void {
   for (let a = 0; a < atoms; a++) {
-    for (let p = 0; p < 3; p++) {
-      const row = (offsets[a] + p) * size;
-      const factor = scale * vector[3 * a + p];
-      for (let b = 0; b < atoms; b++) {
-        const column = row + offsets[b];
-        hessian[column] += factor * vector[3 * b];
-        hessian[column + 1] += factor * vector[3 * b + 1];
-        hessian[column + 2] += factor * vector[3 * b + 2];
-      }
+    const row = offsets[a] * size;
+    const x = scale * vector[3 * a];
+    const y = scale * vector[3 * a + 1];
+    const z = scale * vector[3 * a + 2];
+    for (let b = 0; b < atoms; b++) {
+      const u = vector[3 * b];
+      const v = vector[3 * b + 1];
+      const w = vector[3 * b + 2];
+      const first = row + offsets[b];
+      const second = first + size;
+      const third = second + size;
+      hessian[first] += x * u;
+      hessian[first + 1] += x * v;
+      hessian[first + 2] += x * w;
+      hessian[second] += y * u;
+      hessian[second + 1] += y * v;
+      hessian[second + 2] += y * w;
+      hessian[third] += z * u;
+      hessian[third + 1] += z * v;
+      hessian[third + 2] += z * w;
     }
   }
 }

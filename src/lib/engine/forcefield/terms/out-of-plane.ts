@@ -89,11 +89,11 @@ export function outOfPlaneCurvature({ atoms, force }: Interactions['outOfPlanes'
 }
 
 /** Writes the derivatives of the Wilson angle by i, j, k, l; false where the angle is ill-defined. */
-function wilsonDerivative(
-  x: Float64Array,
-  [i, j, k, l]: Int32Array,
-  derivative: Float64Array,
-): boolean {
+function wilsonDerivative(x: Float64Array, offsets: Int32Array, derivative: Float64Array): boolean {
+  const i = offsets[0];
+  const j = offsets[1];
+  const k = offsets[2];
+  const l = offsets[3];
   const ux = x[i] - x[j];
   const uy = x[i + 1] - x[j + 1];
   const uz = x[i + 2] - x[j + 2];

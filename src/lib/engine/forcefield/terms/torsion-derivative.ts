@@ -7,9 +7,13 @@ import { COLLINEAR_GUARD } from './constants';
  */
 export function torsionDerivative(
   x: Float64Array,
-  [i, j, k, l]: Int32Array,
+  offsets: Int32Array,
   derivative: Float64Array,
 ): number {
+  const i = offsets[0];
+  const j = offsets[1];
+  const k = offsets[2];
+  const l = offsets[3];
   const ax = x[j] - x[i];
   const ay = x[j + 1] - x[i + 1];
   const az = x[j + 2] - x[i + 2];

@@ -76,19 +76,22 @@ export function torsionTerm({ atoms, v1, v2, v3 }: Interactions['torsions']): En
   };
 }
 
-/** The positive part of d²ET/dφ² times the outer product of the torsion's derivatives. */
+/**
+ * The largest d²ET/dφ² a torsion can have times the outer product of its derivatives. The value at the place itself
+ * steers worse: steps turn torsions far enough to change it.
+ */
 export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']): CurvatureTerm {
   const count = v1.length;
+  const stiffness = v1.map(
+    (v, q) => 0.5 * (Math.abs(v) + 4 * Math.abs(v2[q]) + 9 * Math.abs(v3[q])),
+  );
   const offsets = new Int32Array(4);
   const derivative = new Float64Array(12);
   return (x, hessian) => {
     for (let q = 0; q < count; q++) {
       for (let a = 0; a < 4; a++) offsets[a] = 3 * atoms[4 * q + a];
-      const phi = torsionDerivative(x, offsets, derivative);
-      const second =
-        0.5 *
-        (-v1[q] * Math.cos(phi) + 4 * v2[q] * Math.cos(2 * phi) - 9 * v3[q] * Math.cos(3 * phi));
-      if (second > 0) addOuterProduct(hessian, x.length, offsets, derivative, 4, second);
+      torsionDerivative(x, offsets, derivative);
+      addOuterProduct(hessian, x.length, offsets, derivative, 4, stiffness[q]);
     }
   };
 }

@@ -34,21 +34,15 @@ const access = (offset: number): Code => [3, ...unsigned(offset)];
 /** Integers: addresses and counters. */
 export const i32 = {
   constant: (value: number): Code => [0x41, ...signed(value)],
+  load: (address: Code, offset = 0): Code => [...address, 0x28, 2, ...unsigned(offset)],
   add: binary(0x6a),
-  subtract: binary(0x6b),
   lessThan: binary(0x49),
 };
 
 /** Single floating-point numbers. */
 export const f64 = {
-  constant: (value: number): Code => [0x44, ...float(value)],
-  load: (address: Code, offset = 0): Code => [...address, 0x2b, ...access(offset)],
-  store: (address: Code, value: Code, offset = 0): Code => [
-    ...address,
-    ...value,
-    0x39,
-    ...access(offset),
-  ],
+  load: (address: Code): Code => [...address, 0x2b, ...access(0)],
+  store: (address: Code, value: Code): Code => [...address, ...value, 0x39, ...access(0)],
   add: binary(0xa0),
 };
 
@@ -56,27 +50,41 @@ export const f64 = {
 export const f64x2 = {
   constant: (value: number): Code => [0xfd, 0x0c, ...float(value), ...float(value)],
   load: (address: Code, offset = 0): Code => [...address, 0xfd, 0x00, ...access(offset)],
-  loadSplat: (address: Code, offset = 0): Code => [...address, 0xfd, 0x0a, ...access(offset)],
-  store: (address: Code, value: Code, offset = 0): Code => [
-    ...address,
-    ...value,
-    0xfd,
-    0x0b,
-    ...access(offset),
+  /** One number from memory in both lanes. */
+  loadSplat: (address: Code): Code => [...address, 0xfd, 0x0a, ...access(0)],
+  /** Two numbers from two places. */
+  gather: (first: Code, second: Code): Code => [
+    ...second,
+    ...[...first, 0xfd, 0x5d, ...access(0)],
+    ...[0xfd, 0x57, ...access(0), 1],
   ],
+  store: (address: Code, value: Code): Code => [...address, ...value, 0xfd, 0x0b, ...access(0)],
   add: binary(0xfd, 0xf0, 0x01),
   subtract: binary(0xfd, 0xf1, 0x01),
   multiply: binary(0xfd, 0xf2, 0x01),
   divide: binary(0xfd, 0xf3, 0x01),
+  largest: binary(0xfd, 0xf5, 0x01),
   squareRoot: (a: Code): Code => [...a, 0xfd, 0xef, 0x01],
-  lane: (a: Code, lane: 0 | 1): Code => [...a, 0xfd, 0x21, lane],
+  absolute: (a: Code): Code => [...a, 0xfd, 0xec, 0x01],
+  /** Lane by lane: `chosen` where a < b, `other` elsewhere. */
+  whereLess: (a: Code, b: Code, chosen: Code, other: Code): Code => [
+    ...chosen,
+    ...other,
+    ...[...a, ...b, 0xfd, 0x49],
+    ...[0xfd, 0x52],
+  ],
+  lane: (a: Code, lane: number): Code => [...a, 0xfd, 0x21, lane],
 };
 
-/** A local variable: `get` reads it, `set` writes it, `tee` writes and keeps the value. */
+/** A local variable: `get` reads it, `set` writes it. */
 export interface Local {
   readonly get: Code;
   set(value: Code): Code;
-  tee(value: Code): Code;
+}
+
+/** Runs `body` once where `condition` holds. */
+export function when(condition: Code, body: Code): Code {
+  return [...condition, 0x04, 0x40, ...body, 0x0b];
 }
 
 /** Repeats `body` while `condition` holds after it: the body always runs once. */
@@ -106,7 +114,6 @@ export function assembleModule(
     return {
       get: [0x20, ...index],
       set: (value: Code) => [...value, 0x21, ...index],
-      tee: (value: Code) => [...value, 0x22, ...index],
     };
   };
   const code = build({ parameter: declare(parameters), local: declare(locals) });
