@@ -4,21 +4,31 @@ import { dirname, join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { windlassFolder } from './folders.mjs';
 
-/** True when the process is there; a process of another user counts as well. */
-export function isAlive(pid) {
+/** True for a process that ended but that its parent has not taken note of yet. */
+function isDefunct(pid) {
   try {
-    process.kill(pid, 0);
-    return true;
-  } catch (error) {
-    return error.code === 'EPERM';
+    return /^State:\s+Z/m.test(readFileSync(`/proc/${pid}/status`, 'utf8'));
+  } catch {
+    // No /proc on this system, or the process is gone.
+    return false;
   }
 }
 
-/** Creates a file that must not exist yet and puts `content` in; false when it was there already. */
+/** True when the process runs; a process of another user counts as well. */
+export function isAlive(pid) {
+  try {
+    process.kill(pid, 0);
+  } catch (error) {
+    if (error.code !== 'EPERM') return false;
+  }
+  return !isDefunct(pid);
+}
+
+/** Creates a file for its owner only, which must not exist yet; false when it was there already. */
 export function createExclusively(path, content) {
   mkdirSync(dirname(path), { recursive: true });
   try {
-    writeFileSync(path, content, { flag: 'wx' });
+    writeFileSync(path, content, { flag: 'wx', mode: 0o600 });
     return true;
   } catch (error) {
     if (error.code === 'EEXIST') return false;
