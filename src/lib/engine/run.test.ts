@@ -139,6 +139,12 @@ it('scans a chiral allene, whose stereocenter has two neighbors only', async () 
   expect(scan.warnings.map(({ code }) => code)).toContain('undefined-stereocenter');
 });
 
+it('takes a carbanion as it comes, flat or pyramidal', async () => {
+  const anion = { smiles: 'O=C1[C-](OC([N-]1)=O)c1ccccc1' };
+  const result = await ask(anion, { kind: 'conformers', effort: 'quick' });
+  expect(result).toMatchObject({ complete: true, warnings: [] });
+});
+
 it('refuses a strain without a geometry as something a person can mend', async () => {
   await expect(ask(ibuprofen, { kind: 'strain' })).rejects.toThrow(InputError);
 });

@@ -26,7 +26,9 @@ export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan 
   const scaled = (count: number): number => Math.ceil(scale * count);
   return {
     embeddings:
-      corners + inversions.length === 0 ? 3 : scaled(10 + 3 * (corners + inversions.length)),
+      corners + inversions.length === 0
+        ? 3
+        : scaled(Math.min(50, 10 + 3 * (corners + inversions.length))),
     combinations: scaled(1500),
     samples: scaled(30 * drives.length),
     patience: freedom === 0 ? 0 : scaled(20 * (1 + freedom)),

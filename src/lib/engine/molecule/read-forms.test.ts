@@ -7,12 +7,13 @@ import { describe, expect, it } from 'vitest';
 import { molarMass, molecularFormula } from './identity';
 import type { Molecule } from './molecule';
 import { readMolecule } from './read';
-import { readRecordedMolecules } from './recorded/rdkit-forms';
+import recordedForms from './recorded/rdkit-forms.json';
 import { stereoOf } from './stereo';
 import { toOpenchemlib } from './openchemlib';
 import { writeMolfile } from './write';
 
-const { molecules } = readRecordedMolecules();
+/** See record-rdkit-forms.py beside the file. */
+const { molecules } = recordedForms;
 
 /** Elements, charges and bonds as the molfile lists them. */
 function symbolsOf(molfile: string): string[] {

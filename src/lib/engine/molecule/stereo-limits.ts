@@ -13,7 +13,8 @@ const SMALLEST_RING_WITH_TRANS = 8;
  */
 export function canBeStereocenter(molecule: Molecule, atom: number): boolean {
   const around = molecule.neighbors[atom];
-  if (molecule.atomicNumbers[atom] === 7 && around.length === 3) return false;
+  // Amines invert, and carbanions invert or lie flat.
+  if ([6, 7].includes(molecule.atomicNumbers[atom]) && around.length === 3) return false;
   const ends = around
     .map((neighbor) => neighbor.atom)
     .filter((neighbor) => molecule.neighbors[neighbor].length === 1)
