@@ -9,6 +9,7 @@ import {
 } from '@sveltejs/kit';
 import { sequence } from '@sveltejs/kit/hooks';
 import { building } from '$app/environment';
+import { registerChemistryResources } from '$lib/server/chemistry-resources';
 import { closeDatabase } from '$lib/server/db';
 import { environment } from '$lib/server/environment';
 import { keepHouse } from '$lib/server/housekeeping';
@@ -27,6 +28,7 @@ const PROBES = ['/healthz', '/readyz'];
 
 export const init: ServerInit = () => {
   if (building) return;
+  registerChemistryResources();
   keepHouse();
   // Open sockets would keep the process from ending.
   process.once('sveltekit:shutdown', () => {

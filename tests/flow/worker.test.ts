@@ -95,7 +95,6 @@ describe('a worker', () => {
     { timeout: 120_000 },
     async () => {
       const { chemist } = await newTeam();
-      worker();
       // MMFF94 has no parameters for boron.
       const id = await submitText(chemist, 'CB(C)C trimethylborane', { conformers: {} });
       expect(await ended(chemist, id, 100)).toMatchObject({ failed: 1 });
@@ -131,13 +130,12 @@ describe('a worker that is killed in the middle of a task', () => {
     { timeout: 180_000 },
     async () => {
       const { chemist } = await newTeam();
-      const victim = worker();
       const id = await submitText(chemist, `${'CC(O)'.repeat(3)}C a chain`, {
         conformers: { effort: 'thorough' },
       });
       await until('the task to run', async () => (await taskOf(id)).state === 'running', 60);
-      await killWorker(victim);
-      worker();
+      await killWorker(worker);
+      worker = startWorker();
       expect(await ended(chemist, id, 170)).toMatchObject({ done: 1 });
       const task = await taskOf(id);
       expect(task.attempt).toBeGreaterThanOrEqual(2);

@@ -4,6 +4,8 @@ import type { Role } from '../domain/roles';
 import { db, type Executor } from './db';
 import { memberships, teams, users } from './db/schema';
 import { environment } from './environment';
+import { submitDemoBatches } from './demo-batches';
+import type { Member } from './member';
 import { hashPassword } from './passwords';
 
 export const DEMO_TEAM = 'Skerry Coatings';
@@ -46,9 +48,10 @@ export async function seedDemo(): Promise<DemoSignIn[]> {
   const password = environment.WINDLASS_DEMO_PASSWORD;
   if (!password) throw new Error('Seeding the demo needs WINDLASS_DEMO_PASSWORD.');
   const passwordHash = await hashPassword(password);
-  await db.transaction(async (tx) => {
+  const modeler = await db.transaction(async (tx) => {
     await tx.execute(sql`select pg_advisory_xact_lock(${DEMO_SEED_LOCK})`);
     const teamId = (await findTeam(tx)) ?? (await openTeam(tx));
+    let submitter: Member | null = null;
     for (const { name, email, role } of members) {
       const [user] = await tx
         .insert(users)
@@ -56,7 +59,10 @@ export async function seedDemo(): Promise<DemoSignIn[]> {
         .onConflictDoUpdate({ target: users.email, set: { passwordHash, confirmedAt: sql`now()` } })
         .returning({ id: users.id });
       await tx.insert(memberships).values({ teamId, userId: user!.id, role }).onConflictDoNothing();
+      if (role === 'modeler') submitter = { userId: user!.id, teamId, role };
     }
+    return submitter;
   });
+  if (modeler) await submitDemoBatches(modeler);
   return members.map(({ email, role }) => ({ email, role }));
 }
