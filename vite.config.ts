@@ -7,6 +7,8 @@ export default defineConfig({
   // Found on the first visit otherwise, which reloads the page in development.
   optimizeDeps: { include: ['ngl', 'openchemlib'] },
   ssr: { external: ['openchemlib'] },
+  // Fonts inlined as data would be blocked by the page's own content security policy.
+  build: { assetsInlineLimit: 0 },
   test: {
     projects: [
       {

@@ -41,7 +41,7 @@ export const answerSchema = z.looseObject({
         z.object({
           angle: z.number().describe('Target, degrees'),
           energy: kcal('Model energy without the restraint'),
-          relative: kcal('Energy above the lowest point'),
+          relative: kcal('Energy above the lowest of all points'),
           reached: z.number().describe('Angle of the geometry, degrees'),
           coordinates,
         }),
@@ -51,7 +51,7 @@ export const answerSchema = z.looseObject({
           kind: z.enum(['minimum', 'maximum']),
           angle: z.number().describe('Degrees'),
           energy: kcal('Model energy'),
-          relative: kcal('Energy above the lowest stationary point'),
+          relative: kcal('Energy above the lowest of all points'),
           label: z.string(),
           coordinates,
         }),

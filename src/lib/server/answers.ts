@@ -127,8 +127,9 @@ function toProfile(
   atomCount: number,
 ): StoredProfile {
   const geometries = unpack(curve.coordinates, atomCount);
-  const lowest = Math.min(...curve.energies);
   const stationary = curve.stationary as Omit<StoredStationaryPoint, 'coordinates'>[];
+  // One zero for all: a free minimum lies a little below the grid point beside it.
+  const lowest = Math.min(...curve.energies, ...stationary.map(({ energy }) => energy));
   return {
     torsion: profile.torsion,
     model: curve.model,
@@ -142,6 +143,7 @@ function toProfile(
     })),
     stationary: stationary.map((point, n) => ({
       ...point,
+      relative: point.energy - lowest,
       coordinates: geometries[profile.angles.length + n],
     })),
   };
