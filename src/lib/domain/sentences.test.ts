@@ -1,5 +1,13 @@
 import { describe, expect, it } from 'vitest';
-import { conjugationSentence, conformersSentence, duration, kcal, percent, scanSentence, strainSentence } from './sentences';
+import {
+  conjugationSentence,
+  conformersSentence,
+  duration,
+  kcal,
+  percent,
+  scanSentence,
+  strainSentence,
+} from './sentences';
 
 describe('numbers for people', () => {
   it.each([
@@ -54,7 +62,9 @@ describe('sentences', () => {
   it('names the bond that carries the strain', () => {
     expect(
       strainSentence({ strain: 4.21, worst: { bond: 'C7–N8', strain: 2.05 }, complete: true }),
-    ).toBe('The uploaded geometry is strained by 4.2 kcal/mol; C7–N8 carries most of it, 2.0 kcal/mol.');
+    ).toBe(
+      'The uploaded geometry is strained by 4.2 kcal/mol; C7–N8 carries most of it, 2.0 kcal/mol.',
+    );
   });
 
   it('marks a rigid profile', () => {

@@ -37,7 +37,9 @@ export function duration(seconds: number): string {
   if (seconds < 1e-9) return `${(seconds * 1e12).toPrecision(2)} ps`;
   const [size, name] = [...units].reverse().find(([unit]) => seconds >= unit)!;
   const value = seconds / size;
-  return value >= 10_000 ? `more than ${value.toExponential(0)} ${name}` : `${Number(value.toPrecision(2))} ${name}`;
+  return value >= 10_000
+    ? `more than ${value.toExponential(0)} ${name}`
+    : `${Number(value.toPrecision(2))} ${name}`;
 }
 
 export interface ConformersFacts {
@@ -50,7 +52,9 @@ export interface ConformersFacts {
 
 export function conformersSentence(facts: ConformersFacts): string {
   const { count, window, lowestPopulation, temperature, complete } = facts;
-  const search = complete ? '' : ' The search ended before its set stopped changing, so others may exist.';
+  const search = complete
+    ? ''
+    : ' The search ended before its set stopped changing, so others may exist.';
   if (count === 1) return `One conformer within ${window} kcal/mol.${search}`;
   return `${count} conformers within ${window} kcal/mol; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}.${search}`;
 }
@@ -68,7 +72,8 @@ export interface ConjugationFacts {
 }
 
 export function conjugationSentence(facts: ConjugationFacts): string {
-  const { bond, difference, sCisFraction, planarSCisCost, barrier, twist, inRing, temperature } = facts;
+  const { bond, difference, sCisFraction, planarSCisCost, barrier, twist, inRing, temperature } =
+    facts;
   const turn = barrier === null ? '' : `; ${kcal(barrier)} to turn`;
   if (inRing) {
     return twist === null
@@ -92,8 +97,13 @@ export interface StrainFacts {
 }
 
 export function strainSentence({ strain, worst, complete }: StrainFacts): string {
-  const most = worst && worst.strain >= 0.05 ? `; ${worst.bond} carries most of it, ${kcal(worst.strain)}` : '';
-  const search = complete ? '' : ' The search for the lowest conformer was not complete, so the strain may be larger.';
+  const most =
+    worst && worst.strain >= 0.05
+      ? `; ${worst.bond} carries most of it, ${kcal(worst.strain)}`
+      : '';
+  const search = complete
+    ? ''
+    : ' The search for the lowest conformer was not complete, so the strain may be larger.';
   return `The uploaded geometry is strained by ${kcal(strain)}${most}.${search}`;
 }
 
@@ -109,9 +119,17 @@ export interface ScanFacts {
 
 export function scanSentence(facts: ScanFacts): string {
   const { torsion, preferred, barrier, halfLife, temperature, relaxed, complete } = facts;
-  const form = preferred ? `${preferred.label} at ${Math.round(preferred.angle)}° is lowest` : 'no minimum was found';
+  const form = preferred
+    ? `${preferred.label} at ${Math.round(preferred.angle)}° is lowest`
+    : 'no minimum was found';
   const highest = barrier === null ? '' : `; the highest barrier is ${kcal(barrier)}`;
-  const life = halfLife === null ? '' : ` (half-life ${duration(halfLife)} at ${celsius(temperature)}, with ΔE‡ for ΔG‡)`;
-  const caveat = [relaxed ? '' : ' Rigid profile: nothing else relaxed.', complete ? '' : ' The scan ran out of time.'];
+  const life =
+    halfLife === null
+      ? ''
+      : ` (half-life ${duration(halfLife)} at ${celsius(temperature)}, with ΔE‡ for ΔG‡)`;
+  const caveat = [
+    relaxed ? '' : ' Rigid profile: nothing else relaxed.',
+    complete ? '' : ' The scan ran out of time.',
+  ];
   return `${torsion}: ${form}${highest}${life}.${caveat.join('')}`;
 }

@@ -102,7 +102,10 @@ function describeConjugation(molecule: Molecule, answer: Answer) {
 }
 
 function describeStrain(molecule: Molecule, answer: Answer) {
-  const details = answer.details as Omit<Result<'strain'>, 'molfile' | 'smiles' | 'warnings' | 'provenance'>;
+  const details = answer.details as Omit<
+    Result<'strain'>,
+    'molfile' | 'smiles' | 'warnings' | 'provenance'
+  >;
   return {
     ...provenance(answer),
     strain: details.strain,
