@@ -69,7 +69,9 @@ export async function searchConformers(
   await turnSystematically(search, control.part(0.15, 0.5));
   const ended = await kickUntilStable(search, control.part(0.5, 0.9));
   const last = control.part(0.9, 1);
-  const minima = await finishMinima(forceField, molecule, graph, pool, options, last);
+  // Proving a minimum takes about three times as long as a start: time that is over is not overdrawn by much.
+  const most = ended === 'budget' ? Math.ceil(search.trial.counts.starts / 20) : Infinity;
+  const minima = await finishMinima(forceField, molecule, graph, pool, options, most, last);
   if (minima.length === 0) throw new InputError('no-conformer', NO_MINIMUM);
   const isTruncated = minima.length > options.limit;
   const reason = ended === 'stable' && isTruncated ? 'limit' : ended;
