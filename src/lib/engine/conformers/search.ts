@@ -92,9 +92,15 @@ async function tryGeometry(search: Search, x: Float64Array, control: Control): P
   return reception === 'new';
 }
 
-/** Minimizes embeddings, from which ring shapes and pyramids come; one minimum must be there whatever the budget. */
+/**
+ * Minimizes the geometry given, where there is one, so that nothing found is above it, and embeddings, from which ring
+ * shapes and pyramids come. One minimum must be there whatever the budget.
+ */
 async function collectSeeds(search: Search, control: Control): Promise<void> {
   const { plan, embedder, random, molecule, pool } = search;
+  if (molecule.coordinates) {
+    await tryGeometry(search, Float64Array.from(molecule.coordinates), control);
+  }
   for (let n = 0; n < plan.embeddings; n++) {
     if (control.expired() && pool.found.length > 0) return;
     control.report(n / plan.embeddings, 'Building first shapes');
