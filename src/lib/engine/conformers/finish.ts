@@ -20,7 +20,7 @@ const MOST_EVALUATIONS = 20_000;
 
 /**
  * Minimizes the found geometries, lowest first, until no negative curvature is left and as many as wanted, and one
- * more, are there.
+ * more, are there; `most` at most.
  */
 export async function finishMinima(
   forceField: ForceField,
@@ -28,6 +28,7 @@ export async function finishMinima(
   graph: VisibleGraph,
   pool: Pool,
   options: ConformerSearchOptions,
+  most: number,
   control: Control,
 ): Promise<readonly Found[]> {
   const minima = createPool(graph, options.limit, options.window);
@@ -36,7 +37,7 @@ export async function finishMinima(
     maxEvaluations: MOST_EVALUATIONS,
     curvature: forceField.curvature,
   };
-  for (const { coordinates, energy } of pool.found) {
+  for (const { coordinates, energy } of pool.found.slice(0, most)) {
     if (energy > minima.ceiling() + LAST_FALL) break;
     control.report(minima.found.length / (options.limit + 1), 'Finishing minima');
     const x = coordinates.slice();

@@ -1,13 +1,16 @@
 import { describe, expect, it } from 'vitest';
 import { createControl, unattended } from '../control';
+import type { Control } from '../control';
 import { createForceField } from '../forcefield/create';
 import { torsion } from '../geometry';
-import { rootMeanSquare } from '../minimizer/minimize';
+import { minimize, rootMeanSquare } from '../minimizer/minimize';
 import { softestMode } from '../minimizer/stationary';
+import { createMolecule } from '../molecule/build';
 import { readMolecule } from '../molecule/read';
 import { hasRightStereo } from '../molecule/stereo';
 import type { ConformerSearchOptions, ConformerSearchResult } from './conformers';
 import { defaultConformerSearchOptions } from './conformers';
+import { initialGeometry } from './initial-geometry';
 import { searchConformers } from './search';
 
 function search(
@@ -151,6 +154,21 @@ describe('what a search promises', () => {
     const first = await search('OCC(O)C', { seed: 7 });
     await search('CCCO', { seed: 3 });
     expect(await search('OCC(O)C', { seed: 7 })).toEqual(first);
+  });
+
+  it('finds nothing above the minimum next to a geometry given', async () => {
+    const molecule = readMolecule({ smiles: 'OCC(O)C(O)CO' });
+    const coordinates = await initialGeometry(molecule, 99);
+    const forceField = createForceField(createMolecule({ ...molecule, coordinates }));
+    const { energy, curvature } = forceField;
+    const x = coordinates.slice();
+    const settings = { gradientRms: 0.001, maxEvaluations: 5000, curvature };
+    const near = await minimize(energy, x, settings, unattended);
+    const options = { ...defaultConformerSearchOptions, limit: 1 };
+    // A budget that is over at once leaves time for the geometry given only.
+    const control: Control = { ...unattended, part: () => control, expired: () => true };
+    const { conformers } = await searchConformers(forceField, options, control);
+    expect(conformers[0].energy).toBeCloseTo(near.energy, 4);
   });
 
   it('settles what the input leaves open the same way for every seed', async () => {

@@ -69,7 +69,9 @@ export async function searchConformers(
   await turnSystematically(search, control.part(0.15, 0.5));
   const ended = await kickUntilStable(search, control.part(0.5, 0.9));
   const last = control.part(0.9, 1);
-  const minima = await finishMinima(forceField, molecule, graph, pool, options, last);
+  // Proving a minimum takes about three times as long as a start: time that is over is not overdrawn by much.
+  const most = ended === 'budget' ? Math.ceil(search.trial.counts.starts / 20) : Infinity;
+  const minima = await finishMinima(forceField, molecule, graph, pool, options, most, last);
   if (minima.length === 0) throw new InputError('no-conformer', NO_MINIMUM);
   const isTruncated = minima.length > options.limit;
   const reason = ended === 'stable' && isTruncated ? 'limit' : ended;
@@ -90,9 +92,15 @@ async function tryGeometry(search: Search, x: Float64Array, control: Control): P
   return reception === 'new';
 }
 
-/** Minimizes embeddings, from which ring shapes and pyramids come; one minimum must be there whatever the budget. */
+/**
+ * Minimizes the geometry given, where there is one, so that nothing found is above it, and embeddings, from which ring
+ * shapes and pyramids come. One minimum must be there whatever the budget.
+ */
 async function collectSeeds(search: Search, control: Control): Promise<void> {
   const { plan, embedder, random, molecule, pool } = search;
+  if (molecule.coordinates) {
+    await tryGeometry(search, Float64Array.from(molecule.coordinates), control);
+  }
   for (let n = 0; n < plan.embeddings; n++) {
     if (control.expired() && pool.found.length > 0) return;
     control.report(n / plan.embeddings, 'Building first shapes');
