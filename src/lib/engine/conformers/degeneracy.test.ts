@@ -25,6 +25,7 @@ describe('degeneracies', () => {
     expect(await degeneracies('CN')).toEqual([1]);
     expect(await degeneracies('CN(C)C')).toEqual([1]);
     expect(await degeneracies('FC(F)(F)CO')).toEqual([2, 1]);
+    expect(await degeneracies('NC(=[NH2+])NCC')).toEqual([1, 2]);
   });
 
   it('are one throughout for a chiral molecule without alike groups', async () => {

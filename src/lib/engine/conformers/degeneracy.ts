@@ -47,7 +47,10 @@ export function degeneracies(
     const ownTurns = own.filter((key) => tops.has(key));
     return { copies: feasible.length / own.length, turns: tops.size / ownTurns.length };
   });
-  const divisor = counts.map(({ turns }) => turns).reduce(greatestCommonDivisor);
+  // A conformer may be its own image under half of the turns; the divisor then has to go into its copies, too.
+  const divisor = counts
+    .flatMap(({ turns, copies }) => [turns, copies])
+    .reduce(greatestCommonDivisor);
   return counts.map(({ copies }) => copies / divisor);
 }
 

@@ -3,7 +3,6 @@
  * Numerical Optimization, 2nd ed., algorithms 3.5 and 3.6), and with the approximate Wolfe conditions where the energy
  * change drowns in rounding (Hager and Zhang, SIAM J. Optim. 2005, 16, 170).
  */
-import type { EnergyTerm } from '../energy-term';
 import { dot } from './history';
 
 /** A point with its energy and gradient. */
@@ -20,18 +19,27 @@ const TRIALS = 20;
 /** Relative rounding error to be expected of an energy. */
 const ENERGY_NOISE = 1e-13;
 
+/** What a line search found. */
+export interface LineSearchResult {
+  evaluations: number;
+  /** False when no lower point was found. */
+  lower: boolean;
+}
+
 /**
- * Moves from `start` along `direction` and leaves the point reached in `end`; tries `step` first and never goes
- * beyond `largestStep`. Returns the evaluations spent, negative when no better point was found.
+ * Searches from `start` along `direction`; `evaluate` computes the point at a step into `end`, where the point reached is
+ * left. Tries `step` first and never goes beyond `largestStep`. Writes what it found to `result`.
  */
 export function searchLine(
-  energy: EnergyTerm,
+  evaluate: (step: number) => void,
   start: Point,
   direction: Float64Array,
   step: number,
   largestStep: number,
   end: Point,
-): number {
+  result: LineSearchResult,
+): void {
+  result.lower = true;
   const startSlope = dot(start.gradient, direction);
   const noise = ENERGY_NOISE * (1 + Math.abs(start.energy));
   let low = 0;
@@ -44,14 +52,15 @@ export function searchLine(
   let trial = Math.min(step, largestStep);
 
   for (let evaluations = 1; evaluations <= TRIALS; evaluations++) {
-    evaluate(energy, start, direction, trial, end);
+    evaluate(trial);
+    result.evaluations = evaluations;
     const slope = dot(end.gradient, direction);
     const decreased = end.energy <= start.energy + SUFFICIENT_DECREASE * trial * startSlope;
     const drowned =
       end.energy <= start.energy + noise && slope <= (2 * SUFFICIENT_DECREASE - 1) * startSlope;
     const flat = Math.abs(slope) <= -CURVATURE * startSlope;
-    if ((decreased || drowned) && flat) return evaluations;
-    if (decreased && slope < 0 && trial >= largestStep) return evaluations;
+    if ((decreased || drowned) && flat) return;
+    if (decreased && slope < 0 && trial >= largestStep) return;
 
     // Keep the interval [low, high] around a point that satisfies the conditions; low is its better end.
     if (!(decreased || drowned) || !(end.energy < lowEnergy + noise)) {
@@ -76,24 +85,10 @@ export function searchLine(
     if (bracketed && Math.abs(high - low) <= 1e-12 * Math.max(low, high)) break;
   }
   // The conditions were not met; a lower point is still worth having.
-  if (lowEnergy < start.energy) {
-    evaluate(energy, start, direction, low, end);
-    return TRIALS + 1;
-  }
-  return -TRIALS;
-}
-
-function evaluate(
-  energy: EnergyTerm,
-  start: Point,
-  direction: Float64Array,
-  step: number,
-  end: Point,
-): void {
-  const { x, gradient } = end;
-  for (let a = 0; a < x.length; a++) x[a] = start.x[a] + step * direction[a];
-  gradient.fill(0);
-  end.energy = energy(x, gradient);
+  result.lower = lowEnergy < start.energy;
+  if (!result.lower) return;
+  evaluate(low);
+  result.evaluations++;
 }
 
 /** Minimum of the cubic through two points with slopes, kept well inside the interval. */

@@ -2,8 +2,9 @@
 import type { Control } from '../control';
 import type { EnergyTerm } from '../energy-term';
 import { createHistory, dot } from './history';
+import { holdTorsions } from './held-torsions';
 import { searchLine } from './line-search';
-import type { Point } from './line-search';
+import type { LineSearchResult, Point } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
 import { createPreconditioner } from './preconditioner';
 import { separateCoincident } from './separate';
@@ -14,6 +15,11 @@ const MEMORY = 7;
 const REFRESH_INTERVAL = 6;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
 const LONGEST_STEP = 0.2;
+
+/** Approaches to the targets of held torsions from a start that is far from them. */
+const MOST_TURNS = 30;
+/** Farthest a held torsion may be from its target in a converged result, degrees. */
+const HELD_TOLERANCE = 1e-3;
 
 /**
  * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
@@ -28,33 +34,57 @@ export async function minimize(
 ): Promise<MinimizeResult> {
   const size = x.length;
   separateCoincident(x);
-  const { gradientRms, maxEvaluations, curvature } = options;
+  const { gradientRms, maxEvaluations, curvature, torsions } = options;
   const history = createHistory(size, MEMORY);
   const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
+  const held = torsions && torsions.length > 0 ? holdTorsions(torsions, size) : null;
   const direction = new Float64Array(size);
+  const found: LineSearchResult = { evaluations: 0, lower: false };
   let current: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
   let next: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
-  current.energy = energy(current.x, current.gradient);
-  let evaluations = 1;
-  let sinceRefresh = REFRESH_INTERVAL;
-  let restarted = false;
   const applyInitial = (vector: Float64Array): void => preconditioner?.solve(vector);
+  const compute = (point: Point): void => {
+    point.gradient.fill(0);
+    point.energy = energy(point.x, point.gradient);
+    held?.project(point.x, point.gradient);
+  };
+  const reachedBy = ({ x: at, gradient }: Point): number =>
+    held ? held.tangentRms(at, gradient) : rootMeanSquare(gradient);
+  const stepTo = (step: number): void => {
+    for (let a = 0; a < size; a++) next.x[a] = current.x[a] + step * direction[a];
+    if (held === null || held.restore(next.x)) compute(next);
+    else next.energy = Infinity;
+  };
 
-  while (rootMeanSquare(current.gradient) > gradientRms && evaluations < maxEvaluations) {
+  preconditioner?.refresh(current.x);
+  for (let turns = 0; held && turns < MOST_TURNS; turns++) {
+    held.linearize(current.x, applyInitial);
+    if (held.restore(current.x)) break;
+    preconditioner?.refresh(current.x);
+  }
+  compute(current);
+  let evaluations = 1;
+  let sinceRefresh = 0;
+  let restarted = false;
+  while (reachedBy(current) > gradientRms && evaluations < maxEvaluations) {
     if (control.due()) await control.pause();
     if (sinceRefresh >= REFRESH_INTERVAL) {
       preconditioner?.refresh(current.x);
       sinceRefresh = 0;
     }
     sinceRefresh++;
+    held?.linearize(current.x, applyInitial);
+    held?.project(current.x, current.gradient);
     direction.set(current.gradient);
     history.apply(direction, applyInitial);
+    held?.flatten(direction);
     for (let a = 0; a < size; a++) direction[a] = -direction[a];
-    const largestStep = LONGEST_STEP / longestMove(direction);
-    const downhill = dot(direction, current.gradient) < 0;
-    const spent = downhill ? searchLine(energy, current, direction, 1, largestStep, next) : 0;
-    evaluations += Math.abs(spent);
-    if (spent <= 0) {
+    if (dot(direction, current.gradient) < 0) {
+      const largestStep = LONGEST_STEP / longestMove(direction);
+      searchLine(stepTo, current, direction, 1, largestStep, next, found);
+      evaluations += found.evaluations;
+    } else found.lower = false;
+    if (!found.lower) {
       // The memory no longer fits the place: try once more from the bare curvature before giving up.
       if (restarted) break;
       restarted = true;
@@ -67,10 +97,11 @@ export async function minimize(
     [current, next] = [next, current];
   }
   x.set(current.x);
-  const reached = rootMeanSquare(current.gradient);
+  const reached = reachedBy(current);
+  const isHeld = held === null || held.deviation(x) <= HELD_TOLERANCE;
   return {
     energy: current.energy,
-    converged: reached <= gradientRms,
+    converged: reached <= gradientRms && isHeld,
     gradientRms: reached,
     evaluations,
   };

@@ -1,5 +1,6 @@
 /** What goes into a minimization and what comes out. */
 import type { CurvatureTerm } from '../energy-term';
+import type { HeldTorsion } from './held-torsions';
 
 export interface MinimizeOptions {
   /** Converged when the root mean square of the gradient's components is at most this, kcal/mol/Å. */
@@ -8,6 +9,8 @@ export interface MinimizeOptions {
   readonly maxEvaluations: number;
   /** A curvature that steers the steps; without one the steps start from the identity. */
   readonly curvature?: CurvatureTerm;
+  /** Torsions held exactly at their targets; a start near them is turned there most gently. */
+  readonly torsions?: readonly HeldTorsion[];
 }
 
 /** Tolerance for minima that are reported, kcal/mol/Å. */
@@ -20,6 +23,7 @@ export interface MinimizeResult {
   readonly energy: number;
   /** Not converging is a value, not an exception. */
   readonly converged: boolean;
+  /** Root mean square of the gradient's components, kcal/mol/Å; without what turns torsions that are held. */
   readonly gradientRms: number;
   readonly evaluations: number;
 }
