@@ -23,6 +23,8 @@ export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan 
   const { drives, ringMoves, inversions } = moves;
   const corners = ringMoves.filter(({ arc }) => arc.length === 1).length;
   const freedom = drives.length + corners + inversions.length;
+  // The corners of large rings move together: their shapes are many and found slowly.
+  const looseCorners = ringMoves.filter(({ arc, rest }) => arc.length === 1 && rest.length >= 5);
   const scaled = (count: number): number => Math.ceil(scale * count);
   return {
     embeddings:
@@ -31,7 +33,7 @@ export function planSearch(moves: ShapeMoves, effort: SearchEffort): SearchPlan 
         : scaled(Math.min(50, 10 + 3 * (corners + inversions.length))),
     combinations: scaled(1500),
     samples: scaled(30 * drives.length),
-    patience: freedom === 0 ? 0 : scaled(20 * (1 + freedom)),
+    patience: freedom === 0 ? 0 : scaled(20 * (1 + freedom + looseCorners.length)),
     starts: scaled(10_000),
   };
 }

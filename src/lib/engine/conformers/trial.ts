@@ -22,11 +22,11 @@ export interface Trial {
 
 /**
  * A minimization pauses at these RMS gradients, kcal/mol/Å, and goes on only from energies that can still come into the
- * window: from there it loses less than `fall`, kcal/mol, nine times in ten.
+ * window: from there it hardly ever loses more than `fall`, kcal/mol.
  */
 const STAGES = [
-  { gradientRms: 1, fall: 4 },
-  { gradientRms: 0.3, fall: 1.5 },
+  { gradientRms: 1, fall: 6 },
+  { gradientRms: 0.3, fall: 2 },
 ];
 const MOST_EVALUATIONS = 2000;
 
