@@ -89,8 +89,8 @@ test('a chemist chooses a bond on the drawing of an uploaded file', async ({ pag
   await expectAccessible(page);
   await page.getByRole('button', { name: 'Keep' }).click();
   await expect(page.getByRole('button', { name: 'Bonds: 1 of methyl acrylate' })).toBeVisible();
-  await page.getByLabel('Conformers').uncheck();
-  await page.getByLabel(/^Conjugation/).uncheck();
+  await page.getByRole('checkbox', { name: 'Conformers' }).uncheck();
+  await page.getByRole('checkbox', { name: 'Conjugation' }).uncheck();
   await page.locator('select[name=bonds]').selectOption('chosen');
   await expect(page.getByText(/^1 task, /)).toBeVisible();
   await compute(page);
