@@ -27,6 +27,7 @@ describe('numbers for people', () => {
   it.each([
     [1e-13, 'less than a picosecond'],
     [3.2e-11, '32 ps'],
+    [7.8e-10, '780 ps'],
     [5e-9, '5 ns'],
     [0.02, '20 ms'],
     [1000, '17 min'],

@@ -34,7 +34,7 @@ export function duration(seconds: number): string {
     [31_557_600, 'years'],
   ] as const;
   if (seconds < 1e-12) return 'less than a picosecond';
-  if (seconds < 1e-9) return `${(seconds * 1e12).toPrecision(2)} ps`;
+  if (seconds < 1e-9) return `${Number((seconds * 1e12).toPrecision(2))} ps`;
   const [size, name] = [...units].reverse().find(([unit]) => seconds >= unit)!;
   const value = seconds / size;
   return value >= 10_000
