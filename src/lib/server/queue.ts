@@ -109,9 +109,3 @@ export async function workOnTasks(
     },
   );
 }
-
-/** Stops taking new jobs and waits until the running ones are done. */
-export async function drainTasks(): Promise<void> {
-  const boss = await openQueue();
-  await boss.offWork(TASKS, { wait: true });
-}
