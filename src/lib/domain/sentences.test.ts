@@ -3,18 +3,12 @@ import {
   conjugationSentence,
   conformersSentence,
   duration,
-  kcal,
   percent,
   scanSentence,
   strainSentence,
 } from './sentences';
 
 describe('numbers for people', () => {
-  it.each([
-    [-0.01, '0.0 kcal/mol'],
-    [2.466, '2.5 kcal/mol'],
-  ])('%d is %s', (value, text) => expect(kcal(value)).toBe(text));
-
   it.each([
     [0, '0.0 %'],
     [0.0004, 'less than 0.1 %'],
@@ -39,16 +33,19 @@ describe('numbers for people', () => {
 describe('sentences', () => {
   it('answers whether a diene reaches s-cis, and at what price', () => {
     expect(
-      conjugationSentence({
-        bond: 'C2–C3',
-        difference: 2.47,
-        sCisFraction: 0.0144,
-        planarSCisCost: 3.43,
-        barrier: 6.18,
-        twist: 0,
-        inRing: false,
-        temperature: 298.15,
-      }),
+      conjugationSentence(
+        {
+          bond: 'C2–C3',
+          difference: 2.47,
+          sCisFraction: 0.0144,
+          planarSCisCost: 3.43,
+          barrier: 6.18,
+          twist: 0,
+          inRing: false,
+          temperature: 298.15,
+        },
+        'kcal/mol',
+      ),
     ).toBe(
       'C2–C3: s-trans is preferred by 2.5 kcal/mol; 1.4 % s-cis at 25 °C; 6.2 kcal/mol to turn; planar s-cis costs 3.4 kcal/mol.',
     );
@@ -56,13 +53,18 @@ describe('sentences', () => {
 
   it('says so when a search was not complete', () => {
     const facts = { count: 3, window: 10, lowestPopulation: 0.5, temperature: 298.15 };
-    expect(conformersSentence({ ...facts, complete: false })).toContain('others may exist');
-    expect(conformersSentence({ ...facts, complete: true })).not.toContain('others');
+    expect(conformersSentence({ ...facts, complete: false }, 'kcal/mol')).toContain(
+      'others may exist',
+    );
+    expect(conformersSentence({ ...facts, complete: true }, 'kcal/mol')).not.toContain('others');
   });
 
   it('names the bond that carries the strain', () => {
     expect(
-      strainSentence({ strain: 4.21, worst: { bond: 'C7–N8', strain: 2.05 }, complete: true }),
+      strainSentence(
+        { strain: 4.21, worst: { bond: 'C7–N8', strain: 2.05 }, complete: true },
+        'kcal/mol',
+      ),
     ).toBe(
       'The uploaded geometry is strained by 4.2 kcal/mol; C7–N8 carries most of it, 2.0 kcal/mol.',
     );
@@ -77,7 +79,9 @@ describe('sentences', () => {
       temperature: 298.15,
       complete: true,
     };
-    expect(scanSentence({ ...facts, relaxed: false })).toContain('Rigid profile');
-    expect(scanSentence({ ...facts, relaxed: true })).toContain('half-life 1 ns at 25 °C');
+    expect(scanSentence({ ...facts, relaxed: false }, 'kcal/mol')).toContain('Rigid profile');
+    expect(scanSentence({ ...facts, relaxed: true }, 'kcal/mol')).toContain(
+      'half-life 1 ns at 25 °C',
+    );
   });
 });

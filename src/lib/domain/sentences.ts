@@ -1,12 +1,10 @@
-/** Answers in a sentence, made from the numbers of a result. Energies in kcal/mol, temperatures in K. */
+/**
+ * Answers in a sentence, made from the numbers of a result. Energies in
+ * kcal/mol, told in the unit asked for; temperatures in K.
+ */
+import { energyText, type EnergyUnit } from './energy-units';
 
 const CELSIUS_ZERO = 273.15;
-
-/** An energy as people read it: one digit after the point, never minus nothing. */
-export function kcal(value: number): string {
-  const rounded = value.toFixed(1);
-  return `${rounded === '-0.0' ? '0.0' : rounded} kcal/mol`;
-}
 
 /** A share in percent; small ones keep a digit that means something. */
 export function percent(share: number): string {
@@ -50,13 +48,13 @@ export interface ConformersFacts {
   readonly complete: boolean;
 }
 
-export function conformersSentence(facts: ConformersFacts): string {
+export function conformersSentence(facts: ConformersFacts, unit: EnergyUnit): string {
   const { count, window, lowestPopulation, temperature, complete } = facts;
   const search = complete
     ? ''
     : ' The search ended before its set stopped changing, so others may exist.';
-  if (count === 1) return `One conformer within ${window} kcal/mol.${search}`;
-  return `${count} conformers within ${window} kcal/mol; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}.${search}`;
+  if (count === 1) return `One conformer within ${energyText(window, unit)}.${search}`;
+  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}.${search}`;
 }
 
 export interface ConjugationFacts {
@@ -71,10 +69,10 @@ export interface ConjugationFacts {
   readonly temperature: number;
 }
 
-export function conjugationSentence(facts: ConjugationFacts): string {
+export function conjugationSentence(facts: ConjugationFacts, unit: EnergyUnit): string {
   const { bond, difference, sCisFraction, planarSCisCost, barrier, twist, inRing, temperature } =
     facts;
-  const turn = barrier === null ? '' : `; ${kcal(barrier)} to turn`;
+  const turn = barrier === null ? '' : `; ${energyText(barrier, unit)} to turn`;
   if (inRing) {
     return twist === null
       ? `${bond} is part of a ring.`
@@ -86,8 +84,9 @@ export function conjugationSentence(facts: ConjugationFacts): string {
       : `${bond} is twisted by ${Math.round(twist)}° from planar in its lowest form${turn}.`;
   }
   const preferred = difference >= 0 ? 's-trans' : 's-cis';
-  const planar = planarSCisCost === null ? '' : `; planar s-cis costs ${kcal(planarSCisCost)}`;
-  return `${bond}: ${preferred} is preferred by ${kcal(Math.abs(difference))}; ${percent(sCisFraction)} s-cis at ${celsius(temperature)}${turn}${planar}.`;
+  const planar =
+    planarSCisCost === null ? '' : `; planar s-cis costs ${energyText(planarSCisCost, unit)}`;
+  return `${bond}: ${preferred} is preferred by ${energyText(Math.abs(difference), unit)}; ${percent(sCisFraction)} s-cis at ${celsius(temperature)}${turn}${planar}.`;
 }
 
 export interface StrainFacts {
@@ -96,15 +95,15 @@ export interface StrainFacts {
   readonly complete: boolean;
 }
 
-export function strainSentence({ strain, worst, complete }: StrainFacts): string {
+export function strainSentence({ strain, worst, complete }: StrainFacts, unit: EnergyUnit): string {
   const most =
     worst && worst.strain >= 0.05
-      ? `; ${worst.bond} carries most of it, ${kcal(worst.strain)}`
+      ? `; ${worst.bond} carries most of it, ${energyText(worst.strain, unit)}`
       : '';
   const search = complete
     ? ''
     : ' The search for the lowest conformer was not complete, so the strain may be larger.';
-  return `The uploaded geometry is strained by ${kcal(strain)}${most}.${search}`;
+  return `The uploaded geometry is strained by ${energyText(strain, unit)}${most}.${search}`;
 }
 
 export interface ScanFacts {
@@ -117,12 +116,12 @@ export interface ScanFacts {
   readonly complete: boolean;
 }
 
-export function scanSentence(facts: ScanFacts): string {
+export function scanSentence(facts: ScanFacts, unit: EnergyUnit): string {
   const { torsion, preferred, barrier, halfLife, temperature, relaxed, complete } = facts;
   const form = preferred
     ? `${preferred.label} at ${Math.round(preferred.angle)}° is lowest`
     : 'no minimum was found';
-  const highest = barrier === null ? '' : `; the highest barrier is ${kcal(barrier)}`;
+  const highest = barrier === null ? '' : `; the highest barrier is ${energyText(barrier, unit)}`;
   const life =
     halfLife === null
       ? ''
