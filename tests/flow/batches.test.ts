@@ -184,7 +184,7 @@ describe('another team', () => {
     await expect(batches.get(stranger, id)).rejects.toMatchObject({ status: 404 });
     await expect(batches.listEntries(stranger, id, query)).rejects.toMatchObject({ status: 404 });
     await expect(queue.cancel(stranger, { batchId: id })).rejects.toMatchObject({ status: 404 });
-    await expect(queue.rerun(stranger, { entryId: entry.id })).rejects.toMatchObject({
+    await expect(queue.rerun(stranger, { batchId: id, rows: [entry.id] })).rejects.toMatchObject({
       status: 404,
     });
     expect(await db.$count(tasks, eq(tasks.batchId, id))).toBe(1);

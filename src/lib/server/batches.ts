@@ -20,9 +20,22 @@ const stateColumns = {
   cancelled: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'cancelled'))::int`,
 };
 
+/** Whose batches are meant: the whole team's, the member's own, or those of everybody else in the team. */
+export type Whose = 'team' | 'own' | 'others';
+
+/** A condition on submitted batches of the member's team. */
+export function submittedBy(member: Member, whose: Whose) {
+  return and(
+    eq(batches.teamId, member.teamId),
+    isNotNull(batches.submittedAt),
+    whose === 'own' ? eq(batches.createdBy, member.userId) : undefined,
+    whose === 'others' ? sql`${batches.createdBy} is distinct from ${member.userId}` : undefined,
+  );
+}
+
 /** One page of a team's submitted batches, the newest first, with the states of their tasks. */
-export async function list(member: Member, page: number, pageSize: number) {
-  const own = and(eq(batches.teamId, member.teamId), isNotNull(batches.submittedAt));
+export async function list(member: Member, page: number, pageSize: number, whose: Whose = 'team') {
+  const own = submittedBy(member, whose);
   const [{ total }] = await db.select({ total: count() }).from(batches).where(own);
   const rows = await db
     .select({
@@ -80,8 +93,8 @@ export const entrySorts = ['position', 'name', 'formula', 'failed'] as const;
 export type EntrySort = (typeof entrySorts)[number];
 
 export interface EntryQuery {
-  /** Only rows with a task in this state; 'error' for rows that could not be read. */
-  readonly state: TaskState | 'error' | null;
+  /** Only rows with a task in this state; 'error' and 'warning' for rows that were read with one. */
+  readonly state: TaskState | 'error' | 'warning' | null;
   readonly sort: EntrySort;
   readonly descending: boolean;
   readonly page: number;
@@ -122,7 +135,7 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
 
 function stateCondition(state: EntryQuery['state']) {
   if (state === null) return undefined;
-  if (state === 'error') return eq(entries.verdict, 'error');
+  if (state === 'error' || state === 'warning') return eq(entries.verdict, state);
   return sql`exists (select 1 from ${tasks} where ${tasks.entryId} = ${entries.id} and ${tasks.state} = ${state})`;
 }
 

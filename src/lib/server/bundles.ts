@@ -2,7 +2,7 @@
 import { createHash } from 'node:crypto';
 import { once } from 'node:events';
 import { ZipArchive } from 'archiver';
-import { and, asc, eq, gt, isNotNull } from 'drizzle-orm';
+import { and, asc, eq, gt, inArray, isNotNull } from 'drizzle-orm';
 import { bundleSchemaText } from '../domain/bundle-schema';
 import { createNamer } from '../domain/file-names';
 import { methodsText } from '../domain/methods';
@@ -50,7 +50,7 @@ export async function bundleBatch(
   require(member, 'download bundles');
   const batch = await batches.get(member, batchId);
   await recordEvent(db, member, 'download bundle', batchId);
-  return open(member, batch.name, batchRows(batch.id, new Set(chosen)), batch.id);
+  return open(member, batch.name, batchRows(batch.id, chosen), batch.id);
 }
 
 async function* rowsOf(rows: readonly BundledRow[]): AsyncGenerator<BundledRow> {
@@ -58,15 +58,11 @@ async function* rowsOf(rows: readonly BundledRow[]): AsyncGenerator<BundledRow> 
 }
 
 /** The rows of a batch in their order, a hundred at a time, so that memory does not grow with the batch. */
-async function* batchRows(
-  batchId: string,
-  chosen: ReadonlySet<string>,
-): AsyncGenerator<BundledRow> {
+async function* batchRows(batchId: string, chosen: readonly string[]): AsyncGenerator<BundledRow> {
   let after = 0;
   for (;;) {
     const rows = await db
       .select({
-        id: entries.id,
         position: entries.position,
         name: entries.name,
         molecule: molecules,
@@ -78,13 +74,14 @@ async function* batchRows(
           eq(entries.batchId, batchId),
           isNotNull(entries.moleculeId),
           gt(entries.position, after),
+          chosen.length > 0 ? inArray(entries.id, [...chosen]) : undefined,
         ),
       )
       .orderBy(asc(entries.position))
       .limit(100);
     if (rows.length === 0) return;
     after = rows[rows.length - 1].position;
-    yield* rows.filter(({ id }) => chosen.size === 0 || chosen.has(id));
+    yield* rows;
   }
 }
 

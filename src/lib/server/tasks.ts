@@ -156,8 +156,10 @@ export async function failAbandoned(): Promise<number> {
 
 /** The chosen tasks, if they are the member's own team's; locked until the transaction ends. */
 async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
-  const chosen =
-    'batchId' in where ? eq(tasks.batchId, where.batchId) : eq(tasks.entryId, where.entryId);
+  const chosen = and(
+    eq(tasks.batchId, where.batchId),
+    where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
+  );
   return executor
     .select({ id: tasks.id, state: tasks.state, batchId: tasks.batchId })
     .from(tasks)
@@ -167,8 +169,11 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     .for('update', { of: tasks });
 }
 
-/** Which tasks are meant: all of one row, or all of a batch. */
-export type TaskChoice = { readonly entryId: string } | { readonly batchId: string };
+/** Which tasks are meant: all of a batch, or those of some of its rows. */
+export interface TaskChoice {
+  readonly batchId: string;
+  readonly rows?: readonly string[];
+}
 
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
 export async function cancel(member: Member, choice: TaskChoice): Promise<number> {

@@ -11,7 +11,7 @@ const PAGE_SIZE = 50;
 /** What the address says of the list; anything odd falls back to the whole list in its own order. */
 const querySchema = z.object({
   state: z
-    .enum(['queued', 'running', 'done', 'failed', 'cancelled', 'error'])
+    .enum(['queued', 'running', 'done', 'failed', 'cancelled', 'error', 'warning'])
     .nullable()
     .catch(null),
   sort: z.enum(batches.entrySorts).catch('position'),
@@ -33,10 +33,11 @@ export const load: PageServerLoad = async ({ locals, params, url, depends }) => 
   return { ...listed, query, pageSize: PAGE_SIZE, progress: await batches.progress(member, id) };
 };
 
-/** The tasks that a form means: those of one row, or all of the batch. */
+/** The tasks that a form means: those of the named rows, or all of the batch. */
 async function choiceOf(batchId: string, request: Request): Promise<tasks.TaskChoice> {
-  const entry = (await request.formData()).get('entry');
-  return entry === null ? { batchId: uuidParam(batchId) } : { entryId: uuidParam(String(entry)) };
+  const rows = (await request.formData()).getAll('row');
+  const batch = { batchId: uuidParam(batchId) };
+  return rows.length === 0 ? batch : { ...batch, rows: rows.map((row) => uuidParam(String(row))) };
 }
 
 export const actions: Actions = {

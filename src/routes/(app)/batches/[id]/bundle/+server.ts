@@ -7,5 +7,9 @@ import type { RequestHandler } from './$types';
 /** The bundle of a batch; `row` may name single rows, as often as needed. */
 export const GET: RequestHandler = async ({ locals, params, url }) =>
   bundleResponse(
-    await bundleBatch(whoAsks(locals), uuidParam(params.id), url.searchParams.getAll('row')),
+    await bundleBatch(
+      whoAsks(locals),
+      uuidParam(params.id),
+      url.searchParams.getAll('row').map(uuidParam),
+    ),
   );
