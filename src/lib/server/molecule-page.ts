@@ -1,17 +1,13 @@
 /** What the page of a molecule shows, in the order it is read: answers first, evidence after. */
 import { and, count, desc, eq } from 'drizzle-orm';
 import type { Result } from '../engine';
-import { atomLabel, drawMolecule, writeMolfile, type Molecule } from '../engine';
+import { drawMolecule, writeMolfile, type Molecule } from '../engine';
 import { readAnswers, resultIdsOf, type Answer, type StoredProfile } from './answers';
 import { db } from './db';
 import { batches, entries, tasks } from './db/schema';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
-
-/** A bond by its atoms as people read them: "C2–C3". */
-function bondName(molecule: Molecule, atoms: readonly number[]): string {
-  return atoms.map((atom) => atomLabel(molecule.atomicNumbers[atom], atom)).join('–');
-}
+import { bondName } from './molecules';
 
 /** Everything the page needs but the geometries, which it asks for when they are looked at. */
 export async function load(member: Member, moleculeId: string) {

@@ -1,6 +1,6 @@
 /** Molecules of a team: their structures, drawings and answers. */
 import { and, eq } from 'drizzle-orm';
-import { drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
+import { atomLabel, drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
 import { molecules } from './db/schema';
 import { notFound, type Member } from './member';
@@ -25,4 +25,9 @@ export function readStored({
 /** The structure drawing of a molecule, in the atom numbers of its results. */
 export async function draw(member: Member, moleculeId: string): Promise<Drawing> {
   return drawMolecule(readStored(await get(member, moleculeId)));
+}
+
+/** A bond or torsion by its atoms as people read them: "C2–C3". */
+export function bondName(molecule: Molecule, atoms: readonly number[]): string {
+  return atoms.map((atom) => atomLabel(molecule.atomicNumbers[atom], atom)).join('–');
 }

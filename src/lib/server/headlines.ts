@@ -1,0 +1,144 @@
+/** The first answer of a molecule in one sentence, for lists and for the front page. */
+import { and, count, desc, eq, inArray, sql } from 'drizzle-orm';
+import type { Result } from '../engine';
+import {
+  conformersSentence,
+  conjugationSentence,
+  scanSentence,
+  strainSentence,
+} from '../domain/sentences';
+import { db } from './db';
+import { conformers, molecules, profileCurves, profiles, results } from './db/schema';
+import type { StoredStationaryPoint } from './answers';
+import type { Member } from './member';
+import { bondName, readStored } from './molecules';
+
+/** Which kind of answer a person wants to read first. */
+const byWeight = sql`array_position(array['conjugation', 'strain', 'scan', 'conformers'], ${results.kind}::text)`;
+const UNIT = 'kcal/mol';
+
+const headColumns = {
+  id: results.id,
+  kind: results.kind,
+  details: results.details,
+  settings: results.settings,
+  moleculeId: results.moleculeId,
+  format: molecules.format,
+  structure: molecules.structure,
+};
+
+/** What a headline is made from. */
+async function readHeads(member: Member, moleculeIds: readonly string[]) {
+  return db
+    .selectDistinctOn([results.moleculeId], headColumns)
+    .from(results)
+    .innerJoin(molecules, eq(molecules.id, results.moleculeId))
+    .where(and(eq(results.teamId, member.teamId), inArray(results.moleculeId, [...moleculeIds])))
+    .orderBy(results.moleculeId, byWeight, desc(results.createdAt));
+}
+type Head = Awaited<ReturnType<typeof readHeads>>[number];
+
+/** The first answer of each molecule that has one, by the molecule's id. Energies are in kcal/mol. */
+export async function headlinesOf(
+  member: Member,
+  moleculeIds: readonly string[],
+): Promise<Map<string, string>> {
+  if (moleculeIds.length === 0) return new Map();
+  const heads = await readHeads(member, moleculeIds);
+  const sentences = await Promise.all(
+    heads.map(async (head) => [head.moleculeId, await sentenceOf(head)] as const),
+  );
+  return new Map(sentences.flatMap(([id, text]) => (text === null ? [] : [[id, text] as const])));
+}
+
+function sentenceOf(head: Head): string | null | Promise<string | null> {
+  switch (head.kind) {
+    case 'conjugation':
+      return conjugationHeadline(head);
+    case 'strain':
+      return strainHeadline(head);
+    case 'scan':
+      return scanHeadline(head);
+    case 'conformers':
+      return conformersHeadline(head);
+  }
+}
+
+/** The bond with most to say: one that turns between s-cis and s-trans, if there is one. */
+function conjugationHeadline(head: Head): string | null {
+  const { bonds } = head.details as Pick<Result<'conjugation'>, 'bonds'>;
+  const bond = bonds.find(({ difference }) => difference !== null) ?? bonds[0];
+  if (!bond) return null;
+  const { temperature } = head.settings as { temperature: number };
+  return conjugationSentence(
+    { ...bond, bond: bondName(readStored(head), bond.bond), temperature },
+    UNIT,
+  );
+}
+
+function strainHeadline(head: Head): string {
+  const { strain, complete, torsions } = head.details as Pick<
+    Result<'strain'>,
+    'strain' | 'complete' | 'torsions'
+  >;
+  const [worst] = torsions;
+  return strainSentence(
+    {
+      strain,
+      complete,
+      worst: worst ? { bond: bondName(readStored(head), worst.bond), strain: worst.strain } : null,
+    },
+    UNIT,
+  );
+}
+
+async function scanHeadline(head: Head): Promise<string | null> {
+  const [curve] = await db
+    .select({
+      torsion: profiles.torsion,
+      relaxed: profileCurves.relaxed,
+      stationary: profileCurves.stationary,
+    })
+    .from(profiles)
+    .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
+    .where(eq(profiles.resultId, head.id))
+    .limit(1);
+  if (!curve) return null;
+  const { crossings, temperature, complete } = head.details as Pick<
+    Result<'scan'>,
+    'crossings' | 'temperature' | 'complete'
+  >;
+  const minima = (curve.stationary as Omit<StoredStationaryPoint, 'coordinates'>[])
+    .filter(({ kind }) => kind === 'minimum')
+    .sort((a, b) => a.energy - b.energy);
+  const highest = [...crossings].sort((a, b) => b.barrier - a.barrier)[0];
+  return scanSentence(
+    {
+      torsion: bondName(readStored(head), curve.torsion),
+      preferred: minima[0] ?? null,
+      barrier: highest?.barrier ?? null,
+      halfLife: highest?.halfLife ?? null,
+      temperature,
+      relaxed: curve.relaxed,
+      complete,
+    },
+    UNIT,
+  );
+}
+
+async function conformersHeadline(head: Head): Promise<string | null> {
+  const [{ found, lowestPopulation }] = await db
+    .select({
+      found: count(),
+      lowestPopulation: sql<number>`max(${conformers.population}) filter (where ${conformers.rank} = 0)`,
+    })
+    .from(conformers)
+    .where(eq(conformers.resultId, head.id));
+  if (found === 0) return null;
+  const { complete } = head.details as { complete: boolean };
+  const { window, temperature } = head.settings as { window: number; temperature: number };
+  return conformersSentence(
+    { count: found, window, lowestPopulation, temperature, complete },
+    UNIT,
+  );
+}
