@@ -24,7 +24,8 @@ export interface DemoSignIn {
   readonly role: Role;
 }
 
-async function findTeam(executor: Executor): Promise<string | null> {
+/** The demo's team, by its name and its lead; null where no demo was seeded. */
+export async function findDemoTeam(executor: Executor): Promise<string | null> {
   const [found] = await executor
     .select({ id: teams.id })
     .from(teams)
@@ -50,7 +51,7 @@ export async function seedDemo(): Promise<DemoSignIn[]> {
   const passwordHash = await hashPassword(password);
   const modeler = await db.transaction(async (tx) => {
     await tx.execute(sql`select pg_advisory_xact_lock(${DEMO_SEED_LOCK})`);
-    const teamId = (await findTeam(tx)) ?? (await openTeam(tx));
+    const teamId = (await findDemoTeam(tx)) ?? (await openTeam(tx));
     let submitter: Member | null = null;
     for (const { name, email, role } of members) {
       const [user] = await tx

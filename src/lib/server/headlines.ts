@@ -28,7 +28,7 @@ const headColumns = {
 };
 
 /** What a headline is made from. */
-async function readHeads(member: Member, moleculeIds: readonly string[]) {
+async function readHeads(member: Pick<Member, 'teamId'>, moleculeIds: readonly string[]) {
   return db
     .selectDistinctOn([results.moleculeId], headColumns)
     .from(results)
@@ -40,7 +40,7 @@ type Head = Awaited<ReturnType<typeof readHeads>>[number];
 
 /** The first answer of each molecule that has one, by the molecule's id. Energies are in kcal/mol. */
 export async function headlinesOf(
-  member: Member,
+  member: Pick<Member, 'teamId'>,
   moleculeIds: readonly string[],
 ): Promise<Map<string, string>> {
   if (moleculeIds.length === 0) return new Map();
