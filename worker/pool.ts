@@ -17,9 +17,9 @@ export const concurrency = environment.WINDLASS_WORKER_CONCURRENCY || availableP
 const fromSources = import.meta.url.endsWith('.ts');
 const pool = new Piscina<ComputeOrder, ComputeAnswer>({
   filename: fileURLToPath(new URL(fromSources ? './thread.ts' : './thread.js', import.meta.url)),
-  minThreads: 0,
+  // Threads stand ready from the start, and a cancelled task's thread is replaced at once: getting ready takes seconds.
+  minThreads: concurrency,
   maxThreads: concurrency,
-  idleTimeout: 60_000,
   ...(fromSources ? { execArgv: ['--import', 'tsx'] } : {}),
 });
 

@@ -1,11 +1,13 @@
 /** A compute thread: it only calls the engine. Progress and cancelling travel over the port that comes with a request. */
 import { setImmediate as breathe } from 'node:timers/promises';
 import type { MessagePort } from 'node:worker_threads';
-import { perform, type Request, type Result } from '../src/lib/engine';
+import { perform, readMolecule, type Request, type Result } from '../src/lib/engine';
 import { InputError } from '../src/lib/engine/errors';
 import { registerChemistryResources } from '../src/lib/server/chemistry-resources';
 
 registerChemistryResources();
+// The first molecule that is read takes a second, in which no cancel would be heard: it is read before any task comes.
+readMolecule({ smiles: 'C' });
 
 export interface ComputeOrder {
   readonly request: Request;

@@ -1,5 +1,5 @@
 /** Drafts of batches: rows are read into them, looked at by their maker, and submitted or thrown away. */
-import { and, eq, inArray, isNull, sql } from 'drizzle-orm';
+import { and, eq, isNull, lt, sql } from 'drizzle-orm';
 import type { ChosenBonds, Format, Reading } from '../domain/submission';
 import { db, type Executor } from './db';
 import { batches, entries, molecules } from './db/schema';
@@ -112,7 +112,10 @@ async function addRows(member: Member, batchId: string, rows: readonly ReadRow[]
   });
 }
 
-/** Stores the structures that the team has not got yet; returns the ids by digest. */
+/**
+ * Stores the structures that the team has not got yet; returns the ids by digest. Those it has are locked by an update
+ * that changes nothing, so that none is tidied away before a row of the draft names it.
+ */
 async function storeStructures(
   executor: Executor,
   member: Member,
@@ -122,16 +125,16 @@ async function storeStructures(
     rows.flatMap(({ structure }) => (structure ? [[structure.digest, structure] as const] : [])),
   );
   if (byDigest.size === 0) return new Map();
-  await executor
-    .insert(molecules)
-    .values([...byDigest.values()].map((structure) => ({ teamId: member.teamId, ...structure })))
-    .onConflictDoNothing();
+  // In one order for everybody: two uploads of the same molecules must not wait for each other.
+  const sorted = [...byDigest.values()].sort((a, b) => (a.digest < b.digest ? -1 : 1));
   const stored = await executor
-    .select({ id: molecules.id, digest: molecules.digest })
-    .from(molecules)
-    .where(
-      and(eq(molecules.teamId, member.teamId), inArray(molecules.digest, [...byDigest.keys()])),
-    );
+    .insert(molecules)
+    .values(sorted.map((structure) => ({ teamId: member.teamId, ...structure })))
+    .onConflictDoUpdate({
+      target: [molecules.teamId, molecules.digest],
+      set: { digest: sql`excluded.digest` },
+    })
+    .returning({ id: molecules.id, digest: molecules.digest });
   return new Map(stored.map(({ id, digest }) => [digest, id]));
 }
 
@@ -159,4 +162,19 @@ export async function discardDraft(member: Member, batchId: string): Promise<voi
     await ownDraft(transaction, member, batchId);
     await transaction.delete(batches).where(eq(batches.id, batchId));
   });
+}
+
+/** How long a draft waits for its maker, days. */
+export const DRAFT_DAYS = 30;
+
+/** Throws drafts away that nobody submitted for a long time. */
+export async function forgetOld(): Promise<void> {
+  await db
+    .delete(batches)
+    .where(
+      and(
+        isNull(batches.submittedAt),
+        lt(batches.createdAt, sql`now() - make_interval(days => ${DRAFT_DAYS})`),
+      ),
+    );
 }

@@ -1,12 +1,17 @@
 /** Forgets what is of no use any more; any number of processes may do it. */
+import * as drafts from './drafts';
 import * as letterTokens from './letter-tokens';
 import { log } from './log';
+import * as molecules from './molecules';
 import { forgetFullBuckets } from './rate-limits';
 import * as sessions from './sessions';
 
 const INTERVAL_MS = 3_600_000;
 
-async function tidy(): Promise<void> {
+/** Does all of it once. */
+export async function tidy(): Promise<void> {
+  await drafts.forgetOld();
+  await molecules.forgetUnused();
   await letterTokens.forgetExpired();
   await sessions.forgetEnded();
   await forgetFullBuckets();

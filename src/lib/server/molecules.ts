@@ -1,8 +1,8 @@
 /** Molecules of a team: their structures, drawings and answers. */
-import { and, eq } from 'drizzle-orm';
+import { and, eq, inArray, lt, sql } from 'drizzle-orm';
 import { atomLabel, drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
-import { molecules } from './db/schema';
+import { entries, molecules, results } from './db/schema';
 import { notFound, type Member } from './member';
 
 /** A molecule of the member's team. */
@@ -30,4 +30,20 @@ export async function draw(member: Member, moleculeId: string): Promise<Drawing>
 /** A bond or torsion by its atoms as people read them: "C2–C3". */
 export function bondName(molecule: Molecule, atoms: readonly number[]): string {
   return atoms.map((atom) => atomLabel(molecule.atomicNumbers[atom], atom)).join('–');
+}
+
+/** Forgets molecules that no row names any more, as those of discarded drafts; what was computed for one keeps it. */
+export async function forgetUnused(): Promise<void> {
+  const unused = db
+    .select({ id: molecules.id })
+    .from(molecules)
+    .where(
+      and(
+        lt(molecules.createdAt, sql`now() - interval '1 day'`),
+        sql`not exists (select 1 from ${entries} where ${entries.moleculeId} = ${molecules.id})`,
+        sql`not exists (select 1 from ${results} where ${results.moleculeId} = ${molecules.id})`,
+      ),
+    )
+    .for('update', { skipLocked: true });
+  await db.delete(molecules).where(inArray(molecules.id, unused));
 }
