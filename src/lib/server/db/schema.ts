@@ -207,6 +207,9 @@ export const entries = pgTable(
   (table) => [
     unique('entries_batch_position').on(table.batchId, table.position),
     index('entries_molecule').on(table.moleculeId),
+    index('entries_remarked')
+      .on(table.batchId, table.verdict)
+      .where(sql`${table.verdict} <> 'ready'`),
     check(
       'entries_bad_row_has_no_molecule',
       sql`(${table.verdict} = 'error') = (${table.moleculeId} is null)`,
@@ -336,6 +339,9 @@ export const tasks = pgTable(
   (table) => [
     index('tasks_batch_state').on(table.batchId, table.state),
     index('tasks_entry').on(table.entryId),
+    index('tasks_done')
+      .on(table.batchId, table.finishedAt)
+      .where(sql`${table.state} = 'done'`),
     index('tasks_result').on(table.resultId),
     index('tasks_running')
       .on(table.beatAt)
