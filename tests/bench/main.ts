@@ -1,8 +1,9 @@
 /**
- * The bench: how fast and how lean the engine is beside openchemlib and, where installed, RDKit, in the same run.
+ * The bench: how fast and how lean the engine is beside openchemlib and, where installed, RDKit, in the same run;
+ * and how quickly the pages of a large team answer.
  *
  *     npm run bench                          every section
- *     npm run bench -- minimization scan     some of: minimization, scan, search, memory
+ *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, pages
  *     npm run bench -- --record              keeps the report in tests/bench/results
  */
 import { mkdirSync, writeFileSync } from 'node:fs';
@@ -11,6 +12,7 @@ import { fileURLToPath } from 'node:url';
 import { registerChemistryResources } from '$lib/server/chemistry-resources';
 import { memorySection } from './memory';
 import { minimizationSection } from './minimization';
+import { pagesSection } from './pages';
 import { hasRdkit } from './rdkit';
 import { scanSection } from './scan';
 import { searchSection } from './search';
@@ -20,6 +22,7 @@ const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   scan: scanSection,
   search: searchSection,
   memory: memorySection,
+  pages: pagesSection,
 };
 
 const chosen = process.argv.slice(2).filter((argument) => argument !== '--record');

@@ -11,13 +11,13 @@ export type StateCounts = Record<TaskState, number>;
 
 const noTasks: StateCounts = { queued: 0, running: 0, done: 0, failed: 0, cancelled: 0 };
 
-/** Counts tasks by state, as columns of a query. */
+/** Counts tasks by state, as columns of a query that an index alone answers. */
 const stateColumns = {
-  queued: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'queued'))::int`,
-  running: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'running'))::int`,
-  done: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'done'))::int`,
-  failed: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'failed'))::int`,
-  cancelled: sql<number>`(count(${tasks.id}) filter (where ${tasks.state} = 'cancelled'))::int`,
+  queued: sql<number>`(count(*) filter (where ${tasks.state} = 'queued'))::int`,
+  running: sql<number>`(count(*) filter (where ${tasks.state} = 'running'))::int`,
+  done: sql<number>`(count(*) filter (where ${tasks.state} = 'done'))::int`,
+  failed: sql<number>`(count(*) filter (where ${tasks.state} = 'failed'))::int`,
+  cancelled: sql<number>`(count(*) filter (where ${tasks.state} = 'cancelled'))::int`,
 };
 
 /** Whose batches are meant: the whole team's, the member's own, or those of everybody else in the team. */
@@ -77,16 +77,20 @@ export async function list(member: Member, page: number, pageSize: number, whose
 
 /** How far a batch is: its tasks by state, and the share of the work that is done, 0 to 1. */
 export async function progress(member: Member, batchId: string) {
-  const [row] = await db
-    .select({
-      ...stateColumns,
-      share: sql<number>`coalesce(avg(case when ${tasks.state} in ('queued', 'running') then ${tasks.progress} else 1 end), 1)::float8`,
-    })
+  const own = and(eq(tasks.batchId, batchId), eq(batches.teamId, member.teamId));
+  const [counts] = await db
+    .select(stateColumns)
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
-    .where(and(eq(tasks.batchId, batchId), eq(batches.teamId, member.teamId)));
-  const { share, ...counts } = row;
-  return { counts, share };
+    .where(own);
+  const [{ begun }] = await db
+    .select({ begun: sql<number>`coalesce(sum(${tasks.progress}), 0)::float8` })
+    .from(tasks)
+    .innerJoin(batches, eq(batches.id, tasks.batchId))
+    .where(and(own, eq(tasks.state, 'running')));
+  const ended = counts.done + counts.failed + counts.cancelled;
+  const total = ended + counts.queued + counts.running;
+  return { counts, share: total === 0 ? 1 : Math.min(1, (ended + begun) / total) };
 }
 
 export const entrySorts = ['position', 'name', 'formula', 'failed'] as const;
@@ -104,7 +108,7 @@ export interface EntryQuery {
 /** One page of a batch's rows with the states of their tasks. */
 export async function listEntries(member: Member, batchId: string, query: EntryQuery) {
   const batch = await get(member, batchId);
-  const chosen = and(eq(entries.batchId, batch.id), stateCondition(query.state));
+  const chosen = and(eq(entries.batchId, batch.id), stateCondition(batch.id, query.state));
   const [{ total }] = await db.select({ total: count() }).from(entries).where(chosen);
   const direction = query.descending ? desc : asc;
   const rows = await db
@@ -117,29 +121,51 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
       remarks: entries.remarks,
       moleculeId: entries.moleculeId,
       formula: molecules.formula,
+    })
+    .from(entries)
+    .leftJoin(molecules, eq(molecules.id, entries.moleculeId))
+    .where(chosen)
+    .orderBy(direction(sortColumn(batch.id, query.sort)), asc(entries.position))
+    .limit(query.pageSize)
+    .offset((query.page - 1) * query.pageSize);
+  const states = await entryStates(rows.map(({ id }) => id));
+  return {
+    batch,
+    total,
+    rows: rows.map((row) => ({ ...row, ...(states.get(row.id) ?? { ...noTasks, failure: null }) })),
+  };
+}
+
+/** The states of some rows' tasks, and why one of them failed. */
+async function entryStates(entryIds: readonly string[]) {
+  if (entryIds.length === 0) return new Map<string, never>();
+  const states = await db
+    .select({
+      entryId: tasks.entryId,
       ...stateColumns,
       failure: sql<{
         message: string;
       } | null>`(array_agg(${tasks.error}) filter (where ${tasks.state} = 'failed'))[1]`,
     })
-    .from(entries)
-    .leftJoin(molecules, eq(molecules.id, entries.moleculeId))
-    .leftJoin(tasks, eq(tasks.entryId, entries.id))
-    .where(chosen)
-    .groupBy(entries.id, molecules.formula)
-    .orderBy(direction(sortColumn(query.sort)), asc(entries.position))
-    .limit(query.pageSize)
-    .offset((query.page - 1) * query.pageSize);
-  return { batch, total, rows };
+    .from(tasks)
+    .where(inArray(tasks.entryId, [...entryIds]))
+    .groupBy(tasks.entryId);
+  return new Map(states.map(({ entryId, ...state }) => [entryId, state]));
 }
 
-function stateCondition(state: EntryQuery['state']) {
+function stateCondition(batchId: string, state: EntryQuery['state']) {
   if (state === null) return undefined;
   if (state === 'error' || state === 'warning') return eq(entries.verdict, state);
-  return sql`exists (select 1 from ${tasks} where ${tasks.entryId} = ${entries.id} and ${tasks.state} = ${state})`;
+  return inArray(
+    entries.id,
+    db
+      .select({ id: tasks.entryId })
+      .from(tasks)
+      .where(and(eq(tasks.batchId, batchId), eq(tasks.state, state))),
+  );
 }
 
-function sortColumn(sort: EntrySort) {
+function sortColumn(batchId: string, sort: EntrySort) {
   switch (sort) {
     case 'position':
       return entries.position;
@@ -148,7 +174,7 @@ function sortColumn(sort: EntrySort) {
     case 'formula':
       return molecules.formula;
     case 'failed':
-      return stateColumns.failed;
+      return sql`(select count(*) from ${tasks} where ${tasks.batchId} = ${batchId} and ${tasks.state} = 'failed' and ${tasks.entryId} = ${entries.id})`;
   }
 }
 

@@ -14,12 +14,17 @@ export const GET: RequestHandler = async ({ locals, params }) => {
   const member = whoAsks(locals);
   const batch = await batches.get(member, uuidParam(params.id));
   const encoder = new TextEncoder();
-  let end = () => {};
+  /** What has to be undone when the page is closed, which can be at any moment, also while all this begins. */
+  const undo: (() => void)[] = [];
+  let isOpen = true;
+  const end = () => {
+    isOpen = false;
+    for (const each of undo.splice(0)) each();
+  };
   const stream = new ReadableStream<Uint8Array>({
     async start(controller) {
-      let open = true;
       let timer: ReturnType<typeof setTimeout> | undefined;
-      const say = (text: string) => open && controller.enqueue(encoder.encode(text));
+      const say = (text: string) => isOpen && controller.enqueue(encoder.encode(text));
       const send = async () => {
         timer = undefined;
         try {
@@ -34,17 +39,14 @@ export const GET: RequestHandler = async ({ locals, params }) => {
         if (id !== batch.id && id !== '') return;
         timer ??= setTimeout(() => void send(), SHORTEST_PAUSE_MS);
       };
-      const stopListening = await listen('batch-changed', changed);
       const keepOpen = setInterval(() => say(': open\n\n'), KEEP_OPEN_MS);
-      end = () => {
-        open = false;
-        clearTimeout(timer);
-        clearInterval(keepOpen);
-        stopListening();
-      };
-      await send();
+      undo.push(() => clearInterval(keepOpen));
+      undo.push(() => clearTimeout(timer));
+      undo.push(await listen('batch-changed', changed));
+      if (isOpen) await send();
+      else end();
     },
-    cancel: () => end(),
+    cancel: end,
   });
   return new Response(stream, {
     headers: { 'content-type': 'text/event-stream', 'cache-control': 'no-store' },
