@@ -17,6 +17,7 @@ import { StartError } from './settings.mjs';
 
 const DEBIAN_VERSIONS = '/usr/lib/postgresql';
 const OLDEST_VERSION = 15;
+const WATCH_MS = 3_000;
 const isRoot = process.getuid?.() === 0;
 
 /** PostgreSQL refuses to run as root, so root runs it as Debian's postgres user. */
@@ -242,4 +243,23 @@ export function openCluster({ folder: wished, port, adminPassword, password, opt
     start,
     stop: () => stopServer(folder),
   };
+}
+
+/**
+ * Starts a cluster again whenever its server has ended.
+ * @param {{ isRunning: () => boolean, start: () => void }} cluster
+ * @param {(line: string) => void} say
+ * @returns {() => void} the way to stop
+ */
+export function keepRunning(cluster, say) {
+  const watch = setInterval(() => {
+    if (cluster.isRunning()) return;
+    try {
+      cluster.start();
+      say('PostgreSQL had stopped and was started again.');
+    } catch (error) {
+      say(error.message);
+    }
+  }, WATCH_MS);
+  return () => clearInterval(watch);
 }

@@ -5,14 +5,13 @@
 import { join } from 'node:path';
 import { windlassFolder } from './folders.mjs';
 import { installPackages } from './install.mjs';
-import { installPostgres, openCluster, runningPort } from './postgres.mjs';
+import { installPostgres, keepRunning, openCluster, runningPort } from './postgres.mjs';
 import { announce, claimClone, releaseClone, waitForOther } from './running.mjs';
 import { isLoopback, isPortFree, readPorts, readSecrets, StartError } from './settings.mjs';
 
 const isDevelopment = process.argv.includes('--dev');
 const command = isDevelopment ? 'npm run dev' : 'npm start';
 const postgresFolder = join(windlassFolder, 'postgres');
-const DATABASE_WATCH_MS = 3_000;
 
 /** What has to be undone at the end, in the order it was done. */
 const undo = [];
@@ -82,17 +81,9 @@ function openDatabase(ports, secrets) {
     adminPassword: secrets.WINDLASS_POSTGRES_ADMIN_PASSWORD,
     password: secrets.WINDLASS_POSTGRES_PASSWORD,
   });
-  const watch = setInterval(() => {
-    if (cluster.isRunning()) return;
-    try {
-      cluster.start();
-      console.log('PostgreSQL had stopped and was started again.');
-    } catch (error) {
-      console.error(error.message);
-    }
-  }, DATABASE_WATCH_MS);
+  const stopKeeping = keepRunning(cluster, console.log);
   undo.push(() => {
-    clearInterval(watch);
+    stopKeeping();
     cluster.stop();
   });
   return cluster.url;

@@ -1,8 +1,15 @@
 /** From molecules to answers, as people go it in a browser. */
 import { readFileSync } from 'node:fs';
-import { expect, test, type Page } from '@playwright/test';
+import { expect, test } from '@playwright/test';
 import { unzipSync } from 'fflate';
-import { expectAccessible, open, signInAs } from '../support/pages';
+import {
+  compute,
+  expectAccessible,
+  open,
+  readPasted,
+  signInAs,
+  waitUntilDone,
+} from '../support/pages';
 
 const molecules = [
   'C=CC=C buta-1,3-diene',
@@ -10,25 +17,6 @@ const molecules = [
   'nonsense broken row',
   '[Na+].[Cl-] table salt',
 ].join('\n');
-
-async function readPasted(page: Page, name: string, text: string): Promise<void> {
-  await open(page, '/batches/new');
-  await page.getByLabel('Name of the batch').fill(name);
-  await page.getByLabel(/^One SMILES on each line/).fill(text);
-  await page.getByRole('button', { name: 'Read and check' }).click();
-  await page.waitForURL('**/preview');
-}
-
-async function compute(page: Page): Promise<void> {
-  await page.getByRole('button', { name: /^Compute \d+ molecule/ }).click();
-  await page.waitForURL(/batches\/[0-9a-f-]{36}$/);
-}
-
-async function waitUntilDone(page: Page): Promise<void> {
-  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
-    timeout: 240_000,
-  });
-}
 
 test('a modeler pastes molecules, watches them run, reads the answer and takes the bundle', async ({
   page,

@@ -11,6 +11,7 @@ function setting(name: string): string {
 
 export const lettersUrl = () => setting('WINDLASS_TEST_LETTERS_URL');
 export const databaseUrl = () => setting('WINDLASS_TEST_DATABASE_URL');
+export const adminUrl = () => setting('WINDLASS_TEST_ADMIN_URL');
 export const demoPassword = () => setting('WINDLASS_TEST_DEMO_PASSWORD');
 
 export const demoMembers = {
@@ -36,6 +37,28 @@ export async function signIn(page: Page, email: string, password: string): Promi
 
 export function signInAs(page: Page, role: keyof typeof demoMembers): Promise<void> {
   return signIn(page, demoMembers[role], demoPassword());
+}
+
+/** Pastes molecules, one on each line, and has them read into a preview. */
+export async function readPasted(page: Page, name: string, text: string): Promise<void> {
+  await open(page, '/batches/new');
+  await page.getByLabel('Name of the batch').fill(name);
+  await page.getByLabel(/^One SMILES on each line/).fill(text);
+  await page.getByRole('button', { name: 'Read and check' }).click();
+  await page.waitForURL('**/preview');
+}
+
+/** From the preview to the batch: everything that is chosen there is queued. */
+export async function compute(page: Page): Promise<void> {
+  await page.getByRole('button', { name: /^Compute \d+ molecule/ }).click();
+  await page.waitForURL(/batches\/[0-9a-f-]{36}$/);
+}
+
+/** Waits on the page of a batch until all of it has ended. */
+export async function waitUntilDone(page: Page): Promise<void> {
+  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
+    timeout: 240_000,
+  });
 }
 
 /** Checks the page as it stands against WCAG 2.2 A and AA, and that nothing makes it scroll sideways. */

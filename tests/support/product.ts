@@ -3,6 +3,7 @@ import { randomBytes } from 'node:crypto';
 import { createWriteStream, mkdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { windlassFolder } from '../../scripts/folders.mjs';
+import { keepRunning } from '../../scripts/postgres.mjs';
 import { createProduct } from '../../scripts/product.mjs';
 import { findFreePort } from '../../scripts/settings.mjs';
 import { startTestCluster } from '../../scripts/test-cluster.mjs';
@@ -37,8 +38,10 @@ export default async function setUp(): Promise<() => Promise<void>> {
     },
     print: (name: string, line: string) => log.write(`${name} | ${line}\n`),
   });
+  const stopKeeping = keepRunning(cluster, (line: string) => log.write(`${line}\n`));
   const end = async () => {
     await product.stop();
+    stopKeeping();
     cluster.remove();
     log.end();
   };
@@ -49,6 +52,7 @@ export default async function setUp(): Promise<() => Promise<void>> {
       WINDLASS_TEST_LETTERS_URL: lettersUrl ?? '',
       WINDLASS_TEST_DEMO_PASSWORD: demoPassword,
       WINDLASS_TEST_DATABASE_URL: cluster.url,
+      WINDLASS_TEST_ADMIN_URL: cluster.adminUrl,
     });
   } catch (error) {
     await end();

@@ -1,5 +1,5 @@
 /** Batches as their team sees them. */
-import { and, asc, count, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
 import { db } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { notFound, type Member } from './member';
@@ -110,8 +110,9 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
   const batch = await get(member, batchId);
   const chosen = and(eq(entries.batchId, batch.id), stateCondition(batch.id, query.state));
   const [{ total }] = await db.select({ total: count() }).from(entries).where(chosen);
-  const direction = query.descending ? desc : asc;
-  const rows = await db
+  const ids = await sortedIds(batch.id, chosen, query);
+  if (ids.length === 0) return { batch, total, rows: [] };
+  const found = await db
     .select({
       id: entries.id,
       position: entries.position,
@@ -124,21 +125,47 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
     })
     .from(entries)
     .leftJoin(molecules, eq(molecules.id, entries.moleculeId))
+    .where(inArray(entries.id, ids));
+  const states = await entryStates(ids);
+  const rows = found
+    .map((row) => ({ ...row, ...(states.get(row.id) ?? { ...noTasks, failure: null }) }))
+    .sort((a, b) => ids.indexOf(a.id) - ids.indexOf(b.id));
+  return { batch, total, rows };
+}
+
+/** The rows of one page in their order; only ids, so that sorting a large batch moves little. */
+async function sortedIds(
+  batchId: string,
+  chosen: SQL | undefined,
+  { sort, descending, page, pageSize }: EntryQuery,
+): Promise<string[]> {
+  const failures = db
+    .select({ entryId: tasks.entryId, failed: count().as('failed') })
+    .from(tasks)
+    .where(and(eq(tasks.batchId, batchId), eq(tasks.state, 'failed')))
+    .groupBy(tasks.entryId)
+    .as('failures');
+  const column = {
+    position: entries.position,
+    name: sql`lower(${entries.name})`,
+    formula: molecules.formula,
+    failed: sql`coalesce(${failures.failed}, 0)`,
+  }[sort];
+  // PostgreSQL leaves out the joins that the chosen order has no use for.
+  const rows = await db
+    .select({ id: entries.id })
+    .from(entries)
+    .leftJoin(molecules, eq(molecules.id, entries.moleculeId))
+    .leftJoin(failures, eq(failures.entryId, entries.id))
     .where(chosen)
-    .orderBy(direction(sortColumn(batch.id, query.sort)), asc(entries.position))
-    .limit(query.pageSize)
-    .offset((query.page - 1) * query.pageSize);
-  const states = await entryStates(rows.map(({ id }) => id));
-  return {
-    batch,
-    total,
-    rows: rows.map((row) => ({ ...row, ...(states.get(row.id) ?? { ...noTasks, failure: null }) })),
-  };
+    .orderBy((descending ? desc : asc)(column), asc(entries.position))
+    .limit(pageSize)
+    .offset((page - 1) * pageSize);
+  return rows.map(({ id }) => id);
 }
 
 /** The states of some rows' tasks, and why one of them failed. */
 async function entryStates(entryIds: readonly string[]) {
-  if (entryIds.length === 0) return new Map<string, never>();
   const states = await db
     .select({
       entryId: tasks.entryId,
@@ -163,19 +190,6 @@ function stateCondition(batchId: string, state: EntryQuery['state']) {
       .from(tasks)
       .where(and(eq(tasks.batchId, batchId), eq(tasks.state, state))),
   );
-}
-
-function sortColumn(batchId: string, sort: EntrySort) {
-  switch (sort) {
-    case 'position':
-      return entries.position;
-    case 'name':
-      return sql`lower(${entries.name})`;
-    case 'formula':
-      return molecules.formula;
-    case 'failed':
-      return sql`(select count(*) from ${tasks} where ${tasks.batchId} = ${batchId} and ${tasks.state} = 'failed' and ${tasks.entryId} = ${entries.id})`;
-  }
 }
 
 /** One page of a draft's or a batch's rows, in order, with how many there are of each verdict. */

@@ -11,8 +11,10 @@ const SHOWN_BATCHES = 5;
 const SHOWN_ANSWERS = 6;
 const SHOWN_DRAFTS = 5;
 /** Finished tasks are looked for in this many batches, the newest of each this many. */
-const SEARCHED_BATCHES = 30;
+const SEARCHED_BATCHES = 10;
 const SEARCHED_TASKS = 40;
+/** Trouble is looked for in this many batches. */
+const TROUBLED_BATCHES = 30;
 /** Older trouble has been lived with. */
 const TROUBLE_AGE = sql`now() - interval '30 days'`;
 
@@ -66,7 +68,7 @@ async function findTroubles(member: Member) {
     .from(submitted)
     .where(and(batches.submittedBy(member, 'own'), gt(submitted.submittedAt, TROUBLE_AGE)))
     .orderBy(desc(submitted.submittedAt))
-    .limit(SEARCHED_BATCHES);
+    .limit(TROUBLED_BATCHES);
   const ids = recent.map(({ id }) => id);
   if (ids.length === 0) return [];
   const [failures, remarks] = await Promise.all([
@@ -113,19 +115,29 @@ async function latestAnswers(member: Member, whose: batches.Whose) {
     .orderBy(desc(tasks.finishedAt))
     .limit(SEARCHED_TASKS)
     .as('ended');
+  const newest = db
+    .select({
+      entryId: ended.entryId,
+      finishedAt: ended.finishedAt,
+      batchId: recent.id,
+      batchName: recent.name,
+    })
+    .from(recent)
+    .crossJoinLateral(ended)
+    .orderBy(desc(ended.finishedAt))
+    .limit(SEARCHED_TASKS)
+    .as('newest');
   const found = await db
     .select({
       moleculeId: sql<string>`${entries.moleculeId}`,
       name: entries.name,
-      batchId: recent.id,
-      batchName: recent.name,
-      finishedAt: sql<Date>`${ended.finishedAt}`.mapWith(tasks.createdAt),
+      batchId: newest.batchId,
+      batchName: newest.batchName,
+      finishedAt: sql<Date>`${newest.finishedAt}`.mapWith(tasks.createdAt),
     })
-    .from(recent)
-    .crossJoinLateral(ended)
-    .innerJoin(entries, eq(entries.id, ended.entryId))
-    .orderBy(desc(ended.finishedAt))
-    .limit(SEARCHED_TASKS);
+    .from(newest)
+    .innerJoin(entries, eq(entries.id, newest.entryId))
+    .orderBy(desc(newest.finishedAt));
   const latest = found.filter(
     ({ moleculeId }, n) => found.findIndex((other) => other.moleculeId === moleculeId) === n,
   );
