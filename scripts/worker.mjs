@@ -1,13 +1,24 @@
-/** `npm run worker`: one worker more, on this machine, for the database named by DATABASE_URL. */
-import { spawn } from 'node:child_process';
+/** `npm run worker`: one worker more, on this machine, for the database named by DATABASE_URL; until Ctrl-C. */
 import { join } from 'node:path';
 import { buildProduct } from './build.mjs';
 import { installPackages } from './install.mjs';
 
+const missing = ['DATABASE_URL', 'AUTH_SECRET'].filter((name) => !process.env[name]);
+if (missing.length > 0) {
+  console.error(
+    `Set ${missing.join(' and ')} to what the product itself has (.windlass/secrets.env there), like\n` +
+      '  DATABASE_URL=postgres://… AUTH_SECRET=… npm run worker',
+  );
+  process.exit(1);
+}
 await installPackages();
 const folder = await buildProduct();
-const worker = spawn(process.execPath, [join(folder, 'worker', 'main.js')], { stdio: 'inherit' });
-for (const signal of ['SIGINT', 'SIGTERM']) process.on(signal, () => worker.kill(signal));
-worker.on('exit', (code) => {
-  process.exitCode = code ?? 1;
-});
+const { superviseProgram } = await import('./processes.mjs');
+const { printLine } = await import('./log-lines.mjs');
+const env = { NODE_ENV: 'production', ...process.env };
+const args = [join(folder, 'worker', 'main.js')];
+const worker = superviseProgram({ args, env }, { name: 'worker', print: printLine });
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
+  process.once(signal, () => void worker.stop().then(() => process.exit(0)));
+}
+console.log('The worker runs; Ctrl-C stops it.');
