@@ -8,10 +8,9 @@ import {
   strainSentence,
 } from '../domain/sentences';
 import { db } from './db';
-import { conformers, molecules, profileCurves, profiles, results } from './db/schema';
+import { conformers, profileCurves, profiles, results } from './db/schema';
 import type { StoredStationaryPoint } from './answers';
 import type { Member } from './member';
-import { bondName, readStored } from './molecules';
 
 /** Which kind of answer a person wants to read first. */
 const byWeight = sql`array_position(array['conjugation', 'strain', 'scan', 'conformers'], ${results.kind}::text)`;
@@ -23,8 +22,7 @@ const headColumns = {
   details: results.details,
   settings: results.settings,
   moleculeId: results.moleculeId,
-  format: molecules.format,
-  structure: molecules.structure,
+  molfile: results.molfile,
 };
 
 /** What a headline is made from. */
@@ -32,11 +30,19 @@ async function readHeads(member: Pick<Member, 'teamId'>, moleculeIds: readonly s
   return db
     .selectDistinctOn([results.moleculeId], headColumns)
     .from(results)
-    .innerJoin(molecules, eq(molecules.id, results.moleculeId))
     .where(and(eq(results.teamId, member.teamId), inArray(results.moleculeId, [...moleculeIds])))
     .orderBy(results.moleculeId, byWeight, desc(results.createdAt));
 }
 type Head = Awaited<ReturnType<typeof readHeads>>[number];
+
+/**
+ * A bond or torsion by its atoms as people read them: "C2–C3". Read off the answer's own molfile (V2000), since a list
+ * has no time to read molecules.
+ */
+function bondName({ molfile }: Head, atoms: readonly number[]): string {
+  const lines = molfile.split('\n');
+  return atoms.map((atom) => `${lines[4 + atom].slice(31, 34).trim()}${atom + 1}`).join('–');
+}
 
 /** The first answer of each molecule that has one, by the molecule's id. Energies are in kcal/mol. */
 export async function headlinesOf(
@@ -70,10 +76,7 @@ function conjugationHeadline(head: Head): string | null {
   const bond = bonds.find(({ difference }) => difference !== null) ?? bonds[0];
   if (!bond) return null;
   const { temperature } = head.settings as { temperature: number };
-  return conjugationSentence(
-    { ...bond, bond: bondName(readStored(head), bond.bond), temperature },
-    UNIT,
-  );
+  return conjugationSentence({ ...bond, bond: bondName(head, bond.bond), temperature }, UNIT);
 }
 
 function strainHeadline(head: Head): string {
@@ -86,7 +89,7 @@ function strainHeadline(head: Head): string {
     {
       strain,
       complete,
-      worst: worst ? { bond: bondName(readStored(head), worst.bond), strain: worst.strain } : null,
+      worst: worst ? { bond: bondName(head, worst.bond), strain: worst.strain } : null,
     },
     UNIT,
   );
@@ -114,7 +117,7 @@ async function scanHeadline(head: Head): Promise<string | null> {
   const highest = [...crossings].sort((a, b) => b.barrier - a.barrier)[0];
   return scanSentence(
     {
-      torsion: bondName(readStored(head), curve.torsion),
+      torsion: bondName(head, curve.torsion),
       preferred: minima[0] ?? null,
       barrier: highest?.barrier ?? null,
       halfLife: highest?.halfLife ?? null,
