@@ -46,9 +46,10 @@ async function openDrafts(member: Member) {
       id: drafts.id,
       name: drafts.name,
       createdAt: drafts.createdAt,
-      rows: sql<number>`(select count(*) from ${entries} where ${entries.batchId} = ${drafts.id})::int`,
+      rows: count(entries.id),
     })
     .from(drafts)
+    .leftJoin(entries, eq(entries.batchId, drafts.id))
     .where(
       and(
         eq(drafts.teamId, member.teamId),
@@ -56,6 +57,7 @@ async function openDrafts(member: Member) {
         isNull(drafts.submittedAt),
       ),
     )
+    .groupBy(drafts.id)
     .orderBy(desc(drafts.createdAt))
     .limit(SHOWN_DRAFTS);
 }
