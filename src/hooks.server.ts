@@ -72,7 +72,8 @@ async function identify(event: RequestEvent): Promise<void> {
   const sessionId = await readSessionId(event);
   const signedIn = sessionId ? await sessions.find(sessionId) : null;
   if (sessionId && !signedIn) forgetCookie(event);
-  const memberships = signedIn?.memberships ?? [];
+  const address = event.getClientAddress();
+  const memberships = (signedIn?.memberships ?? []).map((one) => ({ ...one, address }));
   event.locals.user = signedIn?.user ?? null;
   event.locals.sessionId = signedIn?.sessionId ?? null;
   event.locals.memberships = memberships;

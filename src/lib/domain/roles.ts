@@ -15,6 +15,7 @@ export const lowestRole = {
   'rerun tasks': 'modeler',
   'manage members': 'lead',
   'manage limits': 'lead',
+  'read the record': 'lead',
   'delete results': 'lead',
 } as const satisfies Record<string, Role>;
 export type Permission = keyof typeof lowestRole;

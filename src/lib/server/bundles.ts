@@ -37,7 +37,7 @@ export async function bundleMolecule(member: Member, moleculeId: string): Promis
     .where(eq(entries.moleculeId, moleculeId))
     .limit(1);
   const name = entry?.name ?? molecule.formula;
-  await recordEvent(db, member, 'download bundle', moleculeId);
+  await recordEvent(db, member, 'download bundle', `molecule:${moleculeId}`);
   return open(member, name, rowsOf([{ name, molecule }]), null);
 }
 
@@ -49,7 +49,7 @@ export async function bundleBatch(
 ): Promise<Bundle> {
   require(member, 'download bundles');
   const batch = await batches.get(member, batchId);
-  await recordEvent(db, member, 'download bundle', batchId);
+  await recordEvent(db, member, 'download bundle', `batch:${batchId}`);
   return open(member, batch.name, batchRows(batch.id, new Set(chosen)), batch.id);
 }
 

@@ -1,4 +1,5 @@
 /** Forgets what is of no use any more; any number of processes may do it. */
+import * as invitations from './invitations';
 import * as letterTokens from './letter-tokens';
 import { log } from './log';
 import { forgetFullBuckets } from './rate-limits';
@@ -8,6 +9,7 @@ const INTERVAL_MS = 3_600_000;
 
 async function tidy(): Promise<void> {
   await letterTokens.forgetExpired();
+  await invitations.forgetExpired();
   await sessions.forgetEnded();
   await forgetFullBuckets();
 }

@@ -6,6 +6,8 @@ export interface Member {
   readonly userId: string;
   readonly teamId: string;
   readonly role: Role;
+  /** Where the request came from, for the record; absent where none asks. */
+  readonly address?: string;
 }
 
 /** Throws 403 unless the member's role may do the thing. */

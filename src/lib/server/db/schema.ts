@@ -123,6 +123,28 @@ export const memberships = pgTable(
   ],
 );
 
+/** Invitations to a team, bound to an address and good once; the secret itself is only in the letter. */
+export const invitations = pgTable(
+  'invitations',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    email: text('email').notNull(),
+    role: roleEnum('role').notNull(),
+    tokenHash: text('token_hash').notNull().unique(),
+    invitedBy: uuid('invited_by').references(() => users.id, { onDelete: 'set null' }),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    acceptedAt: moment('accepted_at'),
+  },
+  (table) => [
+    index('invitations_team').on(table.teamId, table.createdAt),
+    check('invitations_email_lower_case', sql`${table.email} = lower(${table.email})`),
+  ],
+);
+
 /**
  * Prepared structures of a team, as the engine takes them. A row without a geometry of its own is its canonical SMILES,
  * so that every spelling of a molecule is one structure; a molfile is kept with its atom order and geometry. `digest` is
@@ -358,7 +380,9 @@ export const events = pgTable(
     actorId: uuid('actor_id').references(() => users.id, { onDelete: 'set null' }),
     action: text('action').notNull(),
     subject: text('subject').notNull(),
+    /** Where the request came from; empty for what the product did by itself. */
+    address: text('address').notNull().default(''),
     details: jsonb('details').notNull().default({}),
   },
-  (table) => [index('events_team_at').on(table.teamId, table.at)],
+  (table) => [index('events_team').on(table.teamId, table.id)],
 );

@@ -1,0 +1,20 @@
+CREATE TABLE "invitations" (
+	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
+	"team_id" uuid NOT NULL,
+	"email" text NOT NULL,
+	"role" "role" NOT NULL,
+	"token_hash" text NOT NULL,
+	"invited_by" uuid,
+	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
+	"expires_at" timestamp with time zone NOT NULL,
+	"accepted_at" timestamp with time zone,
+	CONSTRAINT "invitations_token_hash_unique" UNIQUE("token_hash"),
+	CONSTRAINT "invitations_email_lower_case" CHECK ("invitations"."email" = lower("invitations"."email"))
+);
+--> statement-breakpoint
+DROP INDEX "events_team_at";--> statement-breakpoint
+ALTER TABLE "events" ADD COLUMN "address" text DEFAULT '' NOT NULL;--> statement-breakpoint
+ALTER TABLE "invitations" ADD CONSTRAINT "invitations_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "invitations" ADD CONSTRAINT "invitations_invited_by_users_id_fk" FOREIGN KEY ("invited_by") REFERENCES "public"."users"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
+CREATE INDEX "invitations_team" ON "invitations" USING btree ("team_id","created_at");--> statement-breakpoint
+CREATE INDEX "events_team" ON "events" USING btree ("team_id","id");
