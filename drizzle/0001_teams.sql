@@ -12,9 +12,30 @@ CREATE TABLE "invitations" (
 	CONSTRAINT "invitations_email_lower_case" CHECK ("invitations"."email" = lower("invitations"."email"))
 );
 --> statement-breakpoint
+CREATE TABLE "partner_links" (
+	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
+	"team_id" uuid NOT NULL,
+	"batch_id" uuid,
+	"molecule_id" uuid,
+	"token_hash" text NOT NULL,
+	"password_hash" text,
+	"created_by" uuid,
+	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
+	"expires_at" timestamp with time zone NOT NULL,
+	"revoked_at" timestamp with time zone,
+	"downloads" integer DEFAULT 0 NOT NULL,
+	CONSTRAINT "partner_links_token_hash_unique" UNIQUE("token_hash"),
+	CONSTRAINT "partner_links_one_subject" CHECK (("partner_links"."batch_id" is null) <> ("partner_links"."molecule_id" is null))
+);
+--> statement-breakpoint
 DROP INDEX "events_team_at";--> statement-breakpoint
 ALTER TABLE "events" ADD COLUMN "address" text DEFAULT '' NOT NULL;--> statement-breakpoint
 ALTER TABLE "invitations" ADD CONSTRAINT "invitations_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "invitations" ADD CONSTRAINT "invitations_invited_by_users_id_fk" FOREIGN KEY ("invited_by") REFERENCES "public"."users"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_batch_id_batches_id_fk" FOREIGN KEY ("batch_id") REFERENCES "public"."batches"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_molecule_id_molecules_id_fk" FOREIGN KEY ("molecule_id") REFERENCES "public"."molecules"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_created_by_users_id_fk" FOREIGN KEY ("created_by") REFERENCES "public"."users"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
 CREATE INDEX "invitations_team" ON "invitations" USING btree ("team_id","created_at");--> statement-breakpoint
+CREATE INDEX "partner_links_team" ON "partner_links" USING btree ("team_id","created_at");--> statement-breakpoint
 CREATE INDEX "events_team" ON "events" USING btree ("team_id","id");

@@ -13,6 +13,7 @@ export const lowestRole = {
   'submit bulk batches': 'modeler',
   'cancel tasks': 'modeler',
   'rerun tasks': 'modeler',
+  'share with partners': 'modeler',
   'manage members': 'lead',
   'manage limits': 'lead',
   'read the record': 'lead',

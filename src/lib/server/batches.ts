@@ -2,7 +2,7 @@
 import { and, asc, count, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
 import { db } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
-import { notFound, type Member } from './member';
+import { notFound, type InTeam, type Member } from './member';
 
 export type TaskState = (typeof tasks.$inferSelect)['state'];
 
@@ -181,7 +181,7 @@ export async function listRows(member: Member, batchId: string, page: number, pa
 }
 
 /** A batch of the member's team; a draft only for its maker. */
-export async function get(member: Member, batchId: string) {
+export async function get(member: InTeam, batchId: string) {
   const [batch] = await db
     .select({
       id: batches.id,

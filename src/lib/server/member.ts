@@ -10,6 +10,9 @@ export interface Member {
   readonly address?: string;
 }
 
+/** Whose data a query reads, where it was settled before that the asker may; a partner with a link has no account. */
+export type InTeam = Pick<Member, 'teamId'> & Partial<Pick<Member, 'userId'>>;
+
 /** Throws 403 unless the member's role may do the thing. */
 export function require(member: Member, permission: Permission): void {
   if (!may(member.role, permission)) {

@@ -3,10 +3,10 @@ import { and, eq } from 'drizzle-orm';
 import { drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
 import { molecules } from './db/schema';
-import { notFound, type Member } from './member';
+import { notFound, type InTeam, type Member } from './member';
 
 /** A molecule of the member's team. */
-export async function get(member: Member, moleculeId: string) {
+export async function get(member: InTeam, moleculeId: string) {
   const [molecule] = await db
     .select()
     .from(molecules)

@@ -19,6 +19,8 @@ const limits = {
   'letter to an address': { capacity: 4, perMinute: 0.1 },
   'letter from a client': { capacity: 10, perMinute: 0.5 },
   'try a letter from a client': { capacity: 20, perMinute: 2 },
+  'open a partner link from a client': { capacity: 60, perMinute: 20 },
+  'password of a partner link': { capacity: 10, perMinute: 1 },
   'submit as a member': { capacity: 60, perMinute: 20 },
 } as const satisfies Record<string, Limit>;
 export type LimitName = keyof typeof limits;

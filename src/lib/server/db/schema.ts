@@ -236,6 +236,37 @@ export const entries = pgTable(
   ],
 );
 
+/**
+ * Links by which partners without an account see one batch or one molecule and take its bundle. The secret itself is
+ * only in the link; revoking or expiry ends it at once.
+ */
+export const partnerLinks = pgTable(
+  'partner_links',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    batchId: uuid('batch_id').references(() => batches.id, { onDelete: 'cascade' }),
+    moleculeId: uuid('molecule_id').references(() => molecules.id, { onDelete: 'cascade' }),
+    tokenHash: text('token_hash').notNull().unique(),
+    /** argon2id; null where the link alone is enough. */
+    passwordHash: text('password_hash'),
+    createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    revokedAt: moment('revoked_at'),
+    downloads: integer('downloads').notNull().default(0),
+  },
+  (table) => [
+    index('partner_links_team').on(table.teamId, table.createdAt),
+    check(
+      'partner_links_one_subject',
+      sql`(${table.batchId} is null) <> (${table.moleculeId} is null)`,
+    ),
+  ],
+);
+
 /** Stored answers, one for each team, molecule, kind, settings and engine version. */
 export const results = pgTable(
   'results',
