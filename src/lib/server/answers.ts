@@ -79,6 +79,16 @@ export async function resultIdsOf(
   return rows.flatMap(({ id }) => id ?? []);
 }
 
+/** What results are, without their numbers, the newest first. */
+export function summarize(ids: readonly string[]) {
+  const { id, kind, model, engineVersion } = results;
+  return db
+    .select({ id, kind, model, engineVersion })
+    .from(results)
+    .where(inArray(results.id, [...ids]))
+    .orderBy(desc(results.createdAt), asc(results.id));
+}
+
 /** Reads answers by their ids, in the order of their kinds and the newest first. */
 export async function readAnswers(ids: readonly string[], atomCount: number): Promise<Answer[]> {
   if (ids.length === 0) return [];

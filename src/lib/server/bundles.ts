@@ -14,7 +14,7 @@ import { db } from './db';
 import { entries, molecules } from './db/schema';
 import { recordEvent } from './events';
 import { require, type InTeam, type Member } from './member';
-import { get as getMolecule, readStored } from './molecules';
+import { get as getMolecule, nameOf, readStored } from './molecules';
 
 /** A row to be bundled: a molecule under the name it was sent with. */
 interface BundledRow {
@@ -38,12 +38,7 @@ export async function bundleMolecule(member: Member, moleculeId: string): Promis
 /** As `bundleMolecule`, for who may have it without being a member. */
 export async function packMolecule(team: InTeam, moleculeId: string): Promise<Bundle> {
   const molecule = await getMolecule(team, moleculeId);
-  const [entry] = await db
-    .select({ name: entries.name })
-    .from(entries)
-    .where(eq(entries.moleculeId, moleculeId))
-    .limit(1);
-  const name = entry?.name ?? molecule.formula;
+  const name = await nameOf(molecule);
   return open(team, name, rowsOf([{ name, molecule }]), null);
 }
 

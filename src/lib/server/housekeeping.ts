@@ -1,4 +1,6 @@
 /** Forgets what is of no use any more; any number of processes may do it. */
+import * as apiTokens from './api-tokens';
+import * as idempotency from './idempotency';
 import * as invitations from './invitations';
 import * as letterTokens from './letter-tokens';
 import { log } from './log';
@@ -10,6 +12,8 @@ const INTERVAL_MS = 3_600_000;
 async function tidy(): Promise<void> {
   await letterTokens.forgetExpired();
   await invitations.forgetExpired();
+  await apiTokens.forgetExpired();
+  await idempotency.forgetOld();
   await sessions.forgetEnded();
   await forgetFullBuckets();
 }

@@ -1,8 +1,8 @@
 /** Molecules of a team: their structures, drawings and answers. */
-import { and, eq } from 'drizzle-orm';
+import { and, desc, eq } from 'drizzle-orm';
 import { drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
-import { molecules } from './db/schema';
+import { batches, entries, molecules } from './db/schema';
 import { notFound, type InTeam, type Member } from './member';
 
 /** A molecule of the member's team. */
@@ -12,6 +12,18 @@ export async function get(member: InTeam, moleculeId: string) {
     .from(molecules)
     .where(and(eq(molecules.id, moleculeId), eq(molecules.teamId, member.teamId)));
   return molecule ?? notFound('molecule');
+}
+
+/** The name a molecule was last sent with; its formula where it has none. */
+export async function nameOf({ id, formula }: { id: string; formula: string }): Promise<string> {
+  const [entry] = await db
+    .select({ name: entries.name })
+    .from(entries)
+    .innerJoin(batches, eq(batches.id, entries.batchId))
+    .where(eq(entries.moleculeId, id))
+    .orderBy(desc(batches.createdAt))
+    .limit(1);
+  return entry?.name ?? formula;
 }
 
 /** The engine's molecule of a stored structure; it was checked when it was stored. */

@@ -5,7 +5,7 @@ import type { PartnerLinkForm } from '../domain/partner-links';
 import * as batches from './batches';
 import { packBatch, packMolecule, type Bundle } from './bundles';
 import { db } from './db';
-import { entries, partnerLinks, teams, users } from './db/schema';
+import { partnerLinks, teams, users } from './db/schema';
 import { environment } from './environment';
 import { recordEvent } from './events';
 import { notFound, require, type InTeam, type Member } from './member';
@@ -102,13 +102,7 @@ export async function nameOf(
   subject: Pick<PartnerLink, 'batchId' | 'moleculeId'>,
 ): Promise<string> {
   if (subject.batchId !== null) return (await batches.get(team, subject.batchId)).name;
-  const molecule = await molecules.get(team, subject.moleculeId!);
-  const [entry] = await db
-    .select({ name: entries.name })
-    .from(entries)
-    .where(eq(entries.moleculeId, molecule.id))
-    .limit(1);
-  return entry?.name ?? molecule.formula;
+  return molecules.nameOf(await molecules.get(team, subject.moleculeId!));
 }
 
 /** What a partner is told of the thing shared. */

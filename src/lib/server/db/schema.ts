@@ -24,6 +24,7 @@ import {
   uuid,
 } from 'drizzle-orm/pg-core';
 import { roles } from '../../domain/roles';
+import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
@@ -40,7 +41,7 @@ export const taskStateEnum = pgEnum('task_state', [
   'cancelled',
 ]);
 export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
-export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload']);
+export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload', 'program']);
 export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
 
@@ -354,6 +355,50 @@ export const profileCurves = pgTable(
     createdAt: created(),
   },
   (table) => [primaryKey({ columns: [table.profileId, table.model, table.relaxed] })],
+);
+
+/** Tokens by which programs ask in a person's name, in one team; the token itself is shown once. */
+export const apiTokens = pgTable(
+  'api_tokens',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    name: text('name').notNull(),
+    tokenHash: text('token_hash').notNull().unique(),
+    scopes: text('scopes').array().$type<readonly ApiScope[]>().notNull(),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    usedAt: moment('used_at'),
+  },
+  (table) => [index('api_tokens_user').on(table.userId, table.createdAt)],
+);
+
+/** Answers to submissions that carried an idempotency key, so that a repeated one is answered and not done again. */
+export const idempotentAnswers = pgTable(
+  'idempotent_answers',
+  {
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    key: text('key').notNull(),
+    /** SHA-256 of the request, so that a key is not used for another one. */
+    requestDigest: text('request_digest').notNull(),
+    /** Null while the request is carried out. */
+    answer: jsonb('answer'),
+    createdAt: created(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.teamId, table.userId, table.key] }),
+    index('idempotent_answers_created').on(table.createdAt),
+  ],
 );
 
 /** One computation of one entry. The row is the only truth shown to people; the queue's own state is plumbing. */
