@@ -45,6 +45,13 @@ export const signUpSchema = z
   });
 export type SignUp = z.output<typeof signUpSchema>;
 
+/** A sign-up by an invitation, which names the address already. */
+export const joinSchema = z.object({
+  token: z.string().max(100),
+  name: nameSchema,
+  password: newPasswordSchema,
+});
+
 export const signInSchema = z.object({ email: addressSchema, password: givenPasswordSchema });
 
 /** A sign-in that first confirms the address, with the secret of the letter. */

@@ -13,8 +13,10 @@ export const lowestRole = {
   'submit bulk batches': 'modeler',
   'cancel tasks': 'modeler',
   'rerun tasks': 'modeler',
+  'share with partners': 'modeler',
   'manage members': 'lead',
   'manage limits': 'lead',
+  'read the record': 'lead',
   'delete results': 'lead',
 } as const satisfies Record<string, Role>;
 export type Permission = keyof typeof lowestRole;

@@ -2,7 +2,7 @@
 import { and, asc, desc, eq, inArray, isNotNull } from 'drizzle-orm';
 import { db } from './db';
 import { batches, conformers, entries, profileCurves, profiles, results, tasks } from './db/schema';
-import type { Member } from './member';
+import type { InTeam } from './member';
 import { unpack } from './packing';
 
 export interface StoredConformer {
@@ -59,7 +59,7 @@ export interface Answer {
 
 /** The results of a molecule's finished tasks in the member's team, those of one batch where it is named. */
 export async function resultIdsOf(
-  member: Member,
+  member: InTeam,
   moleculeId: string,
   batchId: string | null = null,
 ): Promise<string[]> {
@@ -77,6 +77,16 @@ export async function resultIdsOf(
       ),
     );
   return rows.flatMap(({ id }) => id ?? []);
+}
+
+/** What results are, without their numbers, the newest first. */
+export function summarize(ids: readonly string[]) {
+  const { id, kind, model, engineVersion } = results;
+  return db
+    .select({ id, kind, model, engineVersion })
+    .from(results)
+    .where(inArray(results.id, [...ids]))
+    .orderBy(desc(results.createdAt), asc(results.id));
 }
 
 /** Reads answers by their ids, in the order of their kinds and the newest first. */

@@ -1,8 +1,9 @@
 /** Batches as their team sees them. */
-import { and, asc, count, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, desc, eq, gt, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
+import type { Remark } from '../domain/submission';
 import { db } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
-import { notFound, type Member } from './member';
+import { notFound, type InTeam, type Member } from './member';
 
 export type TaskState = (typeof tasks.$inferSelect)['state'];
 
@@ -33,17 +34,83 @@ export function submittedBy(member: Member, whose: Whose) {
   );
 }
 
+const batchColumns = {
+  id: batches.id,
+  name: batches.name,
+  submittedAt: sql<Date>`${batches.submittedAt}`.mapWith(batches.createdAt),
+  maker: users.name,
+};
+
+/** Where a list of batches goes on: after the one submitted at this time with this id. */
+export type AfterBatch = readonly [submittedAt: string, id: string];
+
+/** Submitted batches of a team after a place, the newest first, with the states of their tasks. */
+export async function listAfter(member: Member, after: AfterBatch | null, count: number) {
+  const rows = await db
+    // A Date holds milliseconds, the database microseconds: the place in the list is told in full.
+    .select({ ...batchColumns, place: sql<string>`${batches.submittedAt}::text` })
+    .from(batches)
+    .leftJoin(users, eq(users.id, batches.createdBy))
+    .where(
+      and(
+        eq(batches.teamId, member.teamId),
+        isNotNull(batches.submittedAt),
+        after
+          ? sql`(${batches.submittedAt}, ${batches.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)`
+          : undefined,
+      ),
+    )
+    .orderBy(desc(batches.submittedAt), desc(batches.id))
+    .limit(count);
+  const states = await statesOf(rows.map(({ id }) => id));
+  return rows.map((row) => ({ ...row, counts: states.get(row.id) ?? noTasks }));
+}
+
+/** Rows of a batch after a position, in their order, with the states of their tasks. */
+export async function listEntriesAfter(
+  member: Member,
+  batchId: string,
+  after: number,
+  count: number,
+) {
+  const batch = await get(member, batchId);
+  return db
+    .select({
+      id: entries.id,
+      position: entries.position,
+      name: entries.name,
+      verdict: entries.verdict,
+      remarks: sql<Remark[]>`${entries.remarks}`,
+      moleculeId: entries.moleculeId,
+      counts: sql<StateCounts>`json_build_object(
+        'queued', ${stateColumns.queued}, 'running', ${stateColumns.running}, 'done', ${stateColumns.done},
+        'failed', ${stateColumns.failed}, 'cancelled', ${stateColumns.cancelled})`,
+    })
+    .from(entries)
+    .leftJoin(tasks, eq(tasks.entryId, entries.id))
+    .where(and(eq(entries.batchId, batch.id), gt(entries.position, after)))
+    .groupBy(entries.id)
+    .orderBy(asc(entries.position))
+    .limit(count);
+}
+
+/** The states of the tasks of batches, by batch. */
+async function statesOf(ids: readonly string[]): Promise<Map<string, StateCounts>> {
+  if (ids.length === 0) return new Map();
+  const rows = await db
+    .select({ batchId: tasks.batchId, ...stateColumns })
+    .from(tasks)
+    .where(inArray(tasks.batchId, [...ids]))
+    .groupBy(tasks.batchId);
+  return new Map(rows.map(({ batchId, ...counts }) => [batchId, counts]));
+}
+
 /** One page of a team's submitted batches, the newest first, with the states of their tasks. */
 export async function list(member: Member, page: number, pageSize: number, whose: Whose = 'team') {
   const own = submittedBy(member, whose);
   const [{ total }] = await db.select({ total: count() }).from(batches).where(own);
   const rows = await db
-    .select({
-      id: batches.id,
-      name: batches.name,
-      submittedAt: sql<Date>`${batches.submittedAt}`.mapWith(batches.createdAt),
-      maker: users.name,
-    })
+    .select(batchColumns)
     .from(batches)
     .leftJoin(users, eq(users.id, batches.createdBy))
     .where(own)
@@ -52,11 +119,7 @@ export async function list(member: Member, page: number, pageSize: number, whose
     .offset((page - 1) * pageSize);
   const ids = rows.map(({ id }) => id);
   if (ids.length === 0) return { total, rows: [] };
-  const states = await db
-    .select({ batchId: tasks.batchId, ...stateColumns })
-    .from(tasks)
-    .where(inArray(tasks.batchId, ids))
-    .groupBy(tasks.batchId);
+  const states = await statesOf(ids);
   const sizes = await db
     .select({ batchId: entries.batchId, rows: count() })
     .from(entries)
@@ -65,10 +128,7 @@ export async function list(member: Member, page: number, pageSize: number, whose
   return {
     total,
     rows: rows.map((row) => {
-      const { batchId: _batchId, ...counts } = states.find(({ batchId }) => batchId === row.id) ?? {
-        batchId: row.id,
-        ...noTasks,
-      };
+      const counts = states.get(row.id) ?? noTasks;
       const size = sizes.find(({ batchId }) => batchId === row.id)?.rows ?? 0;
       return { ...row, size, counts };
     }),
@@ -234,7 +294,7 @@ export async function listRows(member: Member, batchId: string, page: number, pa
 }
 
 /** A batch of the member's team; a draft only for its maker. */
-export async function get(member: Member, batchId: string) {
+export async function get(member: InTeam, batchId: string) {
   const [batch] = await db
     .select({
       id: batches.id,

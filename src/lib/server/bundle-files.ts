@@ -215,19 +215,21 @@ function strainTable({ molecule }: BundledMolecule, { details }: Answer): string
 }
 
 /** An answer as JSON, with full coordinates; the schema is beside it in the bundle. */
-function asJson({ name, smiles }: BundledMolecule, answer: Answer) {
+export function asJson({ name, smiles }: Pick<BundledMolecule, 'name' | 'smiles'>, answer: Answer) {
   const { conformers, profiles, id: _id, ...rest } = answer;
   const plain = (coordinates: Float64Array): number[] => [...coordinates];
   return {
     name,
     smiles,
     ...rest,
+    warnings: [...answer.warnings],
     conformers: conformers.map((conformer) => ({
       ...conformer,
       coordinates: plain(conformer.coordinates),
     })),
     profiles: profiles.map((profile) => ({
       ...profile,
+      torsion: [...profile.torsion],
       points: profile.points.map((point) => ({ ...point, coordinates: plain(point.coordinates) })),
       stationary: profile.stationary.map((point) => ({
         ...point,

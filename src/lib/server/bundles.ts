@@ -13,8 +13,8 @@ import { filesOf, type BundleFile } from './bundle-files';
 import { db } from './db';
 import { entries, molecules } from './db/schema';
 import { recordEvent } from './events';
-import { require, type Member } from './member';
-import { get as getMolecule, readStored } from './molecules';
+import { require, type InTeam, type Member } from './member';
+import { get as getMolecule, nameOf, readStored } from './molecules';
 
 /** A row to be bundled: a molecule under the name it was sent with. */
 interface BundledRow {
@@ -30,15 +30,16 @@ export interface Bundle {
 /** The bundle of one molecule, with all answers the team has for it. */
 export async function bundleMolecule(member: Member, moleculeId: string): Promise<Bundle> {
   require(member, 'download bundles');
-  const molecule = await getMolecule(member, moleculeId);
-  const [entry] = await db
-    .select({ name: entries.name })
-    .from(entries)
-    .where(eq(entries.moleculeId, moleculeId))
-    .limit(1);
-  const name = entry?.name ?? molecule.formula;
-  await recordEvent(db, member, 'download bundle', moleculeId);
-  return open(member, name, rowsOf([{ name, molecule }]), null);
+  const bundle = await packMolecule(member, moleculeId);
+  await recordEvent(db, member, 'download bundle', `molecule:${moleculeId}`);
+  return bundle;
+}
+
+/** As `bundleMolecule`, for who may have it without being a member. */
+export async function packMolecule(team: InTeam, moleculeId: string): Promise<Bundle> {
+  const molecule = await getMolecule(team, moleculeId);
+  const name = await nameOf(molecule);
+  return open(team, name, rowsOf([{ name, molecule }]), null);
 }
 
 /** The bundle of a batch, or of the chosen rows of it, row by row. */
@@ -48,9 +49,19 @@ export async function bundleBatch(
   chosen: readonly string[] = [],
 ): Promise<Bundle> {
   require(member, 'download bundles');
-  const batch = await batches.get(member, batchId);
-  await recordEvent(db, member, 'download bundle', batchId);
-  return open(member, batch.name, batchRows(batch.id, chosen), batch.id);
+  const bundle = await packBatch(member, batchId, chosen);
+  await recordEvent(db, member, 'download bundle', `batch:${batchId}`);
+  return bundle;
+}
+
+/** As `bundleBatch`, for who may have it without being a member. */
+export async function packBatch(
+  team: InTeam,
+  batchId: string,
+  chosen: readonly string[] = [],
+): Promise<Bundle> {
+  const batch = await batches.get(team, batchId);
+  return open(team, batch.name, batchRows(batch.id, chosen), batch.id);
 }
 
 async function* rowsOf(rows: readonly BundledRow[]): AsyncGenerator<BundledRow> {
@@ -86,14 +97,14 @@ async function* batchRows(batchId: string, chosen: readonly string[]): AsyncGene
 }
 
 function open(
-  member: Member,
+  team: InTeam,
   name: string,
   rows: AsyncGenerator<BundledRow>,
   batchId: string | null,
 ): Bundle {
   const archive = new ZipArchive({ zlib: { level: 6 } });
   const nameFor = createNamer();
-  fill(archive, member, name, rows, batchId).catch((error: unknown) =>
+  fill(archive, team, name, rows, batchId).catch((error: unknown) =>
     archive.destroy(error instanceof Error ? error : new Error(String(error))),
   );
   return { fileName: `${nameFor(name)}.zip`, archive };
@@ -112,7 +123,7 @@ interface ManifestAnswer {
 /** Writes file after file, each only when the one before it has gone out, and the manifest last. */
 async function fill(
   archive: ZipArchive,
-  member: Member,
+  team: InTeam,
   name: string,
   rows: AsyncGenerator<BundledRow>,
   batchId: string | null,
@@ -128,7 +139,7 @@ async function fill(
     await written;
   };
   for await (const row of rows) {
-    const found = await answersOf(member, row, batchId);
+    const found = await answersOf(team, row, batchId);
     if (found.length === 0) continue;
     const bundled = {
       name: row.name,
@@ -166,9 +177,9 @@ async function fill(
 }
 
 async function answersOf(
-  member: Member,
+  team: InTeam,
   { molecule }: BundledRow,
   batchId: string | null,
 ): Promise<Answer[]> {
-  return readAnswers(await resultIdsOf(member, molecule.id, batchId), molecule.atomCount);
+  return readAnswers(await resultIdsOf(team, molecule.id, batchId), molecule.atomCount);
 }

@@ -5,7 +5,7 @@ import { db, type Executor } from './db';
 import { batches, entries, molecules } from './db/schema';
 import { notFound, require, type Member } from './member';
 import { readRows, type ReadRow } from './reading';
-import { splitRows } from './rows';
+import { splitRows, type RawRow } from './rows';
 
 /** Rows are written in chunks of this size, so that no statement grows without bound. */
 const CHUNK = 200;
@@ -35,6 +35,16 @@ export async function readUpload(
   bytes: AsyncIterable<Uint8Array>,
   report: (progress: ReadingProgress) => void,
 ): Promise<string> {
+  return readIntoDraft(member, draft, splitRows(bytes, format), report);
+}
+
+/** As `readUpload`, of rows that are split already. */
+export async function readIntoDraft(
+  member: Member,
+  draft: Omit<DraftOptions, 'format'>,
+  rows: AsyncIterable<RawRow>,
+  report: (progress: ReadingProgress) => void,
+): Promise<string> {
   const batchId = await openDraft(member, draft);
   let progress: ReadingProgress = { rows: 0, errors: 0 };
   let chunk: ReadRow[] = [];
@@ -46,7 +56,7 @@ export async function readUpload(
     report(progress);
   };
   try {
-    for await (const row of readRows(splitRows(bytes, format), draft.reading)) {
+    for await (const row of readRows(rows, draft.reading)) {
       chunk.push(row);
       if (chunk.length >= CHUNK) await write();
     }

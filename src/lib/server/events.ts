@@ -3,15 +3,23 @@ import type { Executor } from './db';
 import { events } from './db/schema';
 import type { Member } from './member';
 
+/** Who did it; a partner with a link has no account. */
+type Actor = Pick<Member, 'teamId' | 'address'> & { readonly userId: string | null };
+
 /** Adds one line to a team's record, as a part of the caller's transaction. */
 export async function recordEvent(
   executor: Executor,
-  member: Pick<Member, 'userId' | 'teamId'>,
+  actor: Actor,
   action: string,
   subject: string,
   details: Record<string, unknown> = {},
 ): Promise<void> {
-  await executor
-    .insert(events)
-    .values({ teamId: member.teamId, actorId: member.userId, action, subject, details });
+  await executor.insert(events).values({
+    teamId: actor.teamId,
+    actorId: actor.userId,
+    action,
+    subject,
+    address: actor.address ?? '',
+    details,
+  });
 }

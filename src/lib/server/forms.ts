@@ -14,6 +14,11 @@ export interface FormFaults {
 /** No values, or no errors: what a form answers where there is nothing to say. */
 export const nothing: Record<string, string> = {};
 
+/** The one fault of a form that was read without any. */
+export const faultOf = (field: string, message: string): Record<string, string> => ({
+  [field]: message,
+});
+
 export type ReadForm<T> =
   | { readonly data: T; readonly values: Record<string, string> }
   | { readonly data: null; readonly faults: FormFaults };

@@ -1,5 +1,8 @@
 /** Forgets what is of no use any more; any number of processes may do it. */
+import * as apiTokens from './api-tokens';
 import * as drafts from './drafts';
+import * as idempotency from './idempotency';
+import * as invitations from './invitations';
 import * as letterTokens from './letter-tokens';
 import { log } from './log';
 import * as molecules from './molecules';
@@ -13,6 +16,9 @@ export async function tidy(): Promise<void> {
   await drafts.forgetOld();
   await molecules.forgetUnused();
   await letterTokens.forgetExpired();
+  await invitations.forgetExpired();
+  await apiTokens.forgetExpired();
+  await idempotency.forgetOld();
   await sessions.forgetEnded();
   await forgetFullBuckets();
 }

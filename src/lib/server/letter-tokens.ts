@@ -1,8 +1,8 @@
 /** Single-use secrets that are sent by mail; only their hashes are stored. */
 import { and, eq, gt, isNull, lt, sql } from 'drizzle-orm';
-import { createHash, randomBytes } from 'node:crypto';
 import { db, type Executor } from './db';
 import { letterTokens, users } from './db/schema';
+import { hashSecret, makeSecret } from './secrets';
 
 export type LetterPurpose = (typeof letterTokens.purpose.enumValues)[number];
 
@@ -12,11 +12,9 @@ export const LETTER_HOURS: Record<LetterPurpose, number> = {
   'reset-password': 1,
 };
 
-const hashToken = (token: string) => createHash('sha256').update(token).digest('hex');
-
 const isUsable = (token: string, purpose: LetterPurpose) =>
   and(
-    eq(letterTokens.tokenHash, hashToken(token)),
+    eq(letterTokens.tokenHash, hashSecret(token)),
     eq(letterTokens.purpose, purpose),
     isNull(letterTokens.usedAt),
     gt(letterTokens.expiresAt, sql`now()`),
@@ -29,9 +27,9 @@ export async function issue(
   purpose: LetterPurpose,
 ): Promise<string> {
   await revoke(executor, userId, purpose);
-  const token = randomBytes(32).toString('base64url');
+  const token = makeSecret();
   await executor.insert(letterTokens).values({
-    tokenHash: hashToken(token),
+    tokenHash: hashSecret(token),
     userId,
     purpose,
     expiresAt: sql`now() + make_interval(hours => ${LETTER_HOURS[purpose]})`,

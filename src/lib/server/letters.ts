@@ -1,7 +1,11 @@
 /** What the letters say, as plain text and as HTML made from the same lines. */
+import type { Role } from '../domain/roles';
 import { environment } from './environment';
 import { LETTER_HOURS } from './letter-tokens';
 import type { Letter } from './mail';
+
+/** How long an invitation is good for. */
+export const INVITATION_DAYS = 7;
 
 interface Content {
   readonly subject: string;
@@ -81,5 +85,37 @@ export function passwordChangedLetter(name: string): Letter {
     ],
     link: { label: 'This was not me', path: '/forgot' },
     closing: 'If this was you, there is nothing to do.',
+  });
+}
+
+/** Article and noun of a role: "a chemist". */
+const aRole = (role: Role) => `a ${role}`;
+
+export function invitationLetter(given: {
+  team: string;
+  lead: string;
+  role: Role;
+  token: string;
+}): Letter {
+  return compose({
+    subject: `Join ${given.team} on Windlass`,
+    greeting: 'Hello,',
+    lines: [
+      `${given.lead} asks you to join the team ${given.team} as ${aRole(given.role)}. On Windlass teams work with the shapes of molecules: conformers, torsions, and what each turn about a bond costs.`,
+    ],
+    link: { label: 'Look at the invitation', path: `/invitation?token=${given.token}` },
+    closing: `The link works once, for this address only, within ${INVITATION_DAYS} days. If you do not know the sender, leave this letter alone.`,
+  });
+}
+
+export function memberRemovedLetter(name: string, team: string): Letter {
+  return compose({
+    subject: `You are no longer in ${team}`,
+    greeting: `Hello ${name},`,
+    lines: [
+      `A lead of ${team} took you out of the team. What you submitted there stays with the team; your account and your other teams are as they were.`,
+    ],
+    link: { label: 'Open Windlass', path: '/desk' },
+    closing: 'If this surprises you, ask a lead of the team.',
   });
 }

@@ -6,7 +6,12 @@ export interface Member {
   readonly userId: string;
   readonly teamId: string;
   readonly role: Role;
+  /** Where the request came from, for the record; absent where none asks. */
+  readonly address?: string;
 }
+
+/** Whose data a query reads, where it was settled before that the asker may; a partner with a link has no account. */
+export type InTeam = Pick<Member, 'teamId'> & Partial<Pick<Member, 'userId'>>;
 
 /** Throws 403 unless the member's role may do the thing. */
 export function require(member: Member, permission: Permission): void {

@@ -1,17 +1,29 @@
 /** Molecules of a team: their structures, drawings and answers. */
-import { and, eq, inArray, lt, sql } from 'drizzle-orm';
+import { and, desc, eq, inArray, lt, sql } from 'drizzle-orm';
 import { atomLabel, drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
-import { entries, molecules, results } from './db/schema';
-import { notFound, type Member } from './member';
+import { batches, entries, molecules, results } from './db/schema';
+import { notFound, type InTeam, type Member } from './member';
 
 /** A molecule of the member's team. */
-export async function get(member: Member, moleculeId: string) {
+export async function get(member: InTeam, moleculeId: string) {
   const [molecule] = await db
     .select()
     .from(molecules)
     .where(and(eq(molecules.id, moleculeId), eq(molecules.teamId, member.teamId)));
   return molecule ?? notFound('molecule');
+}
+
+/** The name a molecule was last sent with; its formula where it has none. */
+export async function nameOf({ id, formula }: { id: string; formula: string }): Promise<string> {
+  const [entry] = await db
+    .select({ name: entries.name })
+    .from(entries)
+    .innerJoin(batches, eq(batches.id, entries.batchId))
+    .where(eq(entries.moleculeId, id))
+    .orderBy(desc(batches.createdAt))
+    .limit(1);
+  return entry?.name ?? formula;
 }
 
 /** The engine's molecule of a stored structure; it was checked when it was stored. */

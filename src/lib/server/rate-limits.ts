@@ -19,6 +19,10 @@ const limits = {
   'letter to an address': { capacity: 4, perMinute: 0.1 },
   'letter from a client': { capacity: 10, perMinute: 0.5 },
   'try a letter from a client': { capacity: 20, perMinute: 2 },
+  'open a partner link from a client': { capacity: 60, perMinute: 20 },
+  'password of a partner link': { capacity: 10, perMinute: 1 },
+  'wrong token from a client': { capacity: 20, perMinute: 5 },
+  'ask the interface as a member': { capacity: 600, perMinute: 600 },
   'submit as a member': { capacity: 60, perMinute: 20 },
 } as const satisfies Record<string, Limit>;
 export type LimitName = keyof typeof limits;
@@ -44,8 +48,17 @@ export function clientNetwork(address: string): string {
   return `${groups.map((group) => parseInt(group, 16).toString(16)).join(':')}::/64`;
 }
 
-/** Takes one token; answers the seconds to wait when there is none. */
-async function takeToken(bucket: Bucket): Promise<number | null> {
+/** What came of taking from a bucket. */
+export interface Taken {
+  readonly capacity: number;
+  /** What is left in the bucket. */
+  readonly left: number;
+  /** Seconds to wait when there was nothing; null when something was taken. */
+  readonly wait: number | null;
+}
+
+/** Takes one token from a bucket. */
+export async function takeFrom(bucket: Bucket): Promise<Taken> {
   const { capacity: base, perMinute } = limits[bucket[0]];
   const capacity = base * environment.WINDLASS_RATE_LIMIT_FACTOR;
   const perSecond = (perMinute * environment.WINDLASS_RATE_LIMIT_FACTOR) / 60;
@@ -60,20 +73,21 @@ async function takeToken(bucket: Bucket): Promise<number | null> {
       set: { tokens: sql`${level} - 1`, refilledAt: sql`now()` },
       setWhere: sql`${level} >= 1`,
     })
-    .returning({ key: rateBuckets.key });
-  if (taken.length > 0) return null;
+    .returning({ left: rateBuckets.tokens });
+  if (taken[0]) return { capacity, left: taken[0].left, wait: null };
   const [bucketNow] = await db
     .select({ level: sql<number>`${level}` })
     .from(rateBuckets)
     .where(sql`${rateBuckets.key} = ${key}`);
-  return Math.max(1, Math.ceil((1 - (bucketNow?.level ?? 0)) / perSecond));
+  const left = bucketNow?.level ?? 0;
+  return { capacity, left, wait: Math.max(1, Math.ceil((1 - left) / perSecond)) };
 }
 
 /** Takes a token from every bucket; answers the longest wait in seconds when one of them is empty, else null. */
 export async function limitRate(...buckets: readonly Bucket[]): Promise<number | null> {
   let longest: number | null = null;
   for (const bucket of buckets) {
-    const wait = await takeToken(bucket);
+    const { wait } = await takeFrom(bucket);
     if (wait !== null) longest = Math.max(longest ?? 0, wait);
   }
   return longest;

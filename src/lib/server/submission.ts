@@ -60,7 +60,7 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
     if (queued + reused === 0) {
       throw new SubmissionError('Nothing in this batch can be computed with what was chosen.');
     }
-    await recordEvent(transaction, member, 'submit batch', batchId, {
+    await recordEvent(transaction, member, 'submit batch', `batch:${batchId}`, {
       name: draft.name,
       queued,
       reused,

@@ -190,7 +190,9 @@ export async function cancel(member: Member, choice: TaskChoice): Promise<number
       .where(inArray(tasks.id, ids));
     const queued = open.filter((row) => row.state === 'queued').map((row) => row.id);
     await dequeue(transaction, queued);
-    await recordEvent(transaction, member, 'cancel tasks', open[0].batchId, { tasks: ids.length });
+    await recordEvent(transaction, member, 'cancel tasks', `batch:${open[0].batchId}`, {
+      tasks: ids.length,
+    });
     const running = open.filter((row) => row.state === 'running').map((row) => row.id);
     await tell(transaction, 'task-cancelled', running);
     await tell(transaction, 'batch-changed', [...new Set(open.map((row) => row.batchId))]);
@@ -226,7 +228,9 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
       transaction,
       ids.map((id, position) => ({ id, priority: -(ahead + position) })),
     );
-    await recordEvent(transaction, member, 'rerun tasks', ended[0].batchId, { tasks: ids.length });
+    await recordEvent(transaction, member, 'rerun tasks', `batch:${ended[0].batchId}`, {
+      tasks: ids.length,
+    });
     await tell(transaction, 'batch-changed', [...new Set(ended.map((row) => row.batchId))]);
     return ids.length;
   });

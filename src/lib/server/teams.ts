@@ -1,9 +1,10 @@
 /** Teams and who belongs to them. */
-import { error } from '@sveltejs/kit';
+import { error, type Cookies } from '@sveltejs/kit';
 import type { Member } from './member';
 
 /** Names the chosen team, between visits. */
 export const TEAM_COOKIE = 'windlass-team';
+const ONE_YEAR_SECONDS = 31_536_000;
 
 /** A person in one of their teams, with the team's name: it can be handed in wherever a Member asks. */
 export interface Membership extends Member {
@@ -16,6 +17,15 @@ export function chooseMembership(
   chosenTeamId: string | undefined,
 ): Membership | null {
   return memberships.find(({ teamId }) => teamId === chosenTeamId) ?? memberships[0] ?? null;
+}
+
+/** Keeps the chosen team between visits. */
+export function rememberTeam(event: { cookies: Cookies; url: URL }, teamId: string): void {
+  event.cookies.set(TEAM_COOKIE, teamId, {
+    path: '/',
+    maxAge: ONE_YEAR_SECONDS,
+    secure: event.url.protocol === 'https:',
+  });
 }
 
 /** The person and the sign-in, in a route that only signed-in people reach. */

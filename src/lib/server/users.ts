@@ -3,7 +3,8 @@ import { eq, sql } from 'drizzle-orm';
 import type { SignUp } from '../domain/accounts';
 import { findPasswordFault } from '../domain/passwords';
 import { db, type Executor } from './db';
-import { events, memberships, teams, users } from './db/schema';
+import { events, memberships, users } from './db/schema';
+import * as invitations from './invitations';
 import * as letterTokens from './letter-tokens';
 import {
   alreadyMemberLetter,
@@ -13,6 +14,7 @@ import {
 } from './letters';
 import { log } from './log';
 import { post, type Letter } from './mail';
+import { openTeamWithin } from './memberships';
 import { hashPassword, verifyPassword } from './passwords';
 import * as sessions from './sessions';
 import type { Client } from './sessions';
@@ -66,11 +68,43 @@ async function openOwnTeam(executor: Executor, userId: string, name: string): Pr
     .where(eq(memberships.userId, userId))
     .limit(1);
   if (present.length > 0) return;
-  const [team] = await executor
-    .insert(teams)
-    .values({ name: `${name}’s team` })
-    .returning({ id: teams.id });
-  await executor.insert(memberships).values({ teamId: team!.id, userId, role: 'lead' });
+  await openTeamWithin(executor, { userId }, `${name}’s team`);
+}
+
+/**
+ * Opens an account for the holder of an invitation's letter, which proves the address, and makes it a member.
+ * @returns the team, or null when the invitation does not work (any more) or the address has a confirmed account
+ */
+export async function signUpByInvitation(
+  given: { readonly token: string; readonly name: string; readonly password: string },
+  address: string,
+): Promise<string | null> {
+  const invitation = await invitations.find(given.token);
+  if (!invitation) return null;
+  const passwordHash = await hashPassword(given.password);
+  const { name } = given;
+  return db.transaction(async (tx) => {
+    const [opened] = await tx
+      .insert(users)
+      .values({ name, email: invitation.email, passwordHash, confirmedAt: sql`now()` })
+      .onConflictDoUpdate({
+        target: users.email,
+        set: { name, passwordHash, confirmedAt: sql`now()` },
+        setWhere: sql`${users.confirmedAt} is null`,
+      })
+      .returning({ id: users.id });
+    if (!opened) return null;
+    await letterTokens.revoke(tx, opened.id, 'confirm-address');
+    await recordAccountEvent(tx, opened.id, 'signed up');
+    const person = { userId: opened.id, email: invitation.email, address };
+    return invitations.take(tx, person, given.token);
+  });
+}
+
+/** True when the address has an account that somebody confirmed. */
+export async function hasAccount(email: string): Promise<boolean> {
+  const user = await findByEmail(email);
+  return user !== null && user.confirmedAt !== null;
 }
 
 /**

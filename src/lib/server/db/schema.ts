@@ -24,6 +24,7 @@ import {
   uuid,
 } from 'drizzle-orm/pg-core';
 import { roles } from '../../domain/roles';
+import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
@@ -40,7 +41,7 @@ export const taskStateEnum = pgEnum('task_state', [
   'cancelled',
 ]);
 export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
-export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload']);
+export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload', 'program']);
 export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
 
@@ -120,6 +121,28 @@ export const memberships = pgTable(
   (table) => [
     primaryKey({ columns: [table.teamId, table.userId] }),
     index('memberships_user').on(table.userId),
+  ],
+);
+
+/** Invitations to a team, bound to an address and good once; the secret itself is only in the letter. */
+export const invitations = pgTable(
+  'invitations',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    email: text('email').notNull(),
+    role: roleEnum('role').notNull(),
+    tokenHash: text('token_hash').notNull().unique(),
+    invitedBy: uuid('invited_by').references(() => users.id, { onDelete: 'set null' }),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    acceptedAt: moment('accepted_at'),
+  },
+  (table) => [
+    index('invitations_team').on(table.teamId, table.createdAt),
+    check('invitations_email_lower_case', sql`${table.email} = lower(${table.email})`),
   ],
 );
 
@@ -217,6 +240,37 @@ export const entries = pgTable(
   ],
 );
 
+/**
+ * Links by which partners without an account see one batch or one molecule and take its bundle. The secret itself is
+ * only in the link; revoking or expiry ends it at once.
+ */
+export const partnerLinks = pgTable(
+  'partner_links',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    batchId: uuid('batch_id').references(() => batches.id, { onDelete: 'cascade' }),
+    moleculeId: uuid('molecule_id').references(() => molecules.id, { onDelete: 'cascade' }),
+    tokenHash: text('token_hash').notNull().unique(),
+    /** argon2id; null where the link alone is enough. */
+    passwordHash: text('password_hash'),
+    createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    revokedAt: moment('revoked_at'),
+    downloads: integer('downloads').notNull().default(0),
+  },
+  (table) => [
+    index('partner_links_team').on(table.teamId, table.createdAt),
+    check(
+      'partner_links_one_subject',
+      sql`(${table.batchId} is null) <> (${table.moleculeId} is null)`,
+    ),
+  ],
+);
+
 /** Stored answers, one for each team, molecule, kind, settings and engine version. */
 export const results = pgTable(
   'results',
@@ -306,6 +360,50 @@ export const profileCurves = pgTable(
   (table) => [primaryKey({ columns: [table.profileId, table.model, table.relaxed] })],
 );
 
+/** Tokens by which programs ask in a person's name, in one team; the token itself is shown once. */
+export const apiTokens = pgTable(
+  'api_tokens',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    name: text('name').notNull(),
+    tokenHash: text('token_hash').notNull().unique(),
+    scopes: text('scopes').array().$type<readonly ApiScope[]>().notNull(),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+    usedAt: moment('used_at'),
+  },
+  (table) => [index('api_tokens_user').on(table.userId, table.createdAt)],
+);
+
+/** Answers to submissions that carried an idempotency key, so that a repeated one is answered and not done again. */
+export const idempotentAnswers = pgTable(
+  'idempotent_answers',
+  {
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    key: text('key').notNull(),
+    /** SHA-256 of the request, so that a key is not used for another one. */
+    requestDigest: text('request_digest').notNull(),
+    /** Null while the request is carried out. */
+    answer: jsonb('answer'),
+    createdAt: created(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.teamId, table.userId, table.key] }),
+    index('idempotent_answers_created').on(table.createdAt),
+  ],
+);
+
 /** One computation of one entry. The row is the only truth shown to people; the queue's own state is plumbing. */
 export const tasks = pgTable(
   'tasks',
@@ -364,7 +462,9 @@ export const events = pgTable(
     actorId: uuid('actor_id').references(() => users.id, { onDelete: 'set null' }),
     action: text('action').notNull(),
     subject: text('subject').notNull(),
+    /** Where the request came from; empty for what the product did by itself. */
+    address: text('address').notNull().default(''),
     details: jsonb('details').notNull().default({}),
   },
-  (table) => [index('events_team_at').on(table.teamId, table.at)],
+  (table) => [index('events_team').on(table.teamId, table.id)],
 );

@@ -1,2 +1,0 @@
-CREATE INDEX "entries_remarked" ON "entries" USING btree ("batch_id","verdict") WHERE "entries"."verdict" <> 'ready';--> statement-breakpoint
-CREATE INDEX "tasks_done" ON "tasks" USING btree ("batch_id","finished_at") WHERE "tasks"."state" = 'done';

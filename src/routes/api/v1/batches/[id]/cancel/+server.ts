@@ -1,0 +1,7 @@
+import { operations } from '$lib/domain/api';
+import { serve } from '$lib/server/api';
+import * as tasks from '$lib/server/tasks';
+
+export const POST = serve(operations.cancelBatch, async ({ member, id }) => ({
+  tasks: await tasks.cancel(member, { batchId: id('id') }),
+}));

@@ -1,0 +1,14 @@
+import { operations } from '$lib/domain/api';
+import { readCursor, serve, writeCursor } from '$lib/server/api';
+import * as batches from '$lib/server/batches';
+
+export const GET = serve(operations.listRows, async ({ member, id, query }) => {
+  const after = Number(readCursor(query.cursor)?.[0] ?? 0) || 0;
+  const rows = await batches.listEntriesAfter(member, id('id'), after, query.limit + 1);
+  const items = rows.slice(0, query.limit);
+  const last = items.at(-1);
+  return {
+    items,
+    next: last && rows.length > query.limit ? writeCursor(String(last.position), last.id) : null,
+  };
+});
