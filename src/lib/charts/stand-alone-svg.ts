@@ -2,6 +2,7 @@
  * A drawing of the page as an image file that stands alone: its colors, fonts and sizes are written into it, so that it
  * looks the same in a paper, a slide or an editor as on the page.
  */
+import { plainColor } from './plain-color';
 
 export interface ExportOptions {
   /** Named in the file, for those who hear it or search for it. */
@@ -21,6 +22,7 @@ const SHAPING = [
   'stroke',
   'stroke-width',
   'stroke-opacity',
+  'stop-color',
   'stroke-dasharray',
   'stroke-linecap',
   'stroke-linejoin',
@@ -34,7 +36,9 @@ const SHAPING = [
   'dominant-baseline',
   'paint-order',
 ] as const;
-const COLORS = new Set<string>(['fill', 'stroke']);
+const COLORS = new Set<string>(['fill', 'stroke', 'stop-color']);
+const isColor = (name: string, value: string): boolean =>
+  COLORS.has(name) && value !== 'none' && !value.startsWith('url(');
 /** What an attribute left out means anyway. */
 const DEFAULTS: Readonly<Record<string, string>> = {
   'fill-opacity': '1',
@@ -115,8 +119,7 @@ function copyWithStyles(drawing: SVGSVGElement): SVGSVGElement {
   const copy = drawing.cloneNode(true) as SVGSVGElement;
   const originals = [drawing, ...drawing.querySelectorAll('*')];
   const copies = [copy, ...copy.querySelectorAll('*')];
-  const resolve = colorResolver();
-  originals.forEach((original, n) => inlineStyle(original, copies[n], resolve));
+  originals.forEach((original, n) => inlineStyle(original, copies[n]));
   for (const element of copy.querySelectorAll(`[${PAGE_ONLY}], title, desc`)) element.remove();
   for (const attribute of ['class', 'style', 'role', 'tabindex', 'id']) {
     copy.removeAttribute(attribute);
@@ -124,7 +127,7 @@ function copyWithStyles(drawing: SVGSVGElement): SVGSVGElement {
   return copy;
 }
 
-function inlineStyle(original: Element, copy: Element, resolve: (color: string) => string): void {
+function inlineStyle(original: Element, copy: Element): void {
   const style = getComputedStyle(original);
   if (style.display === 'none' || style.visibility === 'hidden') {
     copy.setAttribute(PAGE_ONLY, '');
@@ -133,37 +136,13 @@ function inlineStyle(original: Element, copy: Element, resolve: (color: string) 
   for (const name of SHAPING) {
     const value = style.getPropertyValue(name);
     if (value === '' || value === DEFAULTS[name]) copy.removeAttribute(name);
-    else copy.setAttribute(name, COLORS.has(name) ? resolve(value) : value);
+    else copy.setAttribute(name, isColor(name, value) ? plainColor(value) : value);
   }
   copy.removeAttribute('class');
   copy.removeAttribute('style');
   for (const { name } of [...copy.attributes]) {
     if (name.startsWith('aria-') || name.startsWith('data-svelte')) copy.removeAttribute(name);
   }
-}
-
-/** Colors as every program reads them: mixtures in wide color spaces become plain red, green and blue. */
-function colorResolver(): (color: string) => string {
-  const canvas = document.createElement('canvas');
-  canvas.width = canvas.height = 1;
-  const context = canvas.getContext('2d', { willReadFrequently: true })!;
-  const known = new Map<string, string>();
-  return (color) => {
-    if (color === 'none' || color.startsWith('url(')) return color;
-    let plain = known.get(color);
-    if (plain === undefined) {
-      context.clearRect(0, 0, 1, 1);
-      context.fillStyle = color;
-      context.fillRect(0, 0, 1, 1);
-      const [red, green, blue, alpha] = context.getImageData(0, 0, 1, 1).data;
-      plain =
-        alpha === 255
-          ? `rgb(${red}, ${green}, ${blue})`
-          : `rgba(${red}, ${green}, ${blue}, ${(alpha / 255).toFixed(3)})`;
-      known.set(color, plain);
-    }
-    return plain;
-  };
 }
 
 function paperSheet(box: string): SVGElement {

@@ -1,0 +1,17 @@
+/** What the sections of a molecule's page have in common. */
+import { atomLabel, type Molecule } from '../engine';
+import type { Answer } from './answers';
+
+/** Atoms in a row as people read them: "C2–C3". */
+export function bondName(molecule: Molecule, atoms: readonly number[]): string {
+  return atoms.map((atom) => atomLabel(molecule.atomicNumbers[atom], atom)).join('–');
+}
+
+/** An answer, with what tells it from others about the same; empty where it is alone. */
+export type ToldApart = Answer & { readonly distinction: string };
+
+/** What every answer says of where it came from. */
+export function provenance(answer: ToldApart) {
+  const { id, model, engineVersion, createdAt, settings, seconds, warnings, distinction } = answer;
+  return { id, model, engineVersion, createdAt, settings, seconds, warnings, distinction };
+}

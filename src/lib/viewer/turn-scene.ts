@@ -1,0 +1,139 @@
+/** The 3-D scene of a turned bond: one structure whose atoms move in place, its torsion marked, and an arc for the angle. */
+import type { StructureComponent } from 'ngl';
+import type { Skeleton } from './internal-coordinates';
+import { molblock } from './molblock';
+
+type Ngl = typeof import('ngl');
+
+export interface SceneColors {
+  readonly background: string;
+  /** Of the marked torsion and its angle. */
+  readonly mark: string;
+}
+
+/** From where the molecule is seen: along the bond, as in the Newman projection, or from the side. */
+export type Side = 'along' | 'aside';
+
+export interface TurnScene {
+  /** Moves the atoms (Å, 3N, in the frame of the Newman projection) and the arc to the angle in degrees. */
+  show(x: Float64Array, angle: number): void;
+  look(side: Side): void;
+  recolor(colors: SceneColors): void;
+  resize(): void;
+  /** Where the middle of the arc is on the canvas, pixels from its lower left corner. */
+  labelPlace(): { readonly x: number; readonly y: number };
+  /** Calls back whenever the view moves. */
+  onMove(listener: () => void): void;
+  dispose(): void;
+}
+
+/** Radius of the arc, Å, and its pieces. */
+const ARC = 1.15;
+const LABEL = 1.5;
+const PIECES = 40;
+/** Turn and tilt of the view from the side, degrees; the front atom stays nearer to the eye. */
+const ASIDE = { turn: 58, tilt: -18 };
+
+/** Builds the scene in an element. Rejects where WebGL cannot be had. */
+export async function createTurnScene(
+  ngl: Ngl,
+  element: HTMLElement,
+  skeleton: Skeleton,
+  torsion: readonly number[],
+  x: Float64Array,
+  colors: SceneColors,
+): Promise<TurnScene> {
+  const stage = new ngl.Stage(element, {
+    backgroundColor: colors.background,
+    clipDist: 0,
+    tooltip: false,
+  });
+  const component = (await stage.loadFile(new Blob([molblock(skeleton, x)]), {
+    ext: 'sdf',
+  })) as StructureComponent;
+  const quality = { sphereDetail: 1, radialSegments: 12 };
+  component.addRepresentation('licorice', { multipleBond: 'symmetric', radius: 0.13, ...quality });
+  const chain = component.addRepresentation('licorice', {
+    sele: `@${torsion.join(',')}`,
+    multipleBond: 'off',
+    radius: 0.21,
+    opacity: 0.5,
+    color: colors.mark,
+    ...quality,
+  });
+  const fan = createFan(ngl, colors.mark);
+  const shape = new ngl.Shape('angle');
+  shape.addBuffer(fan.buffer);
+  const arc = stage.addComponentFromObject(shape)!;
+  arc.addRepresentation('buffer', {});
+  let middle = 0;
+  const scene: TurnScene = {
+    show(coordinates, angle) {
+      component.structure.updatePosition(coordinates as unknown as number[], false);
+      component.updateRepresentations({ position: true });
+      fan.spread(angle);
+      middle = angle / 2;
+      stage.viewer.requestRender();
+    },
+    look(side) {
+      const matrix = stage.viewerControls.getOrientation();
+      const [place, turned, zoom] = [new ngl.Vector3(), new ngl.Quaternion(), new ngl.Vector3()];
+      matrix.decompose(place, turned, zoom);
+      const { turn, tilt } = side === 'along' ? { turn: 0, tilt: 0 } : ASIDE;
+      const radians = Math.PI / 180;
+      turned.setFromEuler(new ngl.Euler(tilt * radians, turn * radians, 0));
+      stage.viewerControls.orient(matrix.compose(place, turned, zoom));
+    },
+    recolor({ background, mark }) {
+      stage.setParameters({ backgroundColor: background });
+      chain.setColor(mark);
+      fan.recolor(mark);
+      stage.viewer.requestRender();
+    },
+    resize: () => stage.handleResize(),
+    labelPlace() {
+      const at = new ngl.Vector3(...onCircle(middle, LABEL));
+      return stage.viewerControls.getPositionOnCanvas(at) as { x: number; y: number };
+    },
+    onMove: (listener) => stage.viewerControls.signals.changed.add(listener),
+    dispose: () => stage.dispose(),
+  };
+  component.autoView(0);
+  scene.look('aside');
+  return scene;
+}
+
+/** A point round the bond at an angle: clockwise from above for an eye that looks along z, whose right is -x. */
+function onCircle(angle: number, radius: number): [number, number, number] {
+  const radians = (angle * Math.PI) / 180;
+  return [-radius * Math.sin(radians), radius * Math.cos(radians), 0];
+}
+
+/** A fan of triangles from the top to an angle, seen from both sides. */
+function createFan(ngl: Ngl, mark: string) {
+  const position = new Float32Array(PIECES * 9);
+  const color = new Float32Array(PIECES * 9);
+  const paint = (value: string): void => {
+    const { r, g, b } = new ngl.Color(value);
+    for (let n = 0; n < color.length; n += 3) color.set([r, g, b], n);
+  };
+  paint(mark);
+  const buffer = new ngl.MeshBuffer(
+    { position, color },
+    { opacity: 0.45, side: 'double', disablePicking: true },
+  );
+  return {
+    buffer,
+    spread(angle: number): void {
+      for (let n = 0; n < PIECES; n++) {
+        position.set(onCircle((angle * n) / PIECES, ARC), 9 * n + 3);
+        position.set(onCircle((angle * (n + 1)) / PIECES, ARC), 9 * n + 6);
+      }
+      buffer.setAttributes({ position });
+    },
+    recolor(value: string): void {
+      paint(value);
+      buffer.setAttributes({ color });
+    },
+  };
+}
