@@ -1,9 +1,9 @@
 /** The 3-D scene of a turned bond: one structure whose atoms move in place, its torsion marked, and an arc for the angle. */
-import type { StructureComponent } from 'ngl';
+import type * as NGL from 'ngl';
 import type { Skeleton } from './internal-coordinates';
 import { molblock } from './molblock';
 
-type Ngl = typeof import('ngl');
+type Ngl = typeof NGL;
 
 export interface SceneColors {
   readonly background: string;
@@ -29,8 +29,10 @@ export interface TurnScene {
 
 /** Radius of the arc, Å, and its pieces. */
 const ARC = 1.15;
-const LABEL = 1.5;
+const LABEL = 1.75;
 const PIECES = 40;
+/** How much nearer than a whole view of the structure the eye stands, a share. */
+const CLOSER = 0.22;
 /** Turn and tilt of the view from the side, degrees; the front atom stays nearer to the eye. */
 const ASIDE = { turn: 58, tilt: -18 };
 
@@ -50,7 +52,7 @@ export async function createTurnScene(
   });
   const component = (await stage.loadFile(new Blob([molblock(skeleton, x)]), {
     ext: 'sdf',
-  })) as StructureComponent;
+  })) as NGL.StructureComponent;
   const quality = { sphereDetail: 1, radialSegments: 12 };
   component.addRepresentation('licorice', { multipleBond: 'symmetric', radius: 0.13, ...quality });
   const chain = component.addRepresentation('licorice', {
@@ -61,17 +63,16 @@ export async function createTurnScene(
     color: colors.mark,
     ...quality,
   });
-  const fan = createFan(ngl, colors.mark);
+  const arc = createArc(ngl, colors.mark);
   const shape = new ngl.Shape('angle');
-  shape.addBuffer(fan.buffer);
-  const arc = stage.addComponentFromObject(shape)!;
-  arc.addRepresentation('buffer', {});
+  shape.addBuffer(arc.buffer);
+  stage.addComponentFromObject(shape)!.addRepresentation('buffer', {});
   let middle = 0;
   const scene: TurnScene = {
     show(coordinates, angle) {
       component.structure.updatePosition(coordinates as unknown as number[], false);
       component.updateRepresentations({ position: true });
-      fan.spread(angle);
+      arc.spread(angle);
       middle = angle / 2;
       stage.viewer.requestRender();
     },
@@ -87,7 +88,7 @@ export async function createTurnScene(
     recolor({ background, mark }) {
       stage.setParameters({ backgroundColor: background });
       chain.setColor(mark);
-      fan.recolor(mark);
+      arc.recolor(mark);
       stage.viewer.requestRender();
     },
     resize: () => stage.handleResize(),
@@ -96,9 +97,13 @@ export async function createTurnScene(
       return stage.viewerControls.getPositionOnCanvas(at) as { x: number; y: number };
     },
     onMove: (listener) => stage.viewerControls.signals.changed.add(listener),
-    dispose: () => stage.dispose(),
+    dispose() {
+      stage.dispose();
+      element.replaceChildren();
+    },
   };
   component.autoView(0);
+  stage.viewerControls.zoom(CLOSER);
   scene.look('aside');
   return scene;
 }
@@ -109,31 +114,34 @@ function onCircle(angle: number, radius: number): [number, number, number] {
   return [-radius * Math.sin(radians), radius * Math.cos(radians), 0];
 }
 
-/** A fan of triangles from the top to an angle, seen from both sides. */
-function createFan(ngl: Ngl, mark: string) {
-  const position = new Float32Array(PIECES * 9);
-  const color = new Float32Array(PIECES * 9);
+/** Lines from the bond to the top, along the arc to an angle, and back. */
+function createArc(ngl: Ngl, mark: string) {
+  const [position1, position2] = [new Float32Array(3 * PIECES), new Float32Array(3 * PIECES)];
+  const color = new Float32Array(3 * PIECES);
   const paint = (value: string): void => {
     const { r, g, b } = new ngl.Color(value);
     for (let n = 0; n < color.length; n += 3) color.set([r, g, b], n);
   };
   paint(mark);
-  const buffer = new ngl.MeshBuffer(
-    { position, color },
-    { opacity: 0.45, side: 'double', disablePicking: true },
+  const buffer = new ngl.WidelineBuffer(
+    { position1, position2, color, color2: color },
+    { linewidth: 3, disablePicking: true },
   );
+  /** Corners of the line: the bond, the arc, and the bond again. */
+  const corner = (n: number, angle: number): [number, number, number] =>
+    n === 0 || n === PIECES ? [0, 0, 0] : onCircle((angle * (n - 1)) / (PIECES - 2), ARC);
   return {
     buffer,
     spread(angle: number): void {
       for (let n = 0; n < PIECES; n++) {
-        position.set(onCircle((angle * n) / PIECES, ARC), 9 * n + 3);
-        position.set(onCircle((angle * (n + 1)) / PIECES, ARC), 9 * n + 6);
+        position1.set(corner(n, angle), 3 * n);
+        position2.set(corner(n + 1, angle), 3 * n);
       }
-      buffer.setAttributes({ position });
+      buffer.setAttributes({ position1, position2 });
     },
     recolor(value: string): void {
       paint(value);
-      buffer.setAttributes({ color });
+      buffer.setAttributes({ color, color2: color });
     },
   };
 }
