@@ -138,6 +138,8 @@ function inlineStyle(original: Element, copy: Element): void {
     if (value === '' || value === DEFAULTS[name]) copy.removeAttribute(name);
     else copy.setAttribute(name, isColor(name, value) ? plainColor(value) : value);
   }
+  // Inside a drawing a further one cuts off what stands over its edge, unless told otherwise.
+  if (original instanceof SVGSVGElement) copy.setAttribute('overflow', style.overflow);
   copy.removeAttribute('class');
   copy.removeAttribute('style');
   for (const { name } of [...copy.attributes]) {

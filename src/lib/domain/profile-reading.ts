@@ -9,7 +9,7 @@ import {
   type PeriodicCurve,
   type Profile,
   type StabilityClass,
-} from '$lib/engine/light';
+} from '../engine/light';
 
 export interface StationaryPoint {
   readonly kind: 'minimum' | 'maximum';
