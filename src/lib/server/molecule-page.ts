@@ -47,9 +47,12 @@ export async function load(member: Member, moleculeId: string) {
     batches: mentions.map(({ batchId, batchName }) => ({ id: batchId, name: batchName })),
     tasks: open,
     conformers: of('conformers').map((answer) => describeConformers(answer)),
-    scans: of('scan').flatMap((answer) =>
-      answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
-    ),
+    // A rigid profile is there to be compared with the relaxed one, so it comes after.
+    scans: of('scan')
+      .flatMap((answer) =>
+        answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
+      )
+      .toSorted((a, b) => Number(b.relaxed) - Number(a.relaxed)),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };

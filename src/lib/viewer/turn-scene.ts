@@ -5,6 +5,7 @@ import { molblock } from './molblock';
 
 type Ngl = typeof NGL;
 
+/** As `rgb(…)`. */
 export interface SceneColors {
   readonly background: string;
   /** Of the marked torsion and its angle. */
@@ -32,7 +33,7 @@ const ARC = 1.15;
 const LABEL = 1.75;
 const PIECES = 40;
 /** How much nearer than a whole view of the structure the eye stands, a share. */
-const CLOSER = 0.22;
+const CLOSER = 0.05;
 /** Turn and tilt of the view from the side, degrees; the front atom stays nearer to the eye. */
 const ASIDE = { turn: 58, tilt: -18 };
 
@@ -119,8 +120,11 @@ function createArc(ngl: Ngl, mark: string) {
   const [position1, position2] = [new Float32Array(3 * PIECES), new Float32Array(3 * PIECES)];
   const color = new Float32Array(3 * PIECES);
   const paint = (value: string): void => {
-    const { r, g, b } = new ngl.Color(value);
-    for (let n = 0; n < color.length; n += 3) color.set([r, g, b], n);
+    const shares = value
+      .match(/\d+/g)!
+      .slice(0, 3)
+      .map((part) => Number(part) / 255);
+    for (let n = 0; n < color.length; n += 3) color.set(shares, n);
   };
   paint(mark);
   const buffer = new ngl.WidelineBuffer(
