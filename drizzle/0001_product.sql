@@ -1,3 +1,4 @@
+CREATE TYPE "public"."energy_unit" AS ENUM('kcal/mol', 'kJ/mol');--> statement-breakpoint
 ALTER TYPE "public"."batch_source" ADD VALUE 'program';--> statement-breakpoint
 CREATE TABLE "api_tokens" (
 	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
@@ -54,6 +55,7 @@ CREATE TABLE "partner_links" (
 --> statement-breakpoint
 DROP INDEX "events_team_at";--> statement-breakpoint
 ALTER TABLE "events" ADD COLUMN "address" text DEFAULT '' NOT NULL;--> statement-breakpoint
+ALTER TABLE "users" ADD COLUMN "energy_unit" "energy_unit" DEFAULT 'kcal/mol' NOT NULL;--> statement-breakpoint
 ALTER TABLE "api_tokens" ADD CONSTRAINT "api_tokens_user_id_users_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."users"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "api_tokens" ADD CONSTRAINT "api_tokens_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "idempotent_answers" ADD CONSTRAINT "idempotent_answers_user_id_users_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."users"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint

@@ -1,3 +1,4 @@
+import type { EnergyUnit } from '$lib/domain/energy-units';
 import type { Membership } from '$lib/server/teams';
 
 declare global {
@@ -10,7 +11,12 @@ declare global {
 
     interface Locals {
       /** Who is signed in; null for a visitor. Pages under (app) are only reached with someone here. */
-      user: { readonly id: string; readonly email: string; readonly name: string } | null;
+      user: {
+        readonly id: string;
+        readonly email: string;
+        readonly name: string;
+        readonly energyUnit: EnergyUnit;
+      } | null;
       /** The sign-in this request belongs to. */
       sessionId: string | null;
       /** Every team the person belongs to, by name. */

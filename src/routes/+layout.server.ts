@@ -5,6 +5,7 @@ export const load: LayoutServerLoad = ({ locals }) => {
   const { user, membership, memberships } = locals;
   return {
     user: user && { name: user.name, email: user.email },
+    energyUnit: user?.energyUnit ?? ('kcal/mol' as const),
     team: membership && {
       id: membership.teamId,
       name: membership.teamName,

@@ -19,3 +19,12 @@ export function roundTicks(top: number, count = 5): number[] {
     Number((n * step).toPrecision(12)),
   );
 }
+
+/** The mark of a stationary point round the origin: a disc for a minimum, a diamond for a maximum. */
+export function pointMark(kind: 'minimum' | 'maximum', size: number): string {
+  if (kind === 'minimum') {
+    return `M${-size} 0 A${size} ${size} 0 1 1 ${size} 0 A${size} ${size} 0 1 1 ${-size} 0 Z`;
+  }
+  const tip = 1.25 * size;
+  return `M0 ${-tip} L${tip} 0 L0 ${tip} L${-tip} 0 Z`;
+}

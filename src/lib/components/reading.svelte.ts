@@ -6,6 +6,11 @@ export class Reading {
   /** K */
   temperature = $state(298.15);
   unit = $state<EnergyUnit>('kcal/mol');
+
+  constructor(temperature = 298.15, unit: EnergyUnit = 'kcal/mol') {
+    this.temperature = temperature;
+    this.unit = unit;
+  }
 }
 
 export const [getReading, setReading] = createContext<Reading>();

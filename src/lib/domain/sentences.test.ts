@@ -4,6 +4,7 @@ import {
   conformersSentence,
   duration,
   percent,
+  rateText,
   scanSentence,
   strainSentence,
 } from './sentences';
@@ -70,18 +71,64 @@ describe('sentences', () => {
     );
   });
 
-  it('marks a rigid profile', () => {
+  describe('of a scan', () => {
+    const anti = { label: 'anti', angles: [180], relative: 0, population: 0.69 };
+    const gauche = { label: 'gauche', angles: [-65, 65], relative: 0.78, population: 0.31 };
+    const turnOver = (barrier: number, stability: 1 | 2 | 3) => ({
+      barrier,
+      rate: 2.3e9,
+      halfLife: 3e-10,
+      stability,
+    });
     const facts = {
-      torsion: 'C1–C2–C3–C4',
-      preferred: { label: 'anti', angle: 180 },
-      barrier: 5.21,
-      halfLife: 1e-9,
-      temperature: 298.15,
+      bond: 'C2–C3',
+      reading: { forms: [anti, gauche], turn: turnOver(5.01, 1), temperature: 298.15 },
+      relaxed: true,
       complete: true,
+      converged: true,
     };
-    expect(scanSentence({ ...facts, relaxed: false }, 'kcal/mol')).toContain('Rigid profile');
-    expect(scanSentence({ ...facts, relaxed: true }, 'kcal/mol')).toContain(
-      'half-life 1 ns at 25 °C',
-    );
+
+    it('answers which form, by how much, how many, and how fast', () => {
+      expect(scanSentence(facts, 'kcal/mol')).toBe(
+        'C2–C3: anti (180°) is preferred by 0.8 kcal/mol over gauche (±65°); 69 % at 25 °C; 5.0 kcal/mol to turn, 2.3 × 10⁹ s⁻¹, half-life 300 ps with ΔE‡ for ΔG‡, too fast to separate the forms (class 1).',
+      );
+      expect(scanSentence(facts, 'kJ/mol')).toContain('preferred by 3.3 kJ/mol');
+    });
+
+    it('says in the same sentence what is uncertain', () => {
+      expect(scanSentence({ ...facts, relaxed: false }, 'kcal/mol')).toMatch(
+        /; rigid profile.*[.]$/,
+      );
+      expect(scanSentence({ ...facts, complete: false }, 'kcal/mol')).toMatch(
+        /; the scan ran out.*[.]$/,
+      );
+      expect(scanSentence({ ...facts, converged: false }, 'kcal/mol')).toMatch(
+        /; some stationary points did not converge[.]$/,
+      );
+    });
+
+    it('doubts a class when the model’s error reaches the next', () => {
+      const near = { ...facts.reading, turn: turnOver(29, 2) };
+      expect(scanSentence({ ...facts, reading: near }, 'kcal/mol')).toContain('the next class');
+      const far = { ...facts.reading, turn: turnOver(36, 3) };
+      expect(scanSentence({ ...facts, reading: far }, 'kcal/mol')).toMatch(/\(class 3\)[.]$/);
+    });
+
+    it('says so where there is one form, or none', () => {
+      const one = { ...facts.reading, forms: [anti], turn: null };
+      expect(scanSentence({ ...facts, reading: one }, 'kcal/mol')).toBe(
+        'C2–C3: anti (180°) is the only form.',
+      );
+      const none = { ...facts.reading, forms: [], turn: null };
+      expect(scanSentence({ ...facts, reading: none }, 'kcal/mol')).toBe(
+        'C2–C3: no minimum was found.',
+      );
+    });
   });
+
+  it.each([
+    [1.83e8, '1.8 × 10⁸ s⁻¹'],
+    [0.25, '0.25 s⁻¹'],
+    [3e-7, '3.0 × 10⁻⁷ s⁻¹'],
+  ])('a rate of %d is %s', (rate, text) => expect(rateText(rate)).toBe(text));
 });

@@ -3,6 +3,7 @@
  * kcal/mol, told in the unit asked for; temperatures in K.
  */
 import { energyText, type EnergyUnit } from './energy-units';
+import { anglesText, type Form, type ProfileReading } from './profile-reading';
 
 const CELSIUS_ZERO = 273.15;
 
@@ -40,6 +41,33 @@ export function duration(seconds: number): string {
     : `${Number(value.toPrecision(2))} ${name}`;
 }
 
+/** Remarks that sentences make in their own words, or that every molecule given without a geometry gets. */
+const SAID_OTHERWISE = new Set(['incomplete-search', 'hydrogens-added', 'geometry-built']);
+
+/** A sentence with the remarks of its result in it, so that nobody reads the one without the other. */
+export function remarked(
+  sentence: string,
+  warnings: readonly { readonly code: string; readonly message: string }[],
+): string {
+  const remarks = warnings
+    .filter(({ code }) => !SAID_OTHERWISE.has(code))
+    .map(({ message }) => message.replace(/[.]$/, ''));
+  return [sentence.replace(/[.]$/, ''), ...remarks].join('; ') + '.';
+}
+
+const unfinishedScan = 'the scan ran out of time, so lower forms and barriers may be missing';
+
+/** A rate constant in 1/s, with a power of ten as people write it. */
+export function rateText(rate: number): string {
+  if (rate >= 0.01 && rate < 10_000) return `${Number(rate.toPrecision(2))} s⁻¹`;
+  const [mantissa, power] = rate.toExponential(1).split('e');
+  const digits = '⁰¹²³⁴⁵⁶⁷⁸⁹';
+  const raised = power
+    .replace('+', '')
+    .replace(/[-\d]/g, (sign) => (sign === '-' ? '⁻' : digits[Number(sign)]));
+  return `${mantissa} × 10${raised} s⁻¹`;
+}
+
 export interface ConformersFacts {
   readonly count: number;
   readonly window: number;
@@ -52,9 +80,9 @@ export function conformersSentence(facts: ConformersFacts, unit: EnergyUnit): st
   const { count, window, lowestPopulation, temperature, complete } = facts;
   const search = complete
     ? ''
-    : ' The search ended before its set stopped changing, so others may exist.';
-  if (count === 1) return `One conformer within ${energyText(window, unit)}.${search}`;
-  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}.${search}`;
+    : '; the search ended before its set stopped changing, so others may exist';
+  if (count === 1) return `One conformer within ${energyText(window, unit)}${search}.`;
+  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}${search}.`;
 }
 
 export interface ConjugationFacts {
@@ -67,26 +95,29 @@ export interface ConjugationFacts {
   readonly twist: number | null;
   readonly inRing: boolean;
   readonly temperature: number;
+  /** False when time ran out before the bond's scan was through. */
+  readonly complete?: boolean | undefined;
 }
 
 export function conjugationSentence(facts: ConjugationFacts, unit: EnergyUnit): string {
   const { bond, difference, sCisFraction, planarSCisCost, barrier, twist, inRing, temperature } =
     facts;
+  const end = facts.complete === false ? `; ${unfinishedScan}.` : '.';
   const turn = barrier === null ? '' : `; ${energyText(barrier, unit)} to turn`;
   if (inRing) {
     return twist === null
-      ? `${bond} is part of a ring.`
-      : `${bond} is part of a ring and twisted by ${Math.round(twist)}° from planar.`;
+      ? `${bond} is part of a ring${end}`
+      : `${bond} is part of a ring and twisted by ${Math.round(twist)}° from planar${end}`;
   }
   if (difference === null || sCisFraction === null) {
     return twist === null
-      ? `${bond} is conjugated${turn}.`
-      : `${bond} is twisted by ${Math.round(twist)}° from planar in its lowest form${turn}.`;
+      ? `${bond} is conjugated${turn}${end}`
+      : `${bond} is twisted by ${Math.round(twist)}° from planar in its lowest form${turn}${end}`;
   }
   const preferred = difference >= 0 ? 's-trans' : 's-cis';
   const planar =
     planarSCisCost === null ? '' : `; planar s-cis costs ${energyText(planarSCisCost, unit)}`;
-  return `${bond}: ${preferred} is preferred by ${energyText(Math.abs(difference), unit)}; ${percent(sCisFraction)} s-cis at ${celsius(temperature)}${turn}${planar}.`;
+  return `${bond}: ${preferred} is preferred by ${energyText(Math.abs(difference), unit)}; ${percent(sCisFraction)} s-cis at ${celsius(temperature)}${turn}${planar}${end}`;
 }
 
 export interface StrainFacts {
@@ -102,33 +133,57 @@ export function strainSentence({ strain, worst, complete }: StrainFacts, unit: E
       : '';
   const search = complete
     ? ''
-    : ' The search for the lowest conformer was not complete, so the strain may be larger.';
-  return `The uploaded geometry is strained by ${energyText(strain, unit)}${most}.${search}`;
+    : '; the search for the lowest conformer was not complete, so the strain may be larger';
+  return `The uploaded geometry is strained by ${energyText(strain, unit)}${most}${search}.`;
 }
 
 export interface ScanFacts {
-  readonly torsion: string;
-  readonly preferred: { readonly label: string; readonly angle: number } | null;
-  readonly barrier: number | null;
-  readonly halfLife: number | null;
-  readonly temperature: number;
+  /** The bond turned, as people name it. */
+  readonly bond: string;
+  readonly reading: Pick<ProfileReading, 'forms' | 'turn' | 'temperature'>;
   readonly relaxed: boolean;
   readonly complete: boolean;
+  /** Whether all its stationary points converged. */
+  readonly converged: boolean;
 }
 
+/** What each stability class says about separating the two sides of an axis. */
+const separation = {
+  1: 'too fast to separate the forms (class 1)',
+  2: 'slow, but a mixture that changes with time (class 2)',
+  3: 'slow enough to separate the forms (class 3)',
+} as const;
+/** Barriers in kcal/mol between the classes, and how near to one the model's error makes the class uncertain. */
+const CLASS_BORDERS = [20, 30];
+const MODEL_ERROR = 2;
+
+/** Which form is preferred, by how much and how many there are of it; what a turn costs, and how long it takes. */
 export function scanSentence(facts: ScanFacts, unit: EnergyUnit): string {
-  const { torsion, preferred, barrier, halfLife, temperature, relaxed, complete } = facts;
-  const form = preferred
-    ? `${preferred.label} at ${Math.round(preferred.angle)}° is lowest`
-    : 'no minimum was found';
-  const highest = barrier === null ? '' : `; the highest barrier is ${energyText(barrier, unit)}`;
-  const life =
-    halfLife === null
-      ? ''
-      : ` (half-life ${duration(halfLife)} at ${celsius(temperature)}, with ΔE‡ for ΔG‡)`;
-  const caveat = [
-    relaxed ? '' : ' Rigid profile: nothing else relaxed.',
-    complete ? '' : ' The scan ran out of time.',
-  ];
-  return `${torsion}: ${form}${highest}${life}.${caveat.join('')}`;
+  const { bond, reading, relaxed, complete, converged } = facts;
+  const parts = [
+    relaxed ? '' : 'rigid profile, in which nothing else relaxed',
+    complete ? '' : unfinishedScan,
+    converged ? '' : 'some stationary points did not converge',
+  ].filter(Boolean);
+  const caveats = parts.length > 0 ? `; ${parts.join('; ')}` : '';
+  return `${bond}: ${formsText(reading, unit)}${turnText(reading, unit)}${caveats}.`;
+}
+
+function formsText({ forms, temperature }: ScanFacts['reading'], unit: EnergyUnit): string {
+  const [first, second] = forms;
+  if (!first) return 'no minimum was found';
+  const named = ({ label, angles }: Form): string => `${label} (${anglesText(angles)})`;
+  if (!second) return `${named(first)} is the only form`;
+  const known = first.population > 0 || second.population > 0;
+  const share = known ? `; ${percent(first.population)} at ${celsius(temperature)}` : '';
+  const gap = second.relative - first.relative;
+  return `${named(first)} is preferred by ${energyText(gap, unit)} over ${named(second)}${share}`;
+}
+
+function turnText({ turn }: ScanFacts['reading'], unit: EnergyUnit): string {
+  if (!turn) return '';
+  const { barrier, rate, halfLife, stability } = turn;
+  const isNearBorder = CLASS_BORDERS.some((border) => Math.abs(barrier - border) < MODEL_ERROR);
+  const doubt = isNearBorder ? ', though within the model’s error of the next class' : '';
+  return `; ${energyText(barrier, unit)} to turn, ${rateText(rate)}, half-life ${duration(halfLife)} with ΔE‡ for ΔG‡, ${separation[stability]}${doubt}`;
 }

@@ -3,7 +3,7 @@ export { InputError } from './errors';
 export type { InputErrorCode, InputPlace, InputWarning, InputWarningCode } from './errors';
 export { drawMolecule } from './molecule/drawing';
 export type { Drawing } from './molecule/drawing';
-export { atomLabel } from './molecule/elements';
+export { atomLabel, ELEMENT_SYMBOLS } from './molecule/elements';
 export { molecularFormula } from './molecule/identity';
 export { readMolecule } from './molecule/read';
 export type { MoleculeInput } from './molecule/read';

@@ -31,6 +31,7 @@ export interface StoredStationaryPoint {
   readonly relative: number;
   readonly label: string;
   readonly range: string;
+  readonly converged: boolean;
   readonly coordinates: Float64Array;
 }
 
@@ -48,6 +49,7 @@ export interface Answer {
   readonly kind: (typeof results.$inferSelect)['kind'];
   readonly settings: Readonly<Record<string, unknown>>;
   readonly engineVersion: string;
+  readonly createdAt: Date;
   readonly model: string;
   readonly molfile: string;
   readonly details: Readonly<Record<string, unknown>>;
@@ -114,6 +116,7 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     kind: row.kind,
     settings: row.settings as Answer['settings'],
     engineVersion: row.engineVersion,
+    createdAt: row.createdAt,
     model: row.model,
     molfile: row.molfile,
     details: row.details as Answer['details'],

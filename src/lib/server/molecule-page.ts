@@ -1,13 +1,16 @@
 /** What the page of a molecule shows, in the order it is read: answers first, evidence after. */
 import { and, count, desc, eq } from 'drizzle-orm';
+import { distinctions } from '../domain/settings-text';
 import type { Result } from '../engine';
 import { drawMolecule, writeMolfile, type Molecule } from '../engine';
-import { readAnswers, resultIdsOf, type Answer, type StoredProfile } from './answers';
+import { readAnswers, resultIdsOf, type Answer } from './answers';
 import { db } from './db';
 import { batches, entries, tasks } from './db/schema';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
 import { bondName } from './molecules';
+import { describeScan, packScan, skeletonOf } from './scan-section';
+import { provenance, type ToldApart } from './section-parts';
 
 /** Everything the page needs but the geometries, which it asks for when they are looked at. */
 export async function load(member: Member, moleculeId: string) {
@@ -27,7 +30,13 @@ export async function load(member: Member, moleculeId: string) {
     .where(eq(entries.moleculeId, stored.id))
     .groupBy(tasks.kind, tasks.state);
   const answers = await readAnswers(await resultIdsOf(member, stored.id), stored.atomCount);
-  const of = (kind: Answer['kind']) => answers.filter((answer) => answer.kind === kind);
+  const told = distinctions(
+    answers.map((answer) => ({ ...answer, subject: subjectOf(molecule, answer) })),
+  );
+  const of = (kind: Answer['kind']) =>
+    answers.flatMap((answer, n) =>
+      answer.kind === kind ? [{ ...answer, distinction: told[n] }] : [],
+    );
   return {
     id: stored.id,
     name: mentions[0]?.name ?? stored.formula,
@@ -35,23 +44,29 @@ export async function load(member: Member, moleculeId: string) {
     formula: stored.formula,
     atomCount: stored.atomCount,
     drawing: drawMolecule(molecule),
+    skeleton: skeletonOf(molecule),
     batches: mentions.map(({ batchId, batchName }) => ({ id: batchId, name: batchName })),
     tasks: open,
     conformers: of('conformers').map((answer) => describeConformers(answer)),
-    scans: of('scan').flatMap((answer) =>
-      answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
-    ),
+    // A rigid profile is there to be compared with the relaxed one, so it comes after.
+    scans: of('scan')
+      .flatMap((answer) =>
+        answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
+      )
+      .toSorted((a, b) => Number(b.relaxed) - Number(a.relaxed)),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };
 }
 
-/** What every answer says of where it came from. */
-function provenance({ id, model, engineVersion, settings, seconds, warnings }: Answer) {
-  return { id, model, engineVersion, settings, seconds, warnings };
+/** What an answer is about: answers about the same need telling apart. */
+function subjectOf(molecule: Molecule, { kind, profiles }: Answer): string {
+  return [kind, ...profiles.map(({ torsion }) => bondName(molecule, torsion.slice(1, 3)))].join(
+    ' ',
+  );
 }
 
-function describeConformers(answer: Answer) {
+function describeConformers(answer: ToldApart) {
   return {
     ...provenance(answer),
     complete: answer.details.complete as boolean,
@@ -61,24 +76,7 @@ function describeConformers(answer: Answer) {
   };
 }
 
-function describeScan(molecule: Molecule, answer: Answer, profile: StoredProfile) {
-  const details = answer.details as Pick<
-    Result<'scan'>,
-    'basins' | 'crossings' | 'interconversion' | 'fourier' | 'complete' | 'temperature' | 'symmetry'
-  >;
-  return {
-    ...provenance(answer),
-    torsion: profile.torsion,
-    name: bondName(molecule, profile.torsion),
-    bond: bondName(molecule, profile.torsion.slice(1, 3)),
-    relaxed: profile.relaxed,
-    points: profile.points.map(({ angle, relative }) => ({ angle, relative })),
-    stationary: profile.stationary.map(({ coordinates: _coordinates, ...point }) => point),
-    ...details,
-  };
-}
-
-function describeConjugation(molecule: Molecule, answer: Answer) {
+function describeConjugation(molecule: Molecule, answer: ToldApart) {
   const { bonds } = answer.details as Pick<Result<'conjugation'>, 'bonds'>;
   return {
     ...provenance(answer),
@@ -93,11 +91,13 @@ function describeConjugation(molecule: Molecule, answer: Answer) {
       planarSCisCost: bond.planarSCisCost,
       barrier: bond.barrier,
       meanOverlap: bond.meanOverlap,
+      profile: bond.profile,
+      complete: bond.complete,
     })),
   };
 }
 
-function describeStrain(molecule: Molecule, answer: Answer) {
+function describeStrain(molecule: Molecule, answer: ToldApart) {
   const details = answer.details as Omit<
     Result<'strain'>,
     'molfile' | 'smiles' | 'warnings' | 'provenance'
@@ -116,17 +116,34 @@ function describeStrain(molecule: Molecule, answer: Answer) {
   };
 }
 
+/** One answer of a molecule, for who may see it; anything else is not there. */
+async function readAnswer(member: Member, moleculeId: string, resultId: string) {
+  const stored = await molecules.get(member, moleculeId);
+  const own = await resultIdsOf(member, stored.id);
+  if (!own.includes(resultId)) notFound('result');
+  const [answer] = await readAnswers([resultId], stored.atomCount);
+  return { stored, answer };
+}
+
+/** The geometries of a scan as packScan writes them. */
+export async function packedGeometries(
+  member: Member,
+  moleculeId: string,
+  resultId: string,
+): Promise<Float32Array<ArrayBuffer>> {
+  const { answer } = await readAnswer(member, moleculeId, resultId);
+  if (answer.kind !== 'scan') notFound('scan');
+  return packScan(answer);
+}
+
 /** The geometries of one answer as molfiles: conformers lowest first, or the points of a profile by angle. */
 export async function geometries(
   member: Member,
   moleculeId: string,
   resultId: string,
 ): Promise<string[]> {
-  const stored = await molecules.get(member, moleculeId);
-  const own = await resultIdsOf(member, stored.id);
-  if (!own.includes(resultId)) notFound('result');
+  const { stored, answer } = await readAnswer(member, moleculeId, resultId);
   const molecule = molecules.readStored(stored);
-  const [answer] = await readAnswers([resultId], stored.atomCount);
   const frames =
     answer.conformers.length > 0
       ? answer.conformers

@@ -1,5 +1,6 @@
 /** Sign-ins that have not ended. The cookie only names a row here, so ending the row ends the sign-in at once. */
 import { and, asc, desc, eq, gt, isNull, lt, ne, sql } from 'drizzle-orm';
+import type { EnergyUnit } from '../domain/energy-units';
 import { db, type Executor } from './db';
 import { memberships, sessions, teams, users } from './db/schema';
 import type { Membership } from './teams';
@@ -19,7 +20,12 @@ export interface Client {
 /** What a valid session tells about a request. */
 export interface SignedIn {
   readonly sessionId: string;
-  readonly user: { readonly id: string; readonly email: string; readonly name: string };
+  readonly user: {
+    readonly id: string;
+    readonly email: string;
+    readonly name: string;
+    readonly energyUnit: EnergyUnit;
+  };
   readonly memberships: readonly Membership[];
 }
 
@@ -44,7 +50,7 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
   const rows = await db
     .select({
       seenAt: sessions.seenAt,
-      user: { id: users.id, email: users.email, name: users.name },
+      user: { id: users.id, email: users.email, name: users.name, energyUnit: users.energyUnit },
       teamId: memberships.teamId,
       role: memberships.role,
       teamName: teams.name,

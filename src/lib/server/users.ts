@@ -1,6 +1,7 @@
 /** Accounts: how a person gets one, proves who they are, and changes their password. */
 import { eq, sql } from 'drizzle-orm';
 import type { SignUp } from '../domain/accounts';
+import type { EnergyUnit } from '../domain/energy-units';
 import { findPasswordFault } from '../domain/passwords';
 import { db, type Executor } from './db';
 import { events, memberships, users } from './db/schema';
@@ -222,6 +223,11 @@ export async function changePassword(
   });
   post(user.email, passwordChangedLetter(user.name));
   return null;
+}
+
+/** Remembers in which unit a person reads energies. */
+export async function chooseUnit(userId: string, energyUnit: EnergyUnit): Promise<void> {
+  await db.update(users).set({ energyUnit }).where(eq(users.id, userId));
 }
 
 /** Changes the name that others see. */

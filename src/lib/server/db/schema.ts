@@ -23,6 +23,7 @@ import {
   unique,
   uuid,
 } from 'drizzle-orm/pg-core';
+import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
 import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
@@ -32,6 +33,7 @@ const moment = (name: string) => timestamp(name, { withTimezone: true, mode: 'da
 const created = () => moment('created_at').notNull().defaultNow();
 
 export const roleEnum = pgEnum('role', roles);
+export const energyUnitEnum = pgEnum('energy_unit', energyUnits);
 export const taskKindEnum = pgEnum('task_kind', ['conformers', 'scan', 'conjugation', 'strain']);
 export const taskStateEnum = pgEnum('task_state', [
   'queued',
@@ -54,6 +56,8 @@ export const users = pgTable(
     name: text('name').notNull(),
     passwordHash: text('password_hash').notNull(),
     confirmedAt: moment('confirmed_at'),
+    /** In which unit the person reads energies. */
+    energyUnit: energyUnitEnum('energy_unit').notNull().default('kcal/mol'),
     createdAt: created(),
   },
   (table) => [check('users_email_lower_case', sql`${table.email} = lower(${table.email})`)],
