@@ -58,6 +58,9 @@ async function torsionStrain(
     // The curve meets its points up to rounding only.
     strain: Math.max(0, profileCurve(scan).at(angle) - lowest.energy),
     preferredAngle: lowest.angle,
+    profile: samples
+      .map((sample) => ({ angle: sample.angle, relative: sample.energy - lowest.energy }))
+      .sort((a, b) => a.angle - b.angle),
     complete: scan.complete,
   };
 }
