@@ -58,12 +58,12 @@ function tableAndGeometries(
   ];
 }
 
-function conformerFiles(
-  { name, smiles, molecule }: BundledMolecule,
+/** The conformers of an answer with their energies and populations. */
+export function conformersSdf(
+  { name, smiles, molecule }: Pick<BundledMolecule, 'name' | 'smiles' | 'molecule'>,
   answer: Answer,
-  path: (ending: string) => string,
-): BundleFile[] {
-  const sdf = writeSdf(
+): string {
+  return writeSdf(
     answer.conformers.map((conformer) => ({
       molecule,
       coordinates: conformer.coordinates,
@@ -78,6 +78,13 @@ function conformerFiles(
       },
     })),
   );
+}
+
+function conformerFiles(
+  bundled: BundledMolecule,
+  answer: Answer,
+  path: (ending: string) => string,
+): BundleFile[] {
   const csv = csvTable(
     [
       'conformer',
@@ -99,7 +106,7 @@ function conformerFiles(
     ),
   );
   return [
-    { path: path('sdf'), content: sdf },
+    { path: path('sdf'), content: conformersSdf(bundled, answer) },
     { path: path('csv'), content: csv },
   ];
 }

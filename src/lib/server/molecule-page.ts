@@ -1,17 +1,16 @@
 /** What the page of a molecule shows, in the order it is read: answers first, evidence after. */
 import { and, count, desc, eq } from 'drizzle-orm';
 import type { Result } from '../engine';
-import { atomLabel, drawMolecule, writeMolfile, type Molecule } from '../engine';
+import { drawMolecule, writeMolfile, type Molecule } from '../engine';
 import { readAnswers, resultIdsOf, type Answer, type StoredProfile } from './answers';
+import { describeConformers } from './conformers-section';
+import { conjugationForms, describeConjugation } from './conjugation-section';
 import { db } from './db';
 import { batches, entries, tasks } from './db/schema';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
-
-/** A bond by its atoms as people read them: "C2–C3". */
-function bondName(molecule: Molecule, atoms: readonly number[]): string {
-  return atoms.map((atom) => atomLabel(molecule.atomicNumbers[atom], atom)).join('–');
-}
+import { bondName, provenance } from './section-parts';
+import { describeStrain, strainGeometries } from './strain-section';
 
 /** Everything the page needs but the geometries, which it asks for when they are looked at. */
 export async function load(member: Member, moleculeId: string) {
@@ -41,27 +40,14 @@ export async function load(member: Member, moleculeId: string) {
     drawing: drawMolecule(molecule),
     batches: mentions.map(({ batchId, batchName }) => ({ id: batchId, name: batchName })),
     tasks: open,
-    conformers: of('conformers').map((answer) => describeConformers(answer)),
+    conformers: of('conformers').map((answer) =>
+      describeConformers(molecule, stored.rotors, answer),
+    ),
     scans: of('scan').flatMap((answer) =>
       answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
     ),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
-  };
-}
-
-/** What every answer says of where it came from. */
-function provenance({ id, model, engineVersion, settings, seconds, warnings }: Answer) {
-  return { id, model, engineVersion, settings, seconds, warnings };
-}
-
-function describeConformers(answer: Answer) {
-  return {
-    ...provenance(answer),
-    complete: answer.details.complete as boolean,
-    window: answer.settings.window as number,
-    temperature: answer.settings.temperature as number,
-    rows: answer.conformers.map(({ coordinates: _coordinates, ...conformer }) => conformer),
   };
 }
 
@@ -82,45 +68,10 @@ function describeScan(molecule: Molecule, answer: Answer, profile: StoredProfile
   };
 }
 
-function describeConjugation(molecule: Molecule, answer: Answer) {
-  const { bonds } = answer.details as Pick<Result<'conjugation'>, 'bonds'>;
-  return {
-    ...provenance(answer),
-    temperature: answer.settings.temperature as number,
-    bonds: bonds.map((bond) => ({
-      name: bondName(molecule, bond.bond),
-      kind: bond.kind,
-      inRing: bond.inRing,
-      twist: bond.twist,
-      difference: bond.difference,
-      sCisFraction: bond.sCisFraction,
-      planarSCisCost: bond.planarSCisCost,
-      barrier: bond.barrier,
-      meanOverlap: bond.meanOverlap,
-    })),
-  };
-}
-
-function describeStrain(molecule: Molecule, answer: Answer) {
-  const details = answer.details as Omit<
-    Result<'strain'>,
-    'molfile' | 'smiles' | 'warnings' | 'provenance'
-  >;
-  return {
-    ...provenance(answer),
-    strain: details.strain,
-    complete: details.complete,
-    largestDisplacement: details.largestDisplacement,
-    torsions: details.torsions.map(({ bond, angle, strain, preferredAngle }) => ({
-      name: bondName(molecule, bond),
-      angle,
-      strain,
-      preferredAngle,
-    })),
-  };
-}
-
-/** The geometries of one answer as molfiles: conformers lowest first, or the points of a profile by angle. */
+/**
+ * The geometries of one answer as molfiles: conformers lowest first, the points of a profile by angle, the forms of
+ * conjugated bonds, or a strained geometry as given, relaxed in place and unstrained.
+ */
 export async function geometries(
   member: Member,
   moleculeId: string,
@@ -131,11 +82,23 @@ export async function geometries(
   if (!own.includes(resultId)) notFound('result');
   const molecule = molecules.readStored(stored);
   const [answer] = await readAnswers([resultId], stored.atomCount);
+  const plain = molfilesOf(answer);
+  if (plain) return plain;
   const frames =
     answer.conformers.length > 0
       ? answer.conformers
       : answer.profiles.flatMap((profile) => profile.points);
-  return frames.length > 0
-    ? frames.map(({ coordinates }) => writeMolfile(molecule, coordinates))
-    : [answer.molfile];
+  return frames.map(({ coordinates }) => writeMolfile(molecule, coordinates));
+}
+
+/** The geometries of answers that keep them as molfiles. */
+function molfilesOf(answer: Answer): string[] | null {
+  switch (answer.kind) {
+    case 'conjugation':
+      return conjugationForms(answer).map(({ molfile }) => molfile);
+    case 'strain':
+      return strainGeometries(answer);
+    default:
+      return null;
+  }
 }

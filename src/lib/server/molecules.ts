@@ -1,8 +1,8 @@
 /** Molecules of a team: their structures, drawings and answers. */
-import { and, eq } from 'drizzle-orm';
+import { and, desc, eq } from 'drizzle-orm';
 import { drawMolecule, readMolecule, type Drawing, type Molecule } from '../engine';
 import { db } from './db';
-import { molecules } from './db/schema';
+import { batches, entries, molecules } from './db/schema';
 import { notFound, type Member } from './member';
 
 /** A molecule of the member's team. */
@@ -12,6 +12,20 @@ export async function get(member: Member, moleculeId: string) {
     .from(molecules)
     .where(and(eq(molecules.id, moleculeId), eq(molecules.teamId, member.teamId)));
   return molecule ?? notFound('molecule');
+}
+
+/** The name under which a molecule was last submitted in its team, else its formula. */
+export async function nameOf(
+  molecule: Pick<typeof molecules.$inferSelect, 'id' | 'formula'>,
+): Promise<string> {
+  const [entry] = await db
+    .select({ name: entries.name })
+    .from(entries)
+    .innerJoin(batches, eq(batches.id, entries.batchId))
+    .where(eq(entries.moleculeId, molecule.id))
+    .orderBy(desc(batches.submittedAt))
+    .limit(1);
+  return entry?.name ?? molecule.formula;
 }
 
 /** The engine's molecule of a stored structure; it was checked when it was stored. */

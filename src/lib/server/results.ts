@@ -3,9 +3,10 @@ import { createHash } from 'node:crypto';
 import { and, eq, inArray } from 'drizzle-orm';
 import { ENGINE_VERSION, type Request, type Result } from '../engine';
 import { taskSchema } from '../domain/compute';
+import { coordinatesOf } from '../domain/molfile-geometry';
 import { db, type Executor } from './db';
 import { conformers, profileCurves, profiles, results } from './db/schema';
-import { coordinatesOf, pack } from './packing';
+import { pack } from './packing';
 import { finish, type ClaimedTask } from './tasks';
 
 /** What an answer belongs to; together with the engine's version it is unique. */

@@ -1,8 +1,12 @@
 /** Fetches the geometries of an answer, once. */
+import { browser } from '$app/environment';
+
 const asked = new Map<string, Promise<readonly string[]>>();
 
 /** The molfiles of a result; rejects when they could not be had, and the next call tries again. */
 export function fetchGeometries(moleculeId: string, resultId: string): Promise<readonly string[]> {
+  // Nothing is looked at while the server writes the page; it shows the waiting text.
+  if (!browser) return new Promise(() => undefined);
   const address = `/molecules/${moleculeId}/geometries/${resultId}`;
   const known = asked.get(address);
   if (known) return known;
