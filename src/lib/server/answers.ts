@@ -1,9 +1,19 @@
 /** Stored answers, read back whole: for pages and bundles. */
 import { and, asc, desc, eq, inArray, isNotNull } from 'drizzle-orm';
 import { db } from './db';
-import { batches, conformers, entries, profileCurves, profiles, results, tasks } from './db/schema';
+import {
+  batches,
+  conformers,
+  entries,
+  maps,
+  profileCurves,
+  profiles,
+  results,
+  tasks,
+} from './db/schema';
 import type { Member } from './member';
 import { unpack } from './packing';
+import { toMap, type StoredMap } from './stored-maps';
 
 export interface StoredConformer {
   readonly rank: number;
@@ -55,6 +65,8 @@ export interface Answer {
   readonly seconds: number;
   readonly conformers: readonly StoredConformer[];
   readonly profiles: readonly StoredProfile[];
+  /** The energy over two torsions; null in answers of other kinds. */
+  readonly map: StoredMap | null;
 }
 
 /** The results of a molecule's finished tasks in the member's team, those of one batch where it is named. */
@@ -99,6 +111,7 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
     .where(inArray(profiles.resultId, wanted))
     .orderBy(asc(profileCurves.model));
+  const mapped = await db.select().from(maps).where(inArray(maps.resultId, wanted));
   return rows.map((row) => ({
     id: row.id,
     kind: row.kind,
@@ -118,6 +131,10 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     profiles: curves
       .filter(({ profiles: { resultId } }) => resultId === row.id)
       .map(({ profiles: profile, profile_curves: curve }) => toProfile(profile, curve, atomCount)),
+    map: toMap(
+      mapped.find(({ resultId }) => resultId === row.id),
+      atomCount,
+    ),
   }));
 }
 

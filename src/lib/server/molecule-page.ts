@@ -7,6 +7,7 @@ import { describeConformers } from './conformers-section';
 import { conjugationForms, describeConjugation } from './conjugation-section';
 import { db } from './db';
 import { batches, entries, tasks } from './db/schema';
+import { describeMaps, mapGeometries } from './map-section';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
 import { bondName, provenance } from './section-parts';
@@ -46,6 +47,7 @@ export async function load(member: Member, moleculeId: string) {
     scans: of('scan').flatMap((answer) =>
       answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
     ),
+    maps: describeMaps(molecule, of('map')),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };
@@ -70,7 +72,7 @@ function describeScan(molecule: Molecule, answer: Answer, profile: StoredProfile
 
 /**
  * The geometries of one answer as molfiles: conformers lowest first, the points of a profile by angle, the forms of
- * conjugated bonds, or a strained geometry as given, relaxed in place and unstrained.
+ * conjugated bonds, the cells and minima of a map, or a strained geometry as given, relaxed in place and unstrained.
  */
 export async function geometries(
   member: Member,
@@ -82,7 +84,7 @@ export async function geometries(
   if (!own.includes(resultId)) notFound('result');
   const molecule = molecules.readStored(stored);
   const [answer] = await readAnswers([resultId], stored.atomCount);
-  const plain = molfilesOf(answer);
+  const plain = molfilesOf(molecule, answer);
   if (plain) return plain;
   const frames =
     answer.conformers.length > 0
@@ -91,8 +93,9 @@ export async function geometries(
   return frames.map(({ coordinates }) => writeMolfile(molecule, coordinates));
 }
 
-/** The geometries of answers that keep them as molfiles. */
-function molfilesOf(answer: Answer): string[] | null {
+/** The geometries of answers that are neither conformers nor profiles. */
+function molfilesOf(molecule: Molecule, answer: Answer): string[] | null {
+  if (answer.map) return mapGeometries(molecule, answer.map);
   switch (answer.kind) {
     case 'conjugation':
       return conjugationForms(answer).map(({ molfile }) => molfile);

@@ -24,7 +24,7 @@ export interface TorsionStrain {
   readonly angle: number;
   /** Energy of the fragment's profile at the angle above its lowest point, kcal/mol. */
   readonly strain: number;
-  /** Where the fragment's profile is lowest, degrees. */
+  /** Where the fragment's profile is lowest, degrees; of equally low angles the one nearest to the geometry's. */
   readonly preferredAngle: number;
   /** The fragment's profile with its stationary points, ascending in angle. */
   readonly profile: readonly StrainPoint[];
