@@ -72,8 +72,12 @@ test('a chemist lays conformers over one another and reads s-cis beside s-trans'
   expect(readFileSync(await download.path(), 'utf8')).toContain('isoprene conformer 2');
 
   const conjugation = section(page, 'Conjugation');
-  await expect(conjugation.getByText(/^s-cis: .* above the lowest$/)).toBeVisible();
-  await expect(conjugation.getByText(/^s-trans: .* above the lowest$/)).toBeVisible();
+  await expect(
+    conjugation.getByRole('figure', { name: /^s-cis: .* above the lowest$/ }),
+  ).toBeVisible();
+  await expect(
+    conjugation.getByRole('figure', { name: /^s-trans: .* above the lowest$/ }),
+  ).toBeVisible();
   await expect(conjugation.locator('canvas')).toHaveCount(2);
   await expect(conjugation.getByRole('img', { name: /^Overlap along the turn/ })).toBeVisible();
   await expectAccessible(page);
