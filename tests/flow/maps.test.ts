@@ -1,23 +1,21 @@
 /** A map of two bonds from the choice on the drawing to the bundle. */
-import { setImmediate } from 'node:timers/promises';
 import { eq } from 'drizzle-orm';
 import { unzipSync } from 'fflate';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { answerSchema } from '$lib/domain/bundle-schema';
 import { planSchema, readingSchema, type Plan } from '$lib/domain/submission';
-import { perform, readMolecule } from '$lib/engine';
+import { readMolecule } from '$lib/engine';
 import { readAnswers, resultIdsOf } from '$lib/server/answers';
 import { bundleBatch } from '$lib/server/bundles';
 import { conformersFile } from '$lib/server/conformers-file';
 import { db } from '$lib/server/db';
-import { entries, tasks } from '$lib/server/db/schema';
+import { entries } from '$lib/server/db/schema';
 import { chooseBonds, readUpload } from '$lib/server/drafts';
 import { estimate } from '$lib/server/estimates';
 import { geometries, load } from '$lib/server/molecule-page';
 import { stopQueue } from '$lib/server/queue';
-import * as results from '$lib/server/results';
 import { submit } from '$lib/server/submission';
-import { claim } from '$lib/server/tasks';
+import { bytesOf, performAll } from '../support/batches';
 import { newTeam } from '../support/people';
 
 afterAll(stopQueue);
@@ -29,10 +27,6 @@ let batchId: string;
 let moleculeId: string;
 let plan: Plan;
 let price: Awaited<ReturnType<typeof estimate>>;
-
-async function* bytesOf(text: string) {
-  yield new TextEncoder().encode(text);
-}
 
 beforeAll(async () => {
   team = await newTeam();
@@ -54,14 +48,7 @@ beforeAll(async () => {
   await chooseBonds(team.chemist, batchId, pentane.id, { purpose: 'map', bonds });
   price = await estimate(team.chemist, batchId, plan);
   await submit(team.chemist, batchId, plan);
-  for (const { id } of await db.select().from(tasks).where(eq(tasks.batchId, batchId))) {
-    const task = await claim(id, 'a test');
-    const result = await perform(results.requestOf(task!), {
-      now: () => performance.now(),
-      breathe: () => setImmediate(),
-    });
-    await results.store(task!, result);
-  }
+  await performAll(batchId);
 }, 180_000);
 
 describe('a map of two bonds', () => {

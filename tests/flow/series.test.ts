@@ -1,17 +1,11 @@
 /** The conjugated bonds of a batch: sorted and paged by the database, and as a table. */
-import { setImmediate } from 'node:timers/promises';
-import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { planSchema, readingSchema } from '$lib/domain/submission';
-import { perform } from '$lib/engine';
-import { db } from '$lib/server/db';
-import { tasks } from '$lib/server/db/schema';
 import { readUpload } from '$lib/server/drafts';
 import { stopQueue } from '$lib/server/queue';
-import * as results from '$lib/server/results';
 import * as series from '$lib/server/series';
 import { submit } from '$lib/server/submission';
-import { claim } from '$lib/server/tasks';
+import { bytesOf, performAll } from '../support/batches';
 import { newTeam } from '../support/people';
 
 afterAll(stopQueue);
@@ -19,10 +13,6 @@ afterAll(stopQueue);
 let team: Awaited<ReturnType<typeof newTeam>>;
 let batchId: string;
 const all = { sort: 'position', descending: false, page: 1, pageSize: 50 } as const;
-
-async function* bytesOf(text: string) {
-  yield new TextEncoder().encode(text);
-}
 
 beforeAll(async () => {
   team = await newTeam();
@@ -32,14 +22,7 @@ beforeAll(async () => {
   const rows = bytesOf('C=CC=C =butadiene\nC=Cc1ccccc1 styrene\nCC ethane\nC=CC(=C)C isoprene');
   batchId = await readUpload(team.chemist, options, rows, () => undefined);
   await submit(team.chemist, batchId, planSchema.parse({ conjugation: {} }));
-  for (const { id } of await db.select().from(tasks).where(eq(tasks.batchId, batchId))) {
-    const task = await claim(id, 'a test');
-    const result = await perform(results.requestOf(task!), {
-      now: () => performance.now(),
-      breathe: () => setImmediate(),
-    });
-    await results.store(task!, result);
-  }
+  await performAll(batchId);
 }, 180_000);
 
 const namesBy = async (query: Partial<series.SeriesQuery>) =>
