@@ -126,7 +126,7 @@ test('a modeler maps two bonds of an uploaded geometry and reads its strain', as
   await expect(
     map.getByText(/at -?\d+°, .* at -?\d+°: .* kcal\/mol above the lowest$/),
   ).toBeVisible();
-  await map.getByRole('button', { name: 'B, show its geometry' }).click();
+  await map.getByRole('button', { name: 'Show the geometry of minimum B' }).click();
   await expect(map.getByText('Minimum B, freely relaxed')).toBeVisible();
 
   const strain = section(page, 'Strain of the uploaded geometry');
