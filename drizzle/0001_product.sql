@@ -1,5 +1,6 @@
 CREATE TYPE "public"."energy_unit" AS ENUM('kcal/mol', 'kJ/mol');--> statement-breakpoint
 ALTER TYPE "public"."batch_source" ADD VALUE 'program';--> statement-breakpoint
+ALTER TYPE "public"."task_kind" ADD VALUE 'map' BEFORE 'conjugation';--> statement-breakpoint
 CREATE TABLE "api_tokens" (
 	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
 	"user_id" uuid NOT NULL,
@@ -37,6 +38,16 @@ CREATE TABLE "invitations" (
 	CONSTRAINT "invitations_email_lower_case" CHECK ("invitations"."email" = lower("invitations"."email"))
 );
 --> statement-breakpoint
+CREATE TABLE "maps" (
+	"result_id" uuid PRIMARY KEY NOT NULL,
+	"torsions" jsonb NOT NULL,
+	"step" double precision NOT NULL,
+	"per_axis" smallint NOT NULL,
+	"energies" jsonb NOT NULL,
+	"coordinates" "bytea" NOT NULL,
+	"minima" jsonb NOT NULL
+);
+--> statement-breakpoint
 CREATE TABLE "partner_links" (
 	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
 	"team_id" uuid NOT NULL,
@@ -54,6 +65,7 @@ CREATE TABLE "partner_links" (
 );
 --> statement-breakpoint
 DROP INDEX "events_team_at";--> statement-breakpoint
+ALTER TABLE "entries" ADD COLUMN "map_bonds" jsonb DEFAULT '[]'::jsonb NOT NULL;--> statement-breakpoint
 ALTER TABLE "events" ADD COLUMN "address" text DEFAULT '' NOT NULL;--> statement-breakpoint
 ALTER TABLE "users" ADD COLUMN "energy_unit" "energy_unit" DEFAULT 'kcal/mol' NOT NULL;--> statement-breakpoint
 ALTER TABLE "api_tokens" ADD CONSTRAINT "api_tokens_user_id_users_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."users"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
@@ -62,6 +74,7 @@ ALTER TABLE "idempotent_answers" ADD CONSTRAINT "idempotent_answers_user_id_user
 ALTER TABLE "idempotent_answers" ADD CONSTRAINT "idempotent_answers_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "invitations" ADD CONSTRAINT "invitations_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "invitations" ADD CONSTRAINT "invitations_invited_by_users_id_fk" FOREIGN KEY ("invited_by") REFERENCES "public"."users"("id") ON DELETE set null ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "maps" ADD CONSTRAINT "maps_result_id_results_id_fk" FOREIGN KEY ("result_id") REFERENCES "public"."results"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_team_id_teams_id_fk" FOREIGN KEY ("team_id") REFERENCES "public"."teams"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_batch_id_batches_id_fk" FOREIGN KEY ("batch_id") REFERENCES "public"."batches"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "partner_links" ADD CONSTRAINT "partner_links_molecule_id_molecules_id_fk" FOREIGN KEY ("molecule_id") REFERENCES "public"."molecules"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint

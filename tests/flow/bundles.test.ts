@@ -4,22 +4,16 @@ import { createHash } from 'node:crypto';
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { setImmediate } from 'node:timers/promises';
-import { eq } from 'drizzle-orm';
 import { unzipSync } from 'fflate';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { perform } from '$lib/engine';
 import { answerSchema } from '$lib/domain/bundle-schema';
 import { planSchema, readingSchema } from '$lib/domain/submission';
 import { bundleBatch } from '$lib/server/bundles';
-import { db } from '$lib/server/db';
-import { tasks } from '$lib/server/db/schema';
 import { readUpload } from '$lib/server/drafts';
 import type { Member } from '$lib/server/member';
 import { stopQueue } from '$lib/server/queue';
-import * as results from '$lib/server/results';
 import { submit } from '$lib/server/submission';
-import { claim } from '$lib/server/tasks';
+import { bytesOf, performAll } from '../support/batches';
 import { newTeam } from '../support/people';
 
 afterAll(stopQueue);
@@ -28,22 +22,6 @@ const rows = 'C=CC=C butadiene\nC[C@H](F)Cl ../=evil\nCCCC butadiene';
 let team: Awaited<ReturnType<typeof newTeam>>;
 let batchId: string;
 let files: Record<string, Uint8Array>;
-
-async function* bytesOf(text: string) {
-  yield new TextEncoder().encode(text);
-}
-
-/** Performs every task of a batch here, as a worker would. */
-async function performAll(id: string): Promise<void> {
-  for (const { id: taskId } of await db.select().from(tasks).where(eq(tasks.batchId, id))) {
-    const task = await claim(taskId, 'a test');
-    const result = await perform(results.requestOf(task!), {
-      now: () => performance.now(),
-      breathe: () => setImmediate(),
-    });
-    await results.store(task!, result);
-  }
-}
 
 async function bundle(member: Member): Promise<Record<string, Uint8Array>> {
   const { archive } = await bundleBatch(member, batchId);

@@ -9,7 +9,7 @@ const kcal = (what: string) => z.number().describe(`${what}, kcal/mol`);
 export const answerSchema = z.looseObject({
   name: z.string(),
   smiles: z.string().describe('Canonical isomeric SMILES'),
-  kind: z.enum(['conformers', 'scan', 'conjugation', 'strain']),
+  kind: z.enum(['conformers', 'scan', 'map', 'conjugation', 'strain']),
   settings: z.record(z.string(), z.unknown()).describe('The settings, defaults and seed included'),
   engineVersion: z.string(),
   model: z.string().describe('Energy model'),
@@ -58,6 +58,34 @@ export const answerSchema = z.looseObject({
       ),
     }),
   ),
+  map: z
+    .object({
+      torsions: z.array(z.array(z.number().int())).describe('Two times four atoms, counted from 0'),
+      step: z.number().describe('Degrees between two cells'),
+      perAxis: z.number().int().describe('Cells along each side'),
+      cells: z
+        .array(
+          z.object({
+            angles: z.array(z.number()).describe('Targets of both torsions, degrees'),
+            energy: kcal('Model energy without the restraint').nullable(),
+            relative: kcal('Energy above the lowest cell or minimum').nullable(),
+            coordinates: coordinates.nullable(),
+          }),
+        )
+        .describe(
+          'Row by row, the first torsion ascending by row; null where a cell was not reached',
+        ),
+      minima: z.array(
+        z.object({
+          angles: z.array(z.number()).describe('Degrees, of the geometry itself'),
+          energy: kcal('Model energy'),
+          relative: kcal('Energy above the lowest cell or minimum'),
+          cell: z.number().int().describe('The nearest cell, counted from 0'),
+          coordinates,
+        }),
+      ),
+    })
+    .nullable(),
 });
 
 /** The schema as the text of a JSON Schema document (draft 2020-12). */

@@ -122,16 +122,17 @@ export const scanTaskSchema = exactly('A scan task', {
 
 const mapError = 'A map task needs "torsions": two torsions [i, j, k, l] about different bonds.';
 
+/** The settings of a map, whichever bonds it turns. */
+export const mapSettings = { ...model, step: step(5, 30), seed };
+
 export const mapTaskSchema = exactly('A map task', {
   kind: z.literal('map'),
-  ...model,
+  ...mapSettings,
   torsions: z
     .tuple([torsion, torsion], { error: mapError })
     .refine(([[, a, b], [, c, d]]) => !((a === c && b === d) || (a === d && b === c)), {
       error: mapError,
     }),
-  step: step(5, 30),
-  seed,
 });
 
 export const conjugationTaskSchema = exactly('A conjugation task', {

@@ -3,6 +3,7 @@
 const taskKinds = {
   conformers: 'Conformers',
   scan: 'Torsion scan',
+  map: 'Map of two bonds',
   conjugation: 'Conjugation',
   strain: 'Strain',
 } as const;

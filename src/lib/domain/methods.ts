@@ -21,6 +21,7 @@ const SENTENCES: Readonly<Record<string, string>> = {
   conformers:
     'Conformers were searched from distance geometry, systematic turns of all rotatable bonds and repeated kicks, minimized to an RMS gradient of at most 0.001 kcal/mol/Å, freed of duplicates under symmetry, and weighted by their Boltzmann factors and degeneracies.',
   scan: 'Torsion profiles were relaxed at every grid angle with the torsion held, each angle started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely and maxima refined along the profile. Rates take the energy barrier in the place of the free energy of activation, with a transmission coefficient of 1.',
+  map: 'Maps of two bonds were relaxed in every cell of the grid with both torsions held, each cell started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely, and the lowest way between two of them is the one whose highest cell is lowest.',
   conjugation:
     'Conjugated bonds were described by the twist between the local π axes, its overlap cos², and the energies of their s-cis and s-trans forms along a relaxed profile.',
   strain:

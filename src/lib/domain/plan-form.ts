@@ -19,6 +19,7 @@ export function readPlan(form: FormData) {
           temperature,
         }
       : null,
+    maps: checked('maps') ? { step: number('mapStep') } : null,
     conjugation: checked('conjugation') ? { temperature } : null,
     strain: checked('strain') ? { tether: number('tether') } : null,
   });

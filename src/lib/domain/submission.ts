@@ -3,6 +3,7 @@ import { z } from 'zod';
 import {
   conformersTaskSchema,
   conjugationTaskSchema,
+  mapSettings,
   scanSettings,
   strainTaskSchema,
 } from './compute';
@@ -73,11 +74,23 @@ const scansSchema = z.strictObject({
   ...scanSettings,
 });
 
+/** A finer map takes hours, and tells no more. */
+const FINEST_MAP = 10;
+
+/** A map turns the two bonds clicked on the drawing of each row. */
+const mapsSchema = z.strictObject({
+  ...mapSettings,
+  step: mapSettings.step.refine((degrees) => degrees >= FINEST_MAP, {
+    error: `The step of a map is at least ${FINEST_MAP} degrees.`,
+  }),
+});
+
 /** What is run for every molecule of a batch; at least one kind of task. */
 export const planSchema = z
   .strictObject({
     conformers: conformersTaskSchema.omit({ kind: true }).nullable().default(null),
     scans: scansSchema.nullable().default(null),
+    maps: mapsSchema.nullable().default(null),
     conjugation: conjugationTaskSchema.omit({ kind: true }).nullable().default(null),
     strain: strainTaskSchema.omit({ kind: true }).nullable().default(null),
   })
@@ -86,11 +99,25 @@ export const planSchema = z
   });
 export type Plan = z.output<typeof planSchema>;
 
-/** The bonds clicked on one row's drawing, each as its two atoms counted from 0. */
-export const chosenBondsSchema = z
-  .array(z.tuple([z.number().int().min(0), z.number().int().min(0)]))
-  .max(50);
+const clickedBond = z.tuple([z.number().int().min(0), z.number().int().min(0)]);
+
+/** The bonds clicked on one row's drawing for scans, each as its two atoms counted from 0. */
+export const chosenBondsSchema = z.array(clickedBond).max(50);
 export type ChosenBonds = z.output<typeof chosenBondsSchema>;
+
+/** The two bonds clicked on one row's drawing for its map, or none. */
+export const mapBondsSchema = z
+  .array(clickedBond)
+  .refine((bonds) => bonds.length === 0 || bonds.length === 2, {
+    error: 'A map turns two bonds.',
+  });
+
+/** The choice of bonds of one row: what it is for, and the bonds. */
+export const bondChoiceSchema = z.discriminatedUnion('purpose', [
+  z.object({ purpose: z.literal('scan'), bonds: chosenBondsSchema }),
+  z.object({ purpose: z.literal('map'), bonds: mapBondsSchema }),
+]);
+export type RowBondChoice = z.output<typeof bondChoiceSchema>;
 
 /** A remark on a row: a warning, or the reason why it cannot be computed. */
 export const remarkSchema = z.object({

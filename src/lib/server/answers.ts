@@ -1,9 +1,19 @@
 /** Stored answers, read back whole: for pages and bundles. */
 import { and, asc, desc, eq, inArray, isNotNull } from 'drizzle-orm';
 import { db } from './db';
-import { batches, conformers, entries, profileCurves, profiles, results, tasks } from './db/schema';
+import {
+  batches,
+  conformers,
+  entries,
+  maps,
+  profileCurves,
+  profiles,
+  results,
+  tasks,
+} from './db/schema';
 import type { InTeam } from './member';
 import { unpack } from './packing';
+import { toMap, type StoredMap } from './stored-maps';
 
 export interface StoredConformer {
   readonly rank: number;
@@ -57,6 +67,8 @@ export interface Answer {
   readonly seconds: number;
   readonly conformers: readonly StoredConformer[];
   readonly profiles: readonly StoredProfile[];
+  /** The energy over two torsions; null in answers of other kinds. */
+  readonly map: StoredMap | null;
 }
 
 /** The results of a molecule's finished tasks in the member's team, those of one batch where it is named. */
@@ -111,6 +123,7 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
     .where(inArray(profiles.resultId, wanted))
     .orderBy(asc(profileCurves.model));
+  const mapped = await db.select().from(maps).where(inArray(maps.resultId, wanted));
   return rows.map((row) => ({
     id: row.id,
     kind: row.kind,
@@ -131,7 +144,27 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     profiles: curves
       .filter(({ profiles: { resultId } }) => resultId === row.id)
       .map(({ profiles: profile, profile_curves: curve }) => toProfile(profile, curve, atomCount)),
+    map: toMap(
+      mapped.find(({ resultId }) => resultId === row.id),
+      atomCount,
+    ),
   }));
+}
+
+/** A stationary point as the table holds it, its energy not yet above the lowest. */
+export type StationaryPointWithoutGeometry = Omit<StoredStationaryPoint, 'coordinates'>;
+
+/** Energies above the lowest of all: one zero, since a free minimum lies a little below the grid point beside it. */
+export function aboveLowest<
+  Point extends { energy: number },
+  Stationary extends { energy: number },
+>(points: readonly Point[], stationary: readonly Stationary[]) {
+  const lowest = Math.min(...[...points, ...stationary].map(({ energy }) => energy));
+  const above = <T extends { energy: number }>(point: T) => ({
+    ...point,
+    relative: point.energy - lowest,
+  });
+  return { points: points.map(above), stationary: stationary.map(above) };
 }
 
 function toProfile(
@@ -140,24 +173,21 @@ function toProfile(
   atomCount: number,
 ): StoredProfile {
   const geometries = unpack(curve.coordinates, atomCount);
-  const stationary = curve.stationary as Omit<StoredStationaryPoint, 'coordinates'>[];
-  // One zero for all: a free minimum lies a little below the grid point beside it.
-  const lowest = Math.min(...curve.energies, ...stationary.map(({ energy }) => energy));
   return {
     torsion: profile.torsion,
     model: curve.model,
     relaxed: curve.relaxed,
-    points: profile.angles.map((angle, n) => ({
-      angle,
-      energy: curve.energies[n],
-      relative: curve.energies[n] - lowest,
-      reached: curve.reached[n],
-      coordinates: geometries[n],
-    })),
-    stationary: stationary.map((point, n) => ({
-      ...point,
-      relative: point.energy - lowest,
-      coordinates: geometries[profile.angles.length + n],
-    })),
+    ...aboveLowest(
+      profile.angles.map((angle, n) => ({
+        angle,
+        energy: curve.energies[n],
+        reached: curve.reached[n],
+        coordinates: geometries[n],
+      })),
+      (curve.stationary as StationaryPointWithoutGeometry[]).map((point, n) => ({
+        ...point,
+        coordinates: geometries[profile.angles.length + n],
+      })),
+    ),
   };
 }

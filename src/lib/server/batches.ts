@@ -265,6 +265,7 @@ export async function listRows(member: Member, batchId: string, page: number, pa
       verdict: entries.verdict,
       remarks: entries.remarks,
       chosenBonds: entries.chosenBonds,
+      mapBonds: entries.mapBonds,
       moleculeId: entries.moleculeId,
       smiles: molecules.smiles,
       formula: molecules.formula,

@@ -1,26 +1,11 @@
 /** The files of one molecule in a bundle. */
-import { atomLabel, writeSdf, type Molecule } from '../engine';
+import { writeSdf } from '../engine';
 import { profilePlot } from '../charts/profile-plot';
 import { csvTable } from '../domain/csv';
 import { createNamer } from '../domain/file-names';
 import type { Answer, StoredProfile } from './answers';
-
-export interface BundleFile {
-  readonly path: string;
-  readonly content: string;
-}
-
-export interface BundledMolecule {
-  readonly name: string;
-  /** Folder of the molecule, safe and unique in the bundle. */
-  readonly folder: string;
-  readonly smiles: string;
-  readonly molecule: Molecule;
-  readonly answers: readonly Answer[];
-}
-
-/** Energies are written to a ten-thousandth; more digits would only pretend. */
-const energy = (value: number): string => value.toFixed(4);
+import { mapFiles } from './bundle-map-files';
+import { atomName, energy, type BundledMolecule, type BundleFile } from './bundle-parts';
 
 /** Every file of a molecule, answer by answer. */
 export function filesOf(bundled: BundledMolecule): BundleFile[] {
@@ -35,7 +20,11 @@ export function filesOf(bundled: BundledMolecule): BundleFile[] {
   });
 }
 
-function baseName({ molecule }: BundledMolecule, { kind, profiles }: Answer): string {
+function baseName({ molecule }: BundledMolecule, { kind, profiles, map }: Answer): string {
+  if (map) {
+    const bonds = map.torsions.map(([, j, k]) => [j, k].map((atom) => atomName(molecule, atom)));
+    return `map_${bonds.map((bond) => bond.join('-')).join('_')}`;
+  }
   const [profile] = profiles;
   if (!profile) return kind;
   return `${kind}_${profile.torsion.map((atom) => atomName(molecule, atom)).join('-')}${profile.relaxed ? '' : '_rigid'}`;
@@ -50,6 +39,7 @@ function tableAndGeometries(
   if (answer.profiles.length > 0) {
     return answer.profiles.flatMap((profile) => profileFiles(bundled, profile, path));
   }
+  if (answer.map) return mapFiles(bundled, answer, answer.map, path);
   if (answer.kind === 'conjugation')
     return [{ path: path('csv'), content: conjugationTable(bundled, answer) }];
   return [
@@ -58,12 +48,12 @@ function tableAndGeometries(
   ];
 }
 
-function conformerFiles(
-  { name, smiles, molecule }: BundledMolecule,
+/** The conformers of an answer with their energies and populations. */
+export function conformersSdf(
+  { name, smiles, molecule }: Pick<BundledMolecule, 'name' | 'smiles' | 'molecule'>,
   answer: Answer,
-  path: (ending: string) => string,
-): BundleFile[] {
-  const sdf = writeSdf(
+): string {
+  return writeSdf(
     answer.conformers.map((conformer) => ({
       molecule,
       coordinates: conformer.coordinates,
@@ -78,6 +68,13 @@ function conformerFiles(
       },
     })),
   );
+}
+
+function conformerFiles(
+  bundled: BundledMolecule,
+  answer: Answer,
+  path: (ending: string) => string,
+): BundleFile[] {
   const csv = csvTable(
     [
       'conformer',
@@ -99,7 +96,7 @@ function conformerFiles(
     ),
   );
   return [
-    { path: path('sdf'), content: sdf },
+    { path: path('sdf'), content: conformersSdf(bundled, answer) },
     { path: path('csv'), content: csv },
   ];
 }
@@ -216,7 +213,7 @@ function strainTable({ molecule }: BundledMolecule, { details }: Answer): string
 
 /** An answer as JSON, with full coordinates; the schema is beside it in the bundle. */
 export function asJson({ name, smiles }: Pick<BundledMolecule, 'name' | 'smiles'>, answer: Answer) {
-  const { conformers, profiles, id: _id, ...rest } = answer;
+  const { conformers, profiles, map, id: _id, ...rest } = answer;
   const plain = (coordinates: Float64Array): number[] => [...coordinates];
   return {
     name,
@@ -236,9 +233,19 @@ export function asJson({ name, smiles }: Pick<BundledMolecule, 'name' | 'smiles'
         coordinates: plain(point.coordinates),
       })),
     })),
+    map: map && {
+      ...map,
+      torsions: map.torsions.map((torsion) => [...torsion]),
+      cells: map.cells.map((cell) => ({
+        ...cell,
+        angles: [...cell.angles],
+        coordinates: cell.coordinates && plain(cell.coordinates),
+      })),
+      minima: map.minima.map((minimum) => ({
+        ...minimum,
+        angles: [...minimum.angles],
+        coordinates: plain(minimum.coordinates),
+      })),
+    },
   };
-}
-
-function atomName(molecule: Molecule, atom: number): string {
-  return atomLabel(molecule.atomicNumbers[atom], atom);
 }

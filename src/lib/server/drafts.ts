@@ -1,6 +1,6 @@
 /** Drafts of batches: rows are read into them, looked at by their maker, and submitted or thrown away. */
 import { and, eq, isNull, lt, sql } from 'drizzle-orm';
-import type { ChosenBonds, Format, Reading } from '../domain/submission';
+import type { RowBondChoice, Format, Reading } from '../domain/submission';
 import { db, type Executor } from './db';
 import { batches, entries, molecules } from './db/schema';
 import { notFound, require, type Member } from './member';
@@ -148,18 +148,18 @@ async function storeStructures(
   return new Map(stored.map(({ id, digest }) => [digest, id]));
 }
 
-/** Sets the bonds of one row of a draft that will be scanned. */
+/** Sets the bonds of one row of a draft that will be scanned, or the two of its map. */
 export async function chooseBonds(
   member: Member,
   batchId: string,
   entryId: string,
-  chosenBonds: ChosenBonds,
+  { purpose, bonds }: RowBondChoice,
 ): Promise<void> {
   await db.transaction(async (transaction) => {
     await ownDraft(transaction, member, batchId);
     const changed = await transaction
       .update(entries)
-      .set({ chosenBonds })
+      .set(purpose === 'map' ? { mapBonds: bonds } : { chosenBonds: bonds })
       .where(and(eq(entries.id, entryId), eq(entries.batchId, batchId)))
       .returning({ id: entries.id });
     if (changed.length === 0) notFound('row');

@@ -24,6 +24,7 @@ export async function estimate(member: Member, batchId: string, plan: Plan): Pro
     .select({
       id: entries.id,
       chosenBonds: entries.chosenBonds,
+      mapBonds: entries.mapBonds,
       moleculeId: molecules.id,
       rotors: molecules.rotors,
       atomCount: molecules.atomCount,
@@ -41,7 +42,9 @@ export async function estimate(member: Member, batchId: string, plan: Plan): Pro
   const open = planned.filter(({ task }) => !known.has(identityOf(task)));
   const seconds = open.reduce((sum, { task, row }) => {
     const rotorCount = row.rotors.filter((rotor) => !rotor.terminal).length;
-    return sum + likelySeconds(task.kind, { atomCount: row.atomCount, rotorCount });
+    const molecule = { atomCount: row.atomCount, rotorCount };
+    const step = task.kind === 'map' ? Number(task.settings.step) : undefined;
+    return sum + likelySeconds(task.kind, molecule, step === undefined ? {} : { step });
   }, 0);
   return { tasks: planned.length, stored: planned.length - open.length, seconds };
 }

@@ -7,9 +7,10 @@ import {
   scanSentence,
   strainSentence,
 } from '../domain/sentences';
+import { readProfile } from '../domain/profile-reading';
 import { db } from './db';
 import { conformers, profileCurves, profiles, results } from './db/schema';
-import type { StoredStationaryPoint } from './answers';
+import { aboveLowest, type StationaryPointWithoutGeometry } from './answers';
 import type { Member } from './member';
 
 /** Which kind of answer a person wants to read first. */
@@ -67,6 +68,8 @@ function sentenceOf(head: Head): string | null | Promise<string | null> {
       return scanHeadline(head);
     case 'conformers':
       return conformersHeadline(head);
+    case 'map':
+      return null;
   }
 }
 
@@ -99,7 +102,9 @@ async function scanHeadline(head: Head): Promise<string | null> {
   const [curve] = await db
     .select({
       torsion: profiles.torsion,
+      angles: profiles.angles,
       relaxed: profileCurves.relaxed,
+      energies: profileCurves.energies,
       stationary: profileCurves.stationary,
     })
     .from(profiles)
@@ -107,23 +112,21 @@ async function scanHeadline(head: Head): Promise<string | null> {
     .where(eq(profiles.resultId, head.id))
     .limit(1);
   if (!curve) return null;
-  const { crossings, temperature, complete } = head.details as Pick<
+  const { symmetry, temperature, complete } = head.details as Pick<
     Result<'scan'>,
-    'crossings' | 'temperature' | 'complete'
+    'symmetry' | 'temperature' | 'complete'
   >;
-  const minima = (curve.stationary as Omit<StoredStationaryPoint, 'coordinates'>[])
-    .filter(({ kind }) => kind === 'minimum')
-    .sort((a, b) => a.energy - b.energy);
-  const highest = [...crossings].sort((a, b) => b.barrier - a.barrier)[0];
+  const { points, stationary } = aboveLowest(
+    curve.angles.map((angle, n) => ({ angle, energy: curve.energies[n] })),
+    curve.stationary as StationaryPointWithoutGeometry[],
+  );
   return scanSentence(
     {
-      torsion: bondName(head, curve.torsion),
-      preferred: minima[0] ?? null,
-      barrier: highest?.barrier ?? null,
-      halfLife: highest?.halfLife ?? null,
-      temperature,
+      bond: bondName(head, curve.torsion.slice(1, 3)),
+      reading: readProfile({ points, stationary, symmetry }, temperature),
       relaxed: curve.relaxed,
       complete,
+      converged: stationary.every(({ converged }) => converged),
     },
     UNIT,
   );

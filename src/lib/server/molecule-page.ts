@@ -1,16 +1,18 @@
 /** What the page of a molecule shows, in the order it is read: answers first, evidence after. */
 import { and, count, desc, eq } from 'drizzle-orm';
 import { distinctions } from '../domain/settings-text';
-import type { Result } from '../engine';
 import { drawMolecule, writeMolfile, type Molecule } from '../engine';
 import { readAnswers, resultIdsOf, type Answer } from './answers';
+import { describeConformers } from './conformers-section';
+import { conjugationForms, describeConjugation } from './conjugation-section';
 import { db } from './db';
 import { batches, entries, tasks } from './db/schema';
+import { describeMaps, mapGeometries } from './map-section';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
 import { bondName } from './molecules';
 import { describeScan, packScan, skeletonOf } from './scan-section';
-import { provenance, type ToldApart } from './section-parts';
+import { describeStrain, strainGeometries } from './strain-section';
 
 /** Everything the page needs but the geometries, which it asks for when they are looked at. */
 export async function load(member: Member, moleculeId: string) {
@@ -47,73 +49,25 @@ export async function load(member: Member, moleculeId: string) {
     skeleton: skeletonOf(molecule),
     batches: mentions.map(({ batchId, batchName }) => ({ id: batchId, name: batchName })),
     tasks: open,
-    conformers: of('conformers').map((answer) => describeConformers(answer)),
+    conformers: of('conformers').map((answer) =>
+      describeConformers(molecule, stored.rotors, answer),
+    ),
     // A rigid profile is there to be compared with the relaxed one, so it comes after.
     scans: of('scan')
       .flatMap((answer) =>
         answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
       )
       .toSorted((a, b) => Number(b.relaxed) - Number(a.relaxed)),
+    maps: describeMaps(molecule, of('map')),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };
 }
 
 /** What an answer is about: answers about the same need telling apart. */
-function subjectOf(molecule: Molecule, { kind, profiles }: Answer): string {
-  return [kind, ...profiles.map(({ torsion }) => bondName(molecule, torsion.slice(1, 3)))].join(
-    ' ',
-  );
-}
-
-function describeConformers(answer: ToldApart) {
-  return {
-    ...provenance(answer),
-    complete: answer.details.complete as boolean,
-    window: answer.settings.window as number,
-    temperature: answer.settings.temperature as number,
-    rows: answer.conformers.map(({ coordinates: _coordinates, ...conformer }) => conformer),
-  };
-}
-
-function describeConjugation(molecule: Molecule, answer: ToldApart) {
-  const { bonds } = answer.details as Pick<Result<'conjugation'>, 'bonds'>;
-  return {
-    ...provenance(answer),
-    temperature: answer.settings.temperature as number,
-    bonds: bonds.map((bond) => ({
-      name: bondName(molecule, bond.bond),
-      kind: bond.kind,
-      inRing: bond.inRing,
-      twist: bond.twist,
-      difference: bond.difference,
-      sCisFraction: bond.sCisFraction,
-      planarSCisCost: bond.planarSCisCost,
-      barrier: bond.barrier,
-      meanOverlap: bond.meanOverlap,
-      profile: bond.profile,
-      complete: bond.complete,
-    })),
-  };
-}
-
-function describeStrain(molecule: Molecule, answer: ToldApart) {
-  const details = answer.details as Omit<
-    Result<'strain'>,
-    'molfile' | 'smiles' | 'warnings' | 'provenance'
-  >;
-  return {
-    ...provenance(answer),
-    strain: details.strain,
-    complete: details.complete,
-    largestDisplacement: details.largestDisplacement,
-    torsions: details.torsions.map(({ bond, angle, strain, preferredAngle }) => ({
-      name: bondName(molecule, bond),
-      angle,
-      strain,
-      preferredAngle,
-    })),
-  };
+function subjectOf(molecule: Molecule, { kind, profiles, map }: Answer): string {
+  const torsions = [...profiles.map(({ torsion }) => torsion), ...(map?.torsions ?? [])];
+  return [kind, ...torsions.map((torsion) => bondName(molecule, torsion.slice(1, 3)))].join(' ');
 }
 
 /** One answer of a molecule, for who may see it; anything else is not there. */
@@ -136,7 +90,10 @@ export async function packedGeometries(
   return packScan(answer);
 }
 
-/** The geometries of one answer as molfiles: conformers lowest first, or the points of a profile by angle. */
+/**
+ * The geometries of one answer as molfiles: conformers lowest first, the points of a profile by angle, the forms of
+ * conjugated bonds, the cells and minima of a map, or a strained geometry as given, relaxed in place and unstrained.
+ */
 export async function geometries(
   member: Member,
   moleculeId: string,
@@ -144,11 +101,24 @@ export async function geometries(
 ): Promise<string[]> {
   const { stored, answer } = await readAnswer(member, moleculeId, resultId);
   const molecule = molecules.readStored(stored);
+  const plain = molfilesOf(molecule, answer);
+  if (plain) return plain;
   const frames =
     answer.conformers.length > 0
       ? answer.conformers
       : answer.profiles.flatMap((profile) => profile.points);
-  return frames.length > 0
-    ? frames.map(({ coordinates }) => writeMolfile(molecule, coordinates))
-    : [answer.molfile];
+  return frames.map(({ coordinates }) => writeMolfile(molecule, coordinates));
+}
+
+/** The geometries of answers that are neither conformers nor profiles. */
+function molfilesOf(molecule: Molecule, answer: Answer): string[] | null {
+  if (answer.map) return mapGeometries(molecule, answer.map);
+  switch (answer.kind) {
+    case 'conjugation':
+      return conjugationForms(answer).map(({ molfile }) => molfile);
+    case 'strain':
+      return strainGeometries(answer);
+    default:
+      return null;
+  }
 }

@@ -14,14 +14,17 @@ export async function get(member: InTeam, moleculeId: string) {
   return molecule ?? notFound('molecule');
 }
 
-/** The name a molecule was last sent with; its formula where it has none. */
-export async function nameOf({ id, formula }: { id: string; formula: string }): Promise<string> {
+/** The name under which a molecule was last submitted in its team, else its formula. */
+export async function nameOf({
+  id,
+  formula,
+}: Pick<typeof molecules.$inferSelect, 'id' | 'formula'>): Promise<string> {
   const [entry] = await db
     .select({ name: entries.name })
     .from(entries)
     .innerJoin(batches, eq(batches.id, entries.batchId))
     .where(eq(entries.moleculeId, id))
-    .orderBy(desc(batches.createdAt))
+    .orderBy(desc(batches.submittedAt))
     .limit(1);
   return entry?.name ?? formula;
 }

@@ -24,16 +24,3 @@ export function unpack(bytes: Uint8Array, atomCount: number): Float64Array[] {
     ),
   );
 }
-
-/** The coordinates written in a V2000 molfile. */
-export function coordinatesOf(molfile: string): Float64Array {
-  const lines = molfile.split('\n');
-  const atomCount = Number(lines[3].slice(0, 3));
-  const coordinates = new Float64Array(3 * atomCount);
-  for (let atom = 0; atom < atomCount; atom++) {
-    for (let axis = 0; axis < 3; axis++) {
-      coordinates[3 * atom + axis] = Number(lines[4 + atom].slice(10 * axis, 10 * axis + 10));
-    }
-  }
-  return coordinates;
-}

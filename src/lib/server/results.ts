@@ -3,9 +3,10 @@ import { createHash } from 'node:crypto';
 import { and, eq, inArray } from 'drizzle-orm';
 import { ENGINE_VERSION, type Request, type Result } from '../engine';
 import { taskSchema } from '../domain/compute';
+import { coordinatesOf } from '../domain/molfile-geometry';
 import { db, type Executor } from './db';
-import { conformers, profileCurves, profiles, results } from './db/schema';
-import { coordinatesOf, pack } from './packing';
+import { conformers, maps, profileCurves, profiles, results } from './db/schema';
+import { pack } from './packing';
 import { finish, type ClaimedTask } from './tasks';
 
 /** What an answer belongs to; together with the engine's version it is unique. */
@@ -150,6 +151,7 @@ function partition(result: Result): Partition {
   const { molfile: _molfile, smiles: _smiles, warnings: _warnings, provenance, ...fields } = result;
   if ('conformers' in fields) return partitionConformers(fields);
   if ('points' in fields) return partitionScan(fields, provenance.model);
+  if ('cells' in fields) return partitionMap(fields);
   return { rows: () => Promise.resolve(), details: { ...fields } };
 }
 
@@ -196,6 +198,31 @@ function partitionScan(
         reached: points.map(({ reached }) => reached),
         coordinates: pack([...points, ...stationary].map(({ molfile }) => coordinatesOf(molfile))),
         stationary: stationary.map(({ molfile: _molfile, ...point }) => point),
+      });
+    },
+  };
+}
+
+function partitionMap(
+  fields: Omit<Result<'map'>, 'molfile' | 'smiles' | 'warnings' | 'provenance'>,
+): Partition {
+  const { cells, minima, torsions, step, perAxis, ...details } = fields;
+  const reached = cells.flatMap(({ molfile }) => molfile ?? []);
+  return {
+    details,
+    rows: async (executor, resultId) => {
+      await executor.insert(maps).values({
+        resultId,
+        torsions,
+        step,
+        perAxis,
+        energies: cells.map(({ energy }) => energy),
+        coordinates: pack(
+          [...reached, ...minima.map(({ molfile }) => molfile)].map((molfile) =>
+            coordinatesOf(molfile),
+          ),
+        ),
+        minima: minima.map(({ angles, energy, cell }) => ({ angles, energy, cell })),
       });
     },
   };

@@ -31,6 +31,7 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
       .select({
         id: entries.id,
         chosenBonds: entries.chosenBonds,
+        mapBonds: entries.mapBonds,
         moleculeId: molecules.id,
         rotors: molecules.rotors,
         hasGeometry: molecules.hasGeometry,

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { distance, rotateAbout, torsion, wrapDegrees } from '$lib/engine/light';
 import { readMolecule } from '$lib/engine';
-import { coordinatesOf } from '$lib/server/packing';
+import { coordinatesOf } from '$lib/domain/molfile-geometry';
 import { compute } from '../../../tests/support/compute';
 import type { Skeleton } from './internal-coordinates';
 import { createTurningGeometry, type Knot } from './turning-geometry';

@@ -8,6 +8,7 @@ import { rotateAbout, torsion } from '../geometry';
 import { readMolecule } from '../molecule/read';
 import { movedAtoms } from '../molecule/rotatable';
 import { writeMolfile } from '../molecule/write';
+import { createPeriodicCurve } from '../thermo/periodic-curve';
 import { analyzeStrain } from './analyze';
 import type { StrainResult } from './strain';
 
@@ -58,6 +59,15 @@ describe('the strain of a geometry', () => {
     expect(sum).toBeCloseTo(strain, 6);
     expect(torsions).toHaveLength(1);
     expect(torsions[0].strain).toBeCloseTo(0.78, 1);
+    // Its profile begins at nothing, passes over both barriers (5.21 and 3.96) and is what the strain was read from.
+    const { profile, angle } = torsions[0];
+    expect(Math.min(...profile.map(({ relative }) => relative))).toBe(0);
+    expect(Math.max(...profile.map(({ relative }) => relative))).toBeCloseTo(5.21, 1);
+    const curve = createPeriodicCurve(
+      profile.map((point) => point.angle),
+      profile.map(({ relative }) => relative),
+    );
+    expect(curve.at(angle)).toBeCloseTo(torsions[0].strain, 3);
     expect(Math.abs(torsions[0].angle)).toBeGreaterThan(60);
     expect(Math.abs(torsions[0].angle)).toBeLessThan(70);
     expect(Math.abs(torsions[0].preferredAngle)).toBeCloseTo(180, 0);

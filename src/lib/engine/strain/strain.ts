@@ -9,6 +9,13 @@ export interface StrainOptions {
   readonly seed: number;
 }
 
+/** One angle of a fragment's profile. */
+export interface StrainPoint {
+  readonly angle: number;
+  /** kcal/mol above the profile's lowest point. */
+  readonly relative: number;
+}
+
 /** What one bond's torsion angle costs. */
 export interface TorsionStrain {
   readonly bond: readonly [number, number];
@@ -17,8 +24,10 @@ export interface TorsionStrain {
   readonly angle: number;
   /** Energy of the fragment's profile at the angle above its lowest point, kcal/mol. */
   readonly strain: number;
-  /** Where the fragment's profile is lowest, degrees. */
+  /** Where the fragment's profile is lowest, degrees; of equally low angles the one nearest to the geometry's. */
   readonly preferredAngle: number;
+  /** The fragment's profile with its stationary points, ascending in angle. */
+  readonly profile: readonly StrainPoint[];
   /** False when time ran out before the fragment's profile was through. */
   readonly complete: boolean;
 }

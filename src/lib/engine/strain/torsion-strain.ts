@@ -8,8 +8,12 @@ import { profileCurve } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import { defaultScanOptions } from '../torsion/scan-result';
 import type { TorsionAtoms } from '../torsion/scan-symmetry';
+import { turnBetween } from '../units';
 import { cutFragment } from './fragment';
 import type { TorsionStrain } from './strain';
+
+/** Energies of minima that symmetry makes equal differ by rounding only, kcal/mol. */
+const SAME_ENERGY = 1e-3;
 
 /**
  * The strain of every rotatable bond of a geometry (Å, 3N), most strained first; those that time did not suffice for are
@@ -51,13 +55,24 @@ async function torsionStrain(
   const samples = [...scan.points, ...scan.stationary];
   const lowest = samples.reduce((best, sample) => (sample.energy < best.energy ? sample : best));
   const angle = torsion(x, i, j, k, l);
+  // A symmetric profile is lowest at several angles.
+  const preferred = samples
+    .filter(({ energy }) => energy < lowest.energy + SAME_ENERGY)
+    .reduce((best, sample) =>
+      Math.abs(turnBetween(angle, sample.angle)) < Math.abs(turnBetween(angle, best.angle))
+        ? sample
+        : best,
+    );
   return {
     bond: [j, k],
     torsion: atoms,
     angle,
     // The curve meets its points up to rounding only.
     strain: Math.max(0, profileCurve(scan).at(angle) - lowest.energy),
-    preferredAngle: lowest.angle,
+    preferredAngle: preferred.angle,
+    profile: samples
+      .map((sample) => ({ angle: sample.angle, relative: sample.energy - lowest.energy }))
+      .sort((a, b) => a.angle - b.angle),
     complete: scan.complete,
   };
 }

@@ -34,7 +34,13 @@ const created = () => moment('created_at').notNull().defaultNow();
 
 export const roleEnum = pgEnum('role', roles);
 export const energyUnitEnum = pgEnum('energy_unit', energyUnits);
-export const taskKindEnum = pgEnum('task_kind', ['conformers', 'scan', 'conjugation', 'strain']);
+export const taskKindEnum = pgEnum('task_kind', [
+  'conformers',
+  'scan',
+  'map',
+  'conjugation',
+  'strain',
+]);
 export const taskStateEnum = pgEnum('task_state', [
   'queued',
   'running',
@@ -230,6 +236,8 @@ export const entries = pgTable(
     remarks: jsonb('remarks').notNull().default([]),
     /** Bonds clicked on the drawing, [[j, k], …], where the plan scans chosen bonds. */
     chosenBonds: jsonb('chosen_bonds').notNull().default([]),
+    /** The two bonds of a map, clicked on the drawing: [[j, k], [m, n]], or none. */
+    mapBonds: jsonb('map_bonds').notNull().default([]),
   },
   (table) => [
     unique('entries_batch_position').on(table.batchId, table.position),
@@ -407,6 +415,23 @@ export const idempotentAnswers = pgTable(
     index('idempotent_answers_created').on(table.createdAt),
   ],
 );
+/** The energy over two torsions that a result mapped. */
+export const maps = pgTable('maps', {
+  resultId: uuid('result_id')
+    .primaryKey()
+    .references(() => results.id, { onDelete: 'cascade' }),
+  /** The two torsions, each as its four atoms counted from 0. */
+  torsions: jsonb('torsions').notNull(),
+  /** Degrees between two cells, and cells along each side. */
+  step: doublePrecision('step').notNull(),
+  perAxis: smallint('per_axis').notNull(),
+  /** kcal/mol, row by row; null where time ran out before the cell was reached. */
+  energies: jsonb('energies').notNull(),
+  /** Packed as a conformer's: the geometries of the cells that were reached, then those of the minima. */
+  coordinates: bytes('coordinates').notNull(),
+  /** [{angles, energy, cell}] as the engine gives them, lowest first. */
+  minima: jsonb('minima').notNull(),
+});
 
 /** One computation of one entry. The row is the only truth shown to people; the queue's own state is plumbing. */
 export const tasks = pgTable(

@@ -1,7 +1,7 @@
 import { error, fail, redirect } from '@sveltejs/kit';
 import { uuidParam } from '$lib/domain/identifiers';
 import { readPlan } from '$lib/domain/plan-form';
-import { chosenBondsSchema } from '$lib/domain/submission';
+import { bondChoiceSchema } from '$lib/domain/submission';
 import * as batches from '$lib/server/batches';
 import { chooseBonds, discardDraft } from '$lib/server/drafts';
 import { submit, SubmissionError } from '$lib/server/submission';
@@ -35,13 +35,16 @@ export const actions: Actions = {
 
   choose: async ({ locals, params, request }) => {
     const form = await request.formData();
-    const bonds = chosenBondsSchema.safeParse(parseJson(form.get('bonds')));
-    if (!bonds.success) error(400, 'These are no bonds.');
+    const choice = bondChoiceSchema.safeParse({
+      purpose: form.get('purpose'),
+      bonds: parseJson(form.get('bonds')),
+    });
+    if (!choice.success) error(400, 'These are no bonds.');
     await chooseBonds(
       whoAsks(locals),
       uuidParam(params.id),
       uuidParam(String(form.get('row'))),
-      bonds.data,
+      choice.data,
     );
   },
 
