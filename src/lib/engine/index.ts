@@ -12,6 +12,8 @@ export { hasResources, registerResources } from './molecule/resources';
 export { rotatableBonds } from './molecule/rotatable';
 export { stereoisomers } from './molecule/stereoisomers';
 export type { RotatableBond } from './molecule/rotatable';
+export { fingerprintOf, FINGERPRINT_BITS, readPattern } from './molecule/substructure';
+export type { Pattern } from './molecule/substructure';
 export { writeMolfile, writeSdf } from './molecule/write';
 export type { SdfRecord } from './molecule/write';
 export { perform } from './run';

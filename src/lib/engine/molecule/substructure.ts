@@ -1,0 +1,93 @@
+/** Substructure search by openchemlib: a pattern, the fingerprint that screens for it, and the match atom by atom. */
+import { Molecule as OclMolecule, SmilesParser, SSSearcher } from 'openchemlib';
+import { InputError } from '../errors';
+
+/** Longest pattern that is read, characters; and its most atoms, so that no match takes long. */
+const LONGEST_PATTERN = 400;
+const MOST_ATOMS = 80;
+
+/** openchemlib's 512 keys are fragments of its own choosing, 32 in each number. */
+export const FINGERPRINT_BITS = 512;
+
+/** Part of a structure that is looked for in others. Configuration is not compared. */
+export interface Pattern {
+  /** Bits that every structure with the pattern has, as 512 digits 0 and 1. */
+  readonly fingerprint: string;
+  /** True when the structure, a SMILES that the engine wrote, holds the pattern. */
+  readonly isIn: (smiles: string) => boolean;
+}
+
+/** The fingerprint of a structure, given by a SMILES that the engine wrote, as 512 digits 0 and 1. */
+export function fingerprintOf(smiles: string): string {
+  return digits(readTarget(smiles));
+}
+
+/**
+ * Reads a pattern written as SMILES or SMARTS: in both, what is left open matches anything, and hydrogens that are not
+ * written may be any group. Throws InputError for what openchemlib cannot take.
+ */
+export function readPattern(text: string): Pattern {
+  const written = text.trim();
+  if (written === '') throw new InputError('empty-input', 'The structure is empty.');
+  if (written.length > LONGEST_PATTERN) {
+    throw new InputError(
+      'too-large',
+      `A structure to look for has at most ${LONGEST_PATTERN} characters.`,
+    );
+  }
+  const fragment = parsePattern(written);
+  const atomCount = fragment.getAllAtoms();
+  if (atomCount === 0) {
+    throw new InputError('unreadable', 'There is no atom in the structure to look for.');
+  }
+  if (atomCount > MOST_ATOMS) {
+    throw new InputError('too-large', `A structure to look for has at most ${MOST_ATOMS} atoms.`);
+  }
+  const searcher = new SSSearcher();
+  searcher.setFragment(fragment);
+  return {
+    fingerprint: digits(fragment),
+    isIn: (smiles) => {
+      searcher.setMolecule(readTarget(smiles));
+      return searcher.isFragmentInMolecule();
+    },
+  };
+}
+
+function parsePattern(text: string): OclMolecule {
+  const parser = new SmilesParser({ smartsMode: 'smarts', createSmartsWarnings: true });
+  const fragment = parse();
+  const ignored = parser.getSmartsWarning();
+  if (ignored) {
+    throw new InputError(
+      'query-feature',
+      `This part of the SMARTS is not understood: ${ignored}. Leave it out.`,
+    );
+  }
+  fragment.setFragment(true);
+  return fragment;
+
+  function parse(): OclMolecule {
+    try {
+      return parser.parseMolecule(text, { noStereo: true });
+    } catch (error) {
+      throw new InputError('unreadable', `This is no SMILES or SMARTS: ${reasonOf(error)}.`);
+    }
+  }
+}
+
+/** What openchemlib says, without the names of its own parts. */
+function reasonOf(error: unknown): string {
+  const text = error instanceof Error ? error.message : String(error);
+  return text.replace(/^.*SmilesParser:\s*/s, '').replace(/[.\s]+$/, '') || 'it cannot be read';
+}
+
+function readTarget(smiles: string): OclMolecule {
+  return OclMolecule.fromSmiles(smiles, { noStereo: true, noCoordinates: true });
+}
+
+function digits(molecule: OclMolecule): string {
+  return Array.from(molecule.getIndex(), (word) => (word >>> 0).toString(2).padStart(32, '0')).join(
+    '',
+  );
+}
