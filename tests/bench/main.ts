@@ -2,7 +2,7 @@
  * The bench: how fast and how lean the engine is beside openchemlib and, where installed, RDKit, in the same run.
  *
  *     npm run bench                          every section
- *     npm run bench -- minimization scan     some of: minimization, scan, search, memory
+ *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, search-page
  *     npm run bench -- --record              keeps the report in tests/bench/results
  */
 import { mkdirSync, writeFileSync } from 'node:fs';
@@ -14,12 +14,14 @@ import { minimizationSection } from './minimization';
 import { hasRdkit } from './rdkit';
 import { scanSection } from './scan';
 import { searchSection } from './search';
+import { searchPageSection } from './search-page';
 
 const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   minimization: minimizationSection,
   scan: scanSection,
   search: searchSection,
   memory: memorySection,
+  'search-page': searchPageSection,
 };
 
 const chosen = process.argv.slice(2).filter((argument) => argument !== '--record');

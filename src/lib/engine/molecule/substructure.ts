@@ -35,6 +35,9 @@ export function readPattern(text: string): Pattern {
       `A structure to look for has at most ${LONGEST_PATTERN} characters.`,
     );
   }
+  if (/\s/.test(written)) {
+    throw new InputError('unreadable', 'One structure is looked for, written without spaces.');
+  }
   const fragment = parsePattern(written);
   const atomCount = fragment.getAllAtoms();
   if (atomCount === 0) {
