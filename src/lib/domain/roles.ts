@@ -16,6 +16,7 @@ export const lowestRole = {
   'manage members': 'lead',
   'manage limits': 'lead',
   'delete results': 'lead',
+  'delete any comment': 'lead',
 } as const satisfies Record<string, Role>;
 export type Permission = keyof typeof lowestRole;
 

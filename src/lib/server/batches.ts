@@ -1,7 +1,7 @@
 /** Batches as their team sees them. */
 import { and, asc, count, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
 import { db } from './db';
-import { batches, entries, molecules, tasks, users } from './db/schema';
+import { batches, entries, molecules, notes, tasks, users } from './db/schema';
 import { notFound, type Member } from './member';
 
 export type TaskState = (typeof tasks.$inferSelect)['state'];
@@ -104,6 +104,7 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
       remarks: entries.remarks,
       moleculeId: entries.moleculeId,
       formula: molecules.formula,
+      openNotes: sql<number>`(select count(*)::int from ${notes} where ${notes.moleculeId} = ${entries.moleculeId} and ${notes.parentId} is null and ${notes.resolvedAt} is null)`,
       ...stateColumns,
       failure: sql<{
         message: string;
