@@ -35,6 +35,7 @@ export interface StoredStationaryPoint {
 }
 
 export interface StoredProfile {
+  readonly id: string;
   readonly torsion: readonly number[];
   readonly model: string;
   readonly relaxed: boolean;
@@ -131,6 +132,7 @@ function toProfile(
   // One zero for all: a free minimum lies a little below the grid point beside it.
   const lowest = Math.min(...curve.energies, ...stationary.map(({ energy }) => energy));
   return {
+    id: profile.id,
     torsion: profile.torsion,
     model: curve.model,
     relaxed: curve.relaxed,

@@ -72,6 +72,7 @@ function describeScan(molecule: Molecule, answer: Answer, profile: StoredProfile
   >;
   return {
     ...provenance(answer),
+    profileId: profile.id,
     torsion: profile.torsion,
     name: bondName(molecule, profile.torsion),
     bond: bondName(molecule, profile.torsion.slice(1, 3)),

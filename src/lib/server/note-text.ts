@@ -20,8 +20,9 @@ markdown.inline.ruler.push('mention', (state, silent) => {
   return true;
 });
 
-markdown.renderer.rules['mention'] = (tokens, index, _options, environment: Environment) => {
-  const name = environment.names.get(tokens[index].content) ?? 'a former member';
+markdown.renderer.rules['mention'] = (tokens, index, _options, environment) => {
+  const names = environment?.['names'] as ReadonlyMap<string, string> | undefined;
+  const name = names?.get(tokens[index].content) ?? 'a former member';
   return `<span class="mention">@${markdown.utils.escapeHtml(name)}</span>`;
 };
 
@@ -30,12 +31,7 @@ markdown.renderer.rules['link_open'] = (tokens, index, options, _environment, re
   return renderer.renderToken(tokens, index, options);
 };
 
-interface Environment {
-  readonly names: ReadonlyMap<string, string>;
-}
-
 /** The HTML of a stored note; it is safe to put into a page as it is. */
 export function renderNote(stored: string, people: readonly Pick<Person, 'id' | 'name'>[]): string {
-  const environment: Environment = { names: new Map(people.map(({ id, name }) => [id, name])) };
-  return markdown.render(stored, environment);
+  return markdown.render(stored, { names: new Map(people.map(({ id, name }) => [id, name])) });
 }
