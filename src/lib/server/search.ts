@@ -57,7 +57,7 @@ export async function search(
   const pattern = query.structure === '' ? null : readStructure(query.structure);
   const chosen = and(
     eq(molecules.teamId, member.teamId),
-    inSubmittedBatch(query),
+    inSubmittedBatch(member, query),
     textCondition(member, query),
     stateCondition(query),
     kindCondition(query),
@@ -71,7 +71,7 @@ export async function search(
     const rows = await describeMolecules(member, ids);
     return { rows, total, candidates: 0, compared: 0, next: null };
   }
-  const found = await compare(chosen, pattern, query.after, pageSize, clock);
+  const found = await compare(member, chosen, pattern, query.after, pageSize, clock);
   const rows = await describeMolecules(member, found.ids);
   return { rows, total: null, candidates: total, compared: found.compared, next: found.next };
 }
@@ -95,9 +95,9 @@ function readStructure(text: string): Pattern {
   }
 }
 
-function inSubmittedBatch({ batch }: Search): SQL {
+function inSubmittedBatch({ teamId }: Member, { batch }: Search): SQL {
   const one = batch === null ? sql`` : sql`and b.id = ${batch}`;
-  return sql`${molecules.id} in (select e.molecule_id from entries e join batches b on b.id = e.batch_id where b.team_id = ${molecules.teamId} and b.submitted_at is not null ${one})`;
+  return sql`${molecules.id} in (select e.molecule_id from entries e join batches b on b.id = e.batch_id where b.team_id = ${teamId} and b.submitted_at is not null ${one})`;
 }
 
 /** A pattern of LIKE for a text that stands anywhere; its own signs mean themselves. */
@@ -168,6 +168,7 @@ async function readPage(chosen: SQL, page: number, pageSize: number): Promise<st
 
 /** Compares candidates atom by atom until a page is full, none is left, or time is up. */
 async function compare(
+  member: Member,
   chosen: SQL,
   pattern: Pattern,
   after: string | null,
@@ -179,7 +180,7 @@ async function compare(
   let compared = 0;
   let last = after;
   for (;;) {
-    const candidates = await readCandidates(chosen, last);
+    const candidates = await readCandidates(member, chosen, last);
     let breath = clock.now() + BREATH_MS;
     for (const { id, smiles } of candidates) {
       last = id;
@@ -195,11 +196,11 @@ async function compare(
   }
 }
 
-function readCandidates(chosen: SQL, after: string | null) {
+function readCandidates({ teamId }: Member, chosen: SQL, after: string | null) {
   const beyond =
     after === null
       ? undefined
-      : sql`(${molecules.createdAt}, ${molecules.id}) < (select m.created_at, m.id from molecules m where m.id = ${after} and m.team_id = ${molecules.teamId})`;
+      : sql`(${molecules.createdAt}, ${molecules.id}) < (select m.created_at, m.id from molecules m where m.id = ${after} and m.team_id = ${teamId})`;
   return db
     .select({ id: molecules.id, smiles: molecules.smiles })
     .from(molecules)
