@@ -210,6 +210,13 @@ describe('a search for a structure', () => {
     expect(ids({ rows })).toEqual(await bruteForce(team.reader, 'C1CC1'));
   });
 
+  it('is through when the last candidate was compared as time ran out', async () => {
+    let moment = 0;
+    const late = { now: () => (moment += 100), budget: 1 };
+    const answer = await ask(team.reader, { structure: 'c1ccccc1', text: 'paracet' }, late);
+    expect(answer).toMatchObject({ compared: 1, candidates: 1, next: null });
+  });
+
   it('combines with the other conditions', async () => {
     const { rows } = await askAll(team.reader, { structure: 'c1ccccc1', text: 'paracet' });
     expect(names({ rows })).toEqual(['Paracetamol 100%']);

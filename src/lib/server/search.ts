@@ -182,11 +182,14 @@ async function compare(
   for (;;) {
     const candidates = await readCandidates(member, chosen, last);
     let breath = clock.now() + BREATH_MS;
-    for (const { id, smiles } of candidates) {
+    for (const [place, { id, smiles }] of candidates.entries()) {
       last = id;
       compared += 1;
       if (pattern.isIn(smiles)) ids.push(id);
-      if (ids.length >= pageSize || clock.now() > end) return { ids, compared, next: last };
+      const isLast = place === candidates.length - 1 && candidates.length < CHUNK;
+      if (!isLast && (ids.length >= pageSize || clock.now() > end)) {
+        return { ids, compared, next: last };
+      }
       if (clock.now() > breath) {
         await breathe();
         breath = clock.now() + BREATH_MS;
