@@ -30,7 +30,7 @@ const questions: Record<string, Record<string, string>> = {
   'structure, in all': { structure: 'C' },
   'structure, rare': { structure: 'CC#CC(F)(F)F' },
   'structure, in none': { structure: '[Si]' },
-  'structure, badly screened': { structure: '*1~*~*~*~*~*~*~*~*~*1' },
+  'structure, badly screened': { structure: '*~*(~*)(~*)~*(~*)(~*)~*' },
   'structure and name': { structure: 'c1ccsc1', text: '77' },
 };
 

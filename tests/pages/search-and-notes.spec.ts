@@ -171,7 +171,9 @@ test('a report fits A4 and Letter paper', async ({ page }) => {
         room,
       );
     expect(clipped, `elements that ${format} paper would clip`).toBe(0);
-    const pdf = (await page.pdf({ format, preferCSSPageSize: false })).toString('latin1');
+    const pdf = (await page.pdf({ format, preferCSSPageSize: false, tagged: true })).toString(
+      'latin1',
+    );
     const boxes = [...pdf.matchAll(/MediaBox \[0 0 ([\d.]+) ([\d.]+)\]/g)];
     expect(boxes.length).toBeGreaterThanOrEqual(2);
     expect(boxes.length).toBeLessThanOrEqual(4);

@@ -10,8 +10,8 @@ import { describeMolecules, type FoundMolecule } from './search-rows';
 
 export type { FoundMolecule } from './search-rows';
 
-/** Candidates are read and compared in chunks of this size. */
-const CHUNK = 200;
+/** Most candidates of one page; more are not compared in its time anyway. */
+const AT_ONCE = 1_000;
 /** The event loop runs after comparing for this long, so that nobody else's page waits. */
 const BREATH_MS = 10;
 /** A page of a substructure search is answered after this long with what was found until then. */
@@ -31,7 +31,7 @@ export interface SearchAnswer {
   readonly rows: readonly FoundMolecule[];
   /** How many there are; null in a search for a structure, which only counts what it compares. */
   readonly total: number | null;
-  /** For a structure: how many molecules the fingerprints leave over, and how many of them were compared here. */
+  /** For a structure: how many molecules from here on may hold it by their fingerprints, and how many were compared. */
   readonly candidates: number;
   readonly compared: number;
   /** The molecule after which the search goes on; null when everything was seen. */
@@ -65,15 +65,14 @@ export async function search(
       ? sql`(${molecules.fingerprint} is null or ${molecules.fingerprint} & ${pattern.fingerprint}::bit(512) = ${pattern.fingerprint}::bit(512))`
       : undefined,
   )!;
-  const [{ total }] = await db.select({ total: count() }).from(molecules).where(chosen);
-  if (!pattern) {
-    const ids = await readPage(chosen, query.page, pageSize);
-    const rows = await describeMolecules(member, ids);
-    return { rows, total, candidates: 0, compared: 0, next: null };
+  if (pattern) {
+    const { ids, ...found } = await compare(member, chosen, pattern, query.after, pageSize, clock);
+    return { rows: await describeMolecules(member, ids), total: null, ...found };
   }
-  const found = await compare(member, chosen, pattern, query.after, pageSize, clock);
-  const rows = await describeMolecules(member, found.ids);
-  return { rows, total: null, candidates: total, compared: found.compared, next: found.next };
+  const [{ total }] = await db.select({ total: count() }).from(molecules).where(chosen);
+  const ids = await readPage(chosen, query.page, pageSize);
+  const rows = await describeMolecules(member, ids);
+  return { rows, total, candidates: 0, compared: 0, next: null };
 }
 
 /** The batches that the search may choose from, the newest first. */
@@ -175,39 +174,41 @@ async function compare(
   pageSize: number,
   clock: Clock,
 ) {
+  // The clock runs while the database screens, too: people wait for both.
   const end = clock.now() + clock.budget;
+  const read = await readCandidates(member, chosen, after);
+  const candidates = read[0]?.remaining ?? 0;
   const ids: string[] = [];
-  let compared = 0;
-  let last = after;
-  for (;;) {
-    const candidates = await readCandidates(member, chosen, last);
-    let breath = clock.now() + BREATH_MS;
-    for (const [place, { id, smiles }] of candidates.entries()) {
-      last = id;
-      compared += 1;
-      if (pattern.isIn(smiles)) ids.push(id);
-      const isLast = place === candidates.length - 1 && candidates.length < CHUNK;
-      if (!isLast && (ids.length >= pageSize || clock.now() > end)) {
-        return { ids, compared, next: last };
-      }
-      if (clock.now() > breath) {
-        await breathe();
-        breath = clock.now() + BREATH_MS;
-      }
+  let breath = clock.now() + BREATH_MS;
+  for (const [place, { id, smiles }] of read.entries()) {
+    if (pattern.isIn(smiles)) ids.push(id);
+    const compared = place + 1;
+    if (compared < candidates && (ids.length >= pageSize || clock.now() > end)) {
+      return { ids, compared, candidates, next: id };
     }
-    if (candidates.length < CHUNK) return { ids, compared, next: null };
+    if (clock.now() > breath) {
+      await breathe();
+      breath = clock.now() + BREATH_MS;
+    }
   }
+  const last = read.length < candidates ? read[read.length - 1].id : null;
+  return { ids, compared: read.length, candidates, next: last };
 }
 
+/** The next molecules that may hold a pattern, each with how many there are from here on. */
 function readCandidates({ teamId }: Member, chosen: SQL, after: string | null) {
   const beyond =
     after === null
       ? undefined
       : sql`(${molecules.createdAt}, ${molecules.id}) < (select m.created_at, m.id from molecules m where m.id = ${after} and m.team_id = ${teamId})`;
   return db
-    .select({ id: molecules.id, smiles: molecules.smiles })
+    .select({
+      id: molecules.id,
+      smiles: molecules.smiles,
+      remaining: sql<number>`(count(*) over ())::int`,
+    })
     .from(molecules)
     .where(and(chosen, beyond))
     .orderBy(newestFirst)
-    .limit(CHUNK);
+    .limit(AT_ONCE);
 }

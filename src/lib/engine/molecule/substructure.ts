@@ -23,8 +23,8 @@ export function fingerprintOf(smiles: string): string {
 }
 
 /**
- * Reads a pattern written as SMILES or SMARTS: in both, what is left open matches anything, and hydrogens that are not
- * written may be any group. Throws InputError for what openchemlib cannot take.
+ * Reads a pattern written as SMILES or SMARTS: in both, what is left open matches anything, hydrogens that are not
+ * written may be any group, and a capital letter stands for the element, aromatic or not. Throws InputError for what openchemlib cannot take.
  */
 export function readPattern(text: string): Pattern {
   const written = text.trim();
@@ -68,6 +68,7 @@ function parsePattern(text: string): OclMolecule {
     );
   }
   fragment.setFragment(true);
+  refuseMisread(fragment);
   return fragment;
 
   function parse(): OclMolecule {
@@ -75,6 +76,29 @@ function parsePattern(text: string): OclMolecule {
       return parser.parseMolecule(text, { noStereo: true });
     } catch (error) {
       throw new InputError('unreadable', `This is no SMILES or SMARTS: ${reasonOf(error)}.`);
+    }
+  }
+}
+
+/**
+ * openchemlib knows an aromatic bond by its whole ring, and takes the bond that closes a ring of any bonds for a single
+ * one; other readings of such patterns would find other molecules, so they are refused rather than guessed.
+ */
+function refuseMisread(fragment: OclMolecule): void {
+  fragment.ensureHelperArrays(OclMolecule.cHelperRings);
+  for (let bond = 0; bond < fragment.getAllBonds(); bond++) {
+    const isInRing = fragment.isRingBond(bond);
+    if (!isInRing && fragment.getBondType(bond) === OclMolecule.cBondTypeDelocalized) {
+      throw new InputError(
+        'query-feature',
+        'Aromatic atoms (small letters) that are bonded are understood only in whole rings. Write the ring whole, or [#6]~[#6] for any bond.',
+      );
+    }
+    if (isInRing && (fragment.getBondQueryFeatures(bond) & OclMolecule.cBondQFBondTypes) !== 0) {
+      throw new InputError(
+        'query-feature',
+        'Bonds of any order (~) are not understood within a ring. Write the orders of the ring’s bonds.',
+      );
     }
   }
 }
