@@ -5,6 +5,7 @@ import { closeDatabase } from '../src/lib/server/db';
 import { log } from '../src/lib/server/log';
 import { stopQueue, workOnTasks } from '../src/lib/server/queue';
 import { failAbandoned } from '../src/lib/server/tasks';
+import { keepFingerprints } from './fingerprints';
 import { hearCancels, performTask } from './perform';
 import { closePool, concurrency } from './pool';
 
@@ -20,11 +21,14 @@ const check = setInterval(() => {
     log.warn({ error }, 'Looking for abandoned tasks failed; it is tried again'),
   );
 }, ABANDONED_CHECK_MS);
+const ending = new AbortController();
+void keepFingerprints(ending.signal);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
 /** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
 async function stop(): Promise<void> {
   clearInterval(check);
+  ending.abort();
   await closePool();
   await stopQueue();
   await closeDatabase();

@@ -3,7 +3,7 @@
  * and how quickly the pages of a large team answer.
  *
  *     npm run bench                          every section
- *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, pages
+ *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, pages, search-page
  *     npm run bench -- --record              keeps the report in tests/bench/results
  */
 import { mkdirSync, writeFileSync } from 'node:fs';
@@ -16,6 +16,7 @@ import { pagesSection } from './pages';
 import { hasRdkit } from './rdkit';
 import { scanSection } from './scan';
 import { searchSection } from './search';
+import { searchPageSection } from './search-page';
 
 const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   minimization: minimizationSection,
@@ -23,6 +24,7 @@ const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   search: searchSection,
   memory: memorySection,
   pages: pagesSection,
+  'search-page': searchPageSection,
 };
 
 const chosen = process.argv.slice(2).filter((argument) => argument !== '--record');

@@ -4,7 +4,7 @@ import { describe, expect, it } from 'vitest';
 import { newBatchSchema } from '$lib/domain/api';
 import { submitRequest } from '$lib/server/api-submission';
 import * as apiTokens from '$lib/server/api-tokens';
-import * as batches from '$lib/server/batches';
+import * as lists from '$lib/server/batch-lists';
 import { db } from '$lib/server/db';
 import { apiTokens as tokenRows, batches as batchRows, memberships } from '$lib/server/db/schema';
 import { once } from '$lib/server/idempotency';
@@ -58,7 +58,7 @@ describe('a submission', () => {
     const { chemist } = await newTeam();
     const answer = await submitRequest(chemist, request);
     expect(answer).toMatchObject({ queued: 1, reused: 0, rows: 2, errors: 1 });
-    const rows = await batches.listEntriesAfter(chemist, answer.id, 0, 10);
+    const rows = await lists.listEntriesAfter(chemist, answer.id, 0, 10);
     expect(rows.map(({ verdict, counts }) => [verdict, counts.queued])).toEqual([
       ['ready', 1],
       ['error', 0],
@@ -91,9 +91,9 @@ describe('a submission', () => {
       })),
     );
     const seen: string[] = [];
-    let after: batches.AfterBatch | null = null;
+    let after: lists.AfterBatch | null = null;
     do {
-      const page: Awaited<ReturnType<typeof batches.listAfter>> = await batches.listAfter(
+      const page: Awaited<ReturnType<typeof lists.listAfter>> = await lists.listAfter(
         chemist,
         after,
         2,

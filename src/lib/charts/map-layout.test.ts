@@ -2,7 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { contourLines } from './contours';
 import { axisAngle, cellAt, refine, type MapEnergies } from './fine-grid';
 import { layMap, mapLevels, wayPath } from './map-layout';
-import { mapPlot, minimumName } from './map-plot';
+import { minimumName } from '../domain/map-way';
+import { mapPlot } from './map-plot';
 
 /** A map whose energy is known: 3 + 2 cos a − cos b, kcal/mol; lowest at a = 180, b = 0. */
 function known(perAxis: number): MapEnergies {

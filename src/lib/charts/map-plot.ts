@@ -1,4 +1,5 @@
 /** A map of two bonds as a stand-alone SVG document, for bundles. */
+import { minimumName } from '../domain/map-way';
 import { energyColor } from './energy-scale';
 import type { MapEnergies } from './fine-grid';
 import { layMap } from './map-layout';
@@ -23,12 +24,6 @@ const escape = (text: string): string =>
     /[&<>"]/g,
     (sign) => ({ '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' })[sign]!,
   );
-
-/** The letter of a minimum, the lowest first: A, B, … Z, A2, … */
-export function minimumName(n: number): string {
-  const letter = String.fromCharCode(65 + (n % 26));
-  return n < 26 ? letter : `${letter}${Math.floor(n / 26) + 1}`;
-}
 
 /** Draws a map in kcal/mol with its contours, its minima by letter and its scale. */
 export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {

@@ -25,6 +25,7 @@ const expected: Record<Role, Permission[]> = {
     'manage members',
     'manage limits',
     'delete results',
+    'delete any comment',
   ],
 };
 

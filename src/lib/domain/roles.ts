@@ -18,6 +18,7 @@ export const lowestRole = {
   'manage limits': 'lead',
   'read the record': 'lead',
   'delete results': 'lead',
+  'delete any comment': 'lead',
 } as const satisfies Record<string, Role>;
 export type Permission = keyof typeof lowestRole;
 

@@ -13,6 +13,8 @@ export { ringSystems } from './molecule/ring-systems';
 export { rotatableBonds } from './molecule/rotatable';
 export { stereoisomers } from './molecule/stereoisomers';
 export type { RotatableBond } from './molecule/rotatable';
+export { fingerprintOf, FINGERPRINT_BITS, readPattern } from './molecule/substructure';
+export type { Pattern } from './molecule/substructure';
 export { writeMolfile, writeSdf } from './molecule/write';
 export type { SdfRecord } from './molecule/write';
 export { perform } from './run';

@@ -46,6 +46,7 @@ export interface StoredStationaryPoint {
 }
 
 export interface StoredProfile {
+  readonly id: string;
   readonly torsion: readonly number[];
   readonly model: string;
   readonly relaxed: boolean;
@@ -174,6 +175,7 @@ function toProfile(
 ): StoredProfile {
   const geometries = unpack(curve.coordinates, atomCount);
   return {
+    id: profile.id,
     torsion: profile.torsion,
     model: curve.model,
     relaxed: curve.relaxed,

@@ -1,8 +1,7 @@
 /** Batches as their team sees them. */
-import { and, asc, count, desc, eq, gt, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
-import type { Remark } from '../domain/submission';
+import { and, asc, count, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
 import { db } from './db';
-import { batches, entries, molecules, tasks, users } from './db/schema';
+import { batches, entries, molecules, notes, tasks, users } from './db/schema';
 import { notFound, type InTeam, type Member } from './member';
 
 export type TaskState = (typeof tasks.$inferSelect)['state'];
@@ -10,10 +9,10 @@ export type TaskState = (typeof tasks.$inferSelect)['state'];
 /** How many tasks of something are in each state. */
 export type StateCounts = Record<TaskState, number>;
 
-const noTasks: StateCounts = { queued: 0, running: 0, done: 0, failed: 0, cancelled: 0 };
+export const noTasks: StateCounts = { queued: 0, running: 0, done: 0, failed: 0, cancelled: 0 };
 
 /** Counts tasks by state, as columns of a query that an index alone answers. */
-const stateColumns = {
+export const stateColumns = {
   queued: sql<number>`(count(*) filter (where ${tasks.state} = 'queued'))::int`,
   running: sql<number>`(count(*) filter (where ${tasks.state} = 'running'))::int`,
   done: sql<number>`(count(*) filter (where ${tasks.state} = 'done'))::int`,
@@ -34,68 +33,15 @@ export function submittedBy(member: Member, whose: Whose) {
   );
 }
 
-const batchColumns = {
+export const batchColumns = {
   id: batches.id,
   name: batches.name,
   submittedAt: sql<Date>`${batches.submittedAt}`.mapWith(batches.createdAt),
   maker: users.name,
 };
 
-/** Where a list of batches goes on: after the one submitted at this time with this id. */
-export type AfterBatch = readonly [submittedAt: string, id: string];
-
-/** Submitted batches of a team after a place, the newest first, with the states of their tasks. */
-export async function listAfter(member: Member, after: AfterBatch | null, count: number) {
-  const rows = await db
-    // A Date holds milliseconds, the database microseconds: the place in the list is told in full.
-    .select({ ...batchColumns, place: sql<string>`${batches.submittedAt}::text` })
-    .from(batches)
-    .leftJoin(users, eq(users.id, batches.createdBy))
-    .where(
-      and(
-        eq(batches.teamId, member.teamId),
-        isNotNull(batches.submittedAt),
-        after
-          ? sql`(${batches.submittedAt}, ${batches.id}) < (${after[0]}::timestamptz, ${after[1]}::uuid)`
-          : undefined,
-      ),
-    )
-    .orderBy(desc(batches.submittedAt), desc(batches.id))
-    .limit(count);
-  const states = await statesOf(rows.map(({ id }) => id));
-  return rows.map((row) => ({ ...row, counts: states.get(row.id) ?? noTasks }));
-}
-
-/** Rows of a batch after a position, in their order, with the states of their tasks. */
-export async function listEntriesAfter(
-  member: Member,
-  batchId: string,
-  after: number,
-  count: number,
-) {
-  const batch = await get(member, batchId);
-  return db
-    .select({
-      id: entries.id,
-      position: entries.position,
-      name: entries.name,
-      verdict: entries.verdict,
-      remarks: sql<Remark[]>`${entries.remarks}`,
-      moleculeId: entries.moleculeId,
-      counts: sql<StateCounts>`json_build_object(
-        'queued', ${stateColumns.queued}, 'running', ${stateColumns.running}, 'done', ${stateColumns.done},
-        'failed', ${stateColumns.failed}, 'cancelled', ${stateColumns.cancelled})`,
-    })
-    .from(entries)
-    .leftJoin(tasks, eq(tasks.entryId, entries.id))
-    .where(and(eq(entries.batchId, batch.id), gt(entries.position, after)))
-    .groupBy(entries.id)
-    .orderBy(asc(entries.position))
-    .limit(count);
-}
-
 /** The states of the tasks of batches, by batch. */
-async function statesOf(ids: readonly string[]): Promise<Map<string, StateCounts>> {
+export async function statesOf(ids: readonly string[]): Promise<Map<string, StateCounts>> {
   if (ids.length === 0) return new Map();
   const rows = await db
     .select({ batchId: tasks.batchId, ...stateColumns })
@@ -182,6 +128,7 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
       remarks: entries.remarks,
       moleculeId: entries.moleculeId,
       formula: molecules.formula,
+      openNotes: sql<number>`(select count(*)::int from ${notes} where ${notes.moleculeId} = ${entries.moleculeId} and ${notes.parentId} is null and ${notes.resolvedAt} is null)`,
     })
     .from(entries)
     .leftJoin(molecules, eq(molecules.id, entries.moleculeId))

@@ -2,13 +2,14 @@
 import { sql } from 'drizzle-orm';
 import { client, type Executor } from './db';
 
-/** What can be news: a batch whose tasks changed, or a task that a person cancelled. */
-export type Topic = 'batch-changed' | 'task-cancelled';
+/** What can be news: a batch whose tasks changed, a task that a person cancelled, a molecule whose notes changed. */
+export type Topic = 'batch-changed' | 'task-cancelled' | 'notes-changed';
 type Hear = (id: string) => void;
 
 const CHANNELS: Record<Topic, string> = {
   'batch-changed': 'windlass_batch_changed',
   'task-cancelled': 'windlass_task_cancelled',
+  'notes-changed': 'windlass_notes_changed',
 };
 
 const hearers = new Map<Topic, Set<Hear>>();

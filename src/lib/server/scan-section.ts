@@ -17,6 +17,7 @@ export function describeScan(molecule: Molecule, answer: ToldApart, profile: Sto
   const details = answer.details as Pick<Result<'scan'>, 'complete' | 'temperature' | 'symmetry'>;
   return {
     ...provenance(answer),
+    profileId: profile.id,
     torsion: profile.torsion,
     name: bondName(molecule, profile.torsion),
     bond: bondName(molecule, profile.torsion.slice(1, 3)),

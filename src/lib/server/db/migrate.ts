@@ -12,6 +12,8 @@ export async function migrateDatabase(databaseUrl: string, folder: string): Prom
   const connection = postgres(databaseUrl, { max: 1, onnotice: () => undefined });
   try {
     await connection`select pg_advisory_lock(${MIGRATION_LOCK})`;
+    // Trigram indexes find parts of names; the extension is trusted, so the database's owner may create it.
+    await connection`create extension if not exists pg_trgm`;
     await migrate(drizzle(connection), { migrationsFolder: folder });
   } finally {
     await connection.end();

@@ -22,6 +22,7 @@ import {
   timestamp,
   unique,
   uuid,
+  type AnyPgColumn,
 } from 'drizzle-orm/pg-core';
 import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
@@ -29,6 +30,8 @@ import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
+/** A string of 512 digits 0 and 1, which the database combines with `&`. */
+const bits512 = customType<{ data: string; driverData: string }>({ dataType: () => 'bit(512)' });
 const moment = (name: string) => timestamp(name, { withTimezone: true, mode: 'date' });
 const created = () => moment('created_at').notNull().defaultNow();
 
@@ -177,12 +180,18 @@ export const molecules = pgTable(
     format: structureFormatEnum('format').notNull(),
     structure: text('structure').notNull(),
     hasGeometry: boolean('has_geometry').notNull(),
+    /** openchemlib's fragment keys, which screen for substructures; null until a worker has written them. */
+    fingerprint: bits512('fingerprint'),
     createdAt: created(),
   },
   (table) => [
     unique('molecules_team_digest').on(table.teamId, table.digest),
     index('molecules_team_smiles').on(table.teamId, table.smiles),
-    index('molecules_team_created').on(table.teamId, table.createdAt),
+    index('molecules_team_created').on(table.teamId, table.createdAt, table.id),
+    index('molecules_smiles_parts').using('gin', table.smiles.op('gin_trgm_ops')),
+    index('molecules_without_fingerprint')
+      .on(table.createdAt)
+      .where(sql`${table.fingerprint} is null`),
   ],
 );
 
@@ -245,6 +254,7 @@ export const entries = pgTable(
     index('entries_remarked')
       .on(table.batchId, table.verdict)
       .where(sql`${table.verdict} <> 'ready'`),
+    index('entries_name_parts').using('gin', table.name.op('gin_trgm_ops')),
     check(
       'entries_bad_row_has_no_molecule',
       sql`(${table.verdict} = 'error') = (${table.moleculeId} is null)`,
@@ -478,6 +488,64 @@ export const tasks = pgTable(
       .where(sql`${table.state} = 'queued'`),
     check('tasks_progress_range', sql`${table.progress} between 0 and 1`),
     check('tasks_failed_says_why', sql`(${table.state} = 'failed') = (${table.error} is not null)`),
+  ],
+);
+
+/**
+ * What people write about a molecule, or about one bond or conformer of it. A note without a parent opens a thread;
+ * replies hang on it, one level deep, and only the thread is resolved. In the text a mention is `@{id of a user}`.
+ */
+export const notes = pgTable(
+  'notes',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    moleculeId: uuid('molecule_id')
+      .notNull()
+      .references(() => molecules.id, { onDelete: 'cascade' }),
+    parentId: uuid('parent_id').references((): AnyPgColumn => notes.id, { onDelete: 'cascade' }),
+    authorId: uuid('author_id').references(() => users.id, { onDelete: 'set null' }),
+    text: text('text').notNull(),
+    /** The two atoms of the bond it is about, counted from 0. */
+    bond: integer('bond').array(),
+    /** The conformer it is about: the search that found it, and its place there from 0. */
+    resultId: uuid('result_id').references(() => results.id, { onDelete: 'set null' }),
+    rank: integer('rank'),
+    createdAt: created(),
+    editedAt: moment('edited_at'),
+    resolvedAt: moment('resolved_at'),
+    resolvedBy: uuid('resolved_by').references(() => users.id, { onDelete: 'set null' }),
+  },
+  (table) => [
+    index('notes_molecule').on(table.moleculeId, table.createdAt),
+    index('notes_parent').on(table.parentId),
+    index('notes_team_open')
+      .on(table.teamId, table.createdAt)
+      .where(sql`${table.parentId} is null and ${table.resolvedAt} is null`),
+    check('notes_bond_has_two_atoms', sql`cardinality(${table.bond}) = 2`),
+    check(
+      'notes_replies_are_plain',
+      sql`${table.parentId} is null or (${table.resolvedAt} is null and ${table.bond} is null and ${table.rank} is null)`,
+    ),
+  ],
+);
+
+/** Whom a note names. */
+export const noteMentions = pgTable(
+  'note_mentions',
+  {
+    noteId: uuid('note_id')
+      .notNull()
+      .references(() => notes.id, { onDelete: 'cascade' }),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+  },
+  (table) => [
+    primaryKey({ columns: [table.noteId, table.userId] }),
+    index('note_mentions_user').on(table.userId),
   ],
 );
 

@@ -1,11 +1,11 @@
 import { operations } from '$lib/domain/api';
 import { readCursor, serve, writeCursor } from '$lib/server/api';
 import { submitRequest } from '$lib/server/api-submission';
-import * as batches from '$lib/server/batches';
+import * as lists from '$lib/server/batch-lists';
 import { once } from '$lib/server/idempotency';
 
 export const GET = serve(operations.listBatches, async ({ member, query }) => {
-  const rows = await batches.listAfter(member, readCursor(query.cursor), query.limit + 1);
+  const rows = await lists.listAfter(member, readCursor(query.cursor), query.limit + 1);
   const items = rows.slice(0, query.limit);
   const last = items.at(-1);
   return {
