@@ -4,7 +4,6 @@ import { InputError } from '../errors';
 import type { ForceField } from '../forcefield/forcefield';
 import { angle, rotateAbout, torsion } from '../geometry';
 import { minimize } from '../minimizer/minimize';
-import { sumTerms, torsionRestraint } from '../minimizer/restraints';
 import type { Molecule } from '../molecule/molecule';
 import { checkTorsion, movedAtoms } from '../molecule/rotatable';
 import { turnBetween } from '../units';
@@ -41,8 +40,6 @@ export interface RelaxSettings {
   readonly maxEvaluations: number;
 }
 
-/** Farthest a held torsion may be from its target, degrees. */
-export const TARGET_TOLERANCE = 0.1;
 /** Straighter than this, an end has no direction to count a torsion from; degrees. */
 const LINEAR_ANGLE = 172;
 
@@ -71,20 +68,11 @@ export function createTorsionDrive(
   ): Promise<HeldGeometry> => {
     const x = start.slice();
     turnTo(x, angles);
-    const restraints = torsions.map((atoms, t) => torsionRestraint(atoms, angles[t]));
-    const { energy, curvature } = sumTerms(forceField, ...restraints);
-    const options = { gradientRms, maxEvaluations, curvature };
+    const { energy, curvature, skeleton } = forceField;
+    const held = torsions.map((atoms, t) => ({ atoms, target: angles[t] }));
+    const options = { gradientRms, maxEvaluations, curvature, skeleton, torsions: held };
     const result = await minimize(energy, x, options, control);
-    const unused = new Float64Array(x.length);
-    const held = measure(x).every(
-      (reached, t) => Math.abs(turnBetween(reached, angles[t])) <= TARGET_TOLERANCE,
-    );
-    return {
-      coordinates: x,
-      energy: forceField.energy(x, unused),
-      converged: result.converged && held,
-      evaluations: result.evaluations,
-    };
+    return { coordinates: x, ...result };
   };
   return { torsions, measure, turnTo, relax };
 }
