@@ -1,19 +1,16 @@
 /** Minimizes an energy: limited-memory quasi-Newton steps from a curvature that knows the molecule. */
 import type { Control } from '../control';
 import type { EnergyTerm } from '../energy-term';
-import { createHistory, dot } from './history';
+import { dot } from './history';
 import { holdTorsions } from './held-torsions';
 import { searchLine } from './line-search';
-import type { LineSearchResult, Point } from './line-search';
-import { createFrames } from './local-frames';
-import type { LocalFrames } from './local-frames';
+import type { LineSearchResult } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
-import { createPreconditioner } from './preconditioner';
 import { separateCoincident } from './separate';
 import { swing } from './swing';
+import { returnWorkspace, takeWorkspace } from './workspace';
+import type { Place, Workspace } from './workspace';
 
-/** Pairs of steps and gradient changes remembered. */
-const MEMORY = 12;
 /** Steps after which the curvature is computed anew. */
 const REFRESH_INTERVAL = 12;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
@@ -23,13 +20,6 @@ const LONGEST_STEP = 0.2;
 const MOST_TURNS = 30;
 /** Farthest a held torsion may be from its target in a converged result, degrees. */
 const HELD_TOLERANCE = 1e-3;
-
-/** A point on the way; its `gradient` is in local form. */
-interface Place extends Point {
-  readonly frames: LocalFrames;
-  /** kcal/mol/Å, without what turns held torsions. */
-  gradientRms: number;
-}
 
 /**
  * Moves `x` (Å, 3N) in place downhill to where the root mean square gradient is at most `options.gradientRms`
@@ -42,39 +32,39 @@ export async function minimize(
   options: MinimizeOptions,
   control: Control,
 ): Promise<MinimizeResult> {
-  const size = x.length;
   separateCoincident(x);
-  const { gradientRms, maxEvaluations, curvature, skeleton, torsions } = options;
-  const history = createHistory(size, MEMORY);
-  const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
+  const workspace = takeWorkspace(x.length, options.skeleton);
+  try {
+    return await descend(energy, x, options, control, workspace);
+  } finally {
+    returnWorkspace(workspace);
+  }
+}
+
+async function descend(
+  energy: EnergyTerm,
+  x: Float64Array,
+  { gradientRms, maxEvaluations, curvature, skeleton, torsions }: MinimizeOptions,
+  control: Control,
+  workspace: Workspace,
+): Promise<MinimizeResult> {
+  const size = x.length;
+  const { history, preconditioner, curvatureFrames, direction, localDirection, plain } = workspace;
   const held = torsions && torsions.length > 0 ? holdTorsions(torsions, size) : null;
-  const start = (): Place => ({
-    x: x.slice(),
-    gradient: new Float64Array(size),
-    energy: 0,
-    frames: createFrames(skeleton),
-    gradientRms: 0,
-  });
-  let current = start();
-  let next = start();
-  /** Where the curvature was computed: it turns with the bonds like everything remembered. */
-  const curvatureFrames = createFrames(skeleton);
-  const localDirection = new Float64Array(size);
-  /** Vectors of all coordinates: the direction of a step, and one for use on the way from one form to the other. */
-  const direction = new Float64Array(size);
-  const plain = new Float64Array(size);
+  let [current, next] = workspace.places;
+  current.x.set(x);
   const found: LineSearchResult = { evaluations: 0, lower: false };
   let lastStep = 0;
 
   const applyInitial = (vector: Float64Array): void => {
-    if (!preconditioner) return;
+    if (!curvature) return;
     curvatureFrames.gradientFromLocal(vector, plain);
     preconditioner.solve(plain);
     curvatureFrames.stepToLocal(plain, vector);
   };
   const refresh = (): void => {
     curvatureFrames.copy(current.frames);
-    preconditioner?.refresh(current.x);
+    if (curvature) preconditioner.refresh(current.x, curvature);
     held?.soften(current.x, current.frames, applyInitial);
   };
   const compute = (place: Place): void => {
