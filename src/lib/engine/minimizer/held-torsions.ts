@@ -24,11 +24,11 @@ export interface HeldTorsions {
   /** Moves `x`, near the linearized place, so that the torsions have their targets; false where it cannot. */
   restore(x: Float64Array): boolean;
   /**
-   * Takes out of the gradient at `x` the forces that hold the torsions, so that its product with a flattened direction is
-   * the slope of the energy along the restored steps. Returns the root mean square of the gradient without any part that
-   * only turns the torsions.
+   * Takes out of the gradient at the place restored last the forces that hold the torsions, so that its product with a
+   * flattened direction is the slope of the energy along the restored steps. Returns the root mean square of the gradient
+   * without any part that only turns the torsions.
    */
-  project(x: Float64Array, gradient: Float64Array): number;
+  project(gradient: Float64Array): number;
   /** The farthest a torsion is from its target, degrees. */
   deviation(x: Float64Array): number;
 }
@@ -117,8 +117,7 @@ export function holdTorsions(torsions: readonly HeldTorsion[], size: number): He
       return false;
     },
     // Restoring moves along the ways, so no force along them may be left: they, not the normals, weigh the gradient.
-    project: (x, gradient) => {
-      derive(x, normalsHere);
+    project: (gradient) => {
       tangent.set(gradient);
       for (let r = 0; r < count; r++) {
         amounts[r] = dotSparse(normalsHere[r], offsets[r], gradient);

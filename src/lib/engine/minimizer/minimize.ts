@@ -70,7 +70,7 @@ async function descend(
   const compute = (place: Place): void => {
     plain.fill(0);
     place.energy = energy(place.x, plain);
-    place.gradientRms = held ? held.project(place.x, plain) : rootMeanSquare(plain);
+    place.gradientRms = held ? held.project(plain) : rootMeanSquare(plain);
     place.frames.place(place.x);
     place.frames.gradientToLocal(plain, place.gradient);
   };
