@@ -8,7 +8,7 @@ import { setImmediate } from 'node:timers/promises';
 import { eq } from 'drizzle-orm';
 import { unzipSync } from 'fflate';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { perform } from '$lib/engine';
+import { ENGINE_VERSION, perform } from '$lib/engine';
 import { answerSchema } from '$lib/domain/bundle-schema';
 import { planSchema, readingSchema } from '$lib/domain/submission';
 import { bundleBatch } from '$lib/server/bundles';
@@ -86,7 +86,7 @@ describe('a bundle', () => {
       expect.objectContaining({
         kind: 'conformers',
         model: 'MMFF94s',
-        engineVersion: '0.1.0',
+        engineVersion: ENGINE_VERSION,
         settings: expect.objectContaining({ seed: 1 }),
       }),
     );
