@@ -67,9 +67,10 @@ def constrained(request):
         for molecule, angle in starts:
             copy = Chem.Mol(molecule)
             properties = AllChem.MMFFGetMoleculeProperties(copy, mmffVariant='MMFF94s')
-            start = time.process_time()
             field = AllChem.MMFFGetMoleculeForceField(copy, properties, nonBondedThresh=CUTOFF)
             field.Initialize()
+            # RDKit needs a new field for each restraint; ours has none to set up, so only the work counts.
+            start = time.process_time()
             field.MMFFAddTorsionConstraint(*atoms, False, angle, angle, TORSION_FORCE)
             run_to_end(field)
             seconds += time.process_time() - start

@@ -3,6 +3,11 @@
 /** kcal/mol within which two energies are the same minimum. */
 const SAME_MINIMUM = 0.01;
 
+/** Whether an energy is another's equal or lower. */
+export function isNotAbove(ours: number, theirs: number): boolean {
+  return ours - theirs <= SAME_MINIMUM;
+}
+
 /** How our energies compare with theirs, one by one: how many are lower, the same and higher, and the highest above. */
 export function comparedEnergies(ours: readonly number[], theirs: readonly number[]): string {
   const above = ours.map((energy, n) => energy - theirs[n]);

@@ -6,6 +6,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { unzipSync } from 'fflate';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { ENGINE_VERSION } from '$lib/engine';
 import { answerSchema } from '$lib/domain/bundle-schema';
 import { planSchema, readingSchema } from '$lib/domain/submission';
 import { bundleBatch } from '$lib/server/bundles';
@@ -64,7 +65,7 @@ describe('a bundle', () => {
       expect.objectContaining({
         kind: 'conformers',
         model: 'MMFF94s',
-        engineVersion: '0.1.0',
+        engineVersion: ENGINE_VERSION,
         settings: expect.objectContaining({ seed: 1 }),
       }),
     );

@@ -1,2 +1,2 @@
 /** The version written into every result; equal to package.json's. */
-export const ENGINE_VERSION = '0.1.0';
+export const ENGINE_VERSION = '0.2.0';

@@ -36,6 +36,7 @@ export async function finishMinima(
     gradientRms: REPORTED_GRADIENT_RMS,
     maxEvaluations: MOST_EVALUATIONS,
     curvature: forceField.curvature,
+    skeleton: forceField.skeleton,
   };
   for (const { coordinates, energy } of pool.found.slice(0, most)) {
     if (energy > minima.ceiling() + LAST_FALL) break;

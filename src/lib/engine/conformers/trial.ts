@@ -32,9 +32,9 @@ const MOST_EVALUATIONS = 2000;
 
 /** Creates the trials of one search; `molecule` has the configuration that every geometry must keep. */
 export function createTrial(forceField: ForceField, molecule: Molecule, pool: Pool): Trial {
-  const { energy, curvature } = forceField;
+  const { energy, curvature, skeleton } = forceField;
   const counts = { starts: 0, minimizations: 0 };
-  const options = { maxEvaluations: MOST_EVALUATIONS, curvature };
+  const options = { maxEvaluations: MOST_EVALUATIONS, curvature, skeleton };
   return {
     counts,
     run: async (x, control) => {

@@ -10,7 +10,7 @@ import { createPeriodicCurve } from '../thermo/periodic-curve';
 import { profileCurve } from '../torsion/profile';
 import { scanTorsion } from '../torsion/scan';
 import { defaultScanOptions } from '../torsion/scan-result';
-import type { ScanResult, StationaryPoint } from '../torsion/scan-result';
+import type { ScanOptions, ScanResult, StationaryPoint } from '../torsion/scan-result';
 import { turnBetween } from '../units';
 import { findConjugatedBonds } from './conjugated-bonds';
 import type { ConjugatedBond } from './conjugated-bonds';
@@ -44,7 +44,9 @@ export async function analyzeConjugation(
   const effort = found.length > 0 ? 'normal' : 'quick';
   const searchOptions = { ...defaultConformerSearchOptions, effort, seed } as const;
   const search = await searchConformers(forceField, searchOptions, control.part(0, SEARCH_SHARE));
-  const scans = await scanBonds(forceField, found, seed, control.part(SEARCH_SHARE, 1));
+  const conformers = search.conformers.map(({ coordinates }) => Float64Array.from(coordinates));
+  const scanned = { seed, conformers };
+  const scans = await scanBonds(forceField, found, scanned, control.part(SEARCH_SHARE, 1));
   const lowest = lowestShape(search.conformers[0], [...scans.values()]);
   const bonds = found.map((bond): BondConjugation => {
     const scan = scans.get(bond.bond);
@@ -56,11 +58,11 @@ export async function analyzeConjugation(
   return { bonds, lowest, complete };
 }
 
-/** Scans the bonds that can turn as far as time suffices; by bond index. */
+/** Scans the bonds that can turn, all from the same known conformers, as far as time suffices; by bond index. */
 async function scanBonds(
   forceField: ForceField,
   bonds: readonly ConjugatedBond[],
-  seed: number,
+  known: Pick<ScanOptions, 'seed' | 'conformers'>,
   control: Control,
 ): Promise<Map<number, ScanResult>> {
   const { molecule } = forceField;
@@ -69,7 +71,7 @@ async function scanBonds(
   for (const [n, bond] of turning.entries()) {
     if (control.expired()) break;
     const torsion = bond.dieneTorsion ?? torsionOfBond(molecule, bond.j, bond.k);
-    const options = { ...defaultScanOptions, torsion, seed };
+    const options = { ...defaultScanOptions, ...known, torsion };
     const part = control.part(n / turning.length, (n + 1) / turning.length);
     scans.set(bond.bond, await scanTorsion(forceField, options, part));
   }

@@ -1,5 +1,6 @@
 /** Compiles a molecule into its force field. */
 import type { Molecule } from '../molecule/molecule';
+import { findSkeleton } from '../molecule/skeleton';
 import { assembleInteractions } from './assemble';
 import { compileInteractions } from './compile';
 import { defaultForceFieldSettings } from './forcefield';
@@ -15,5 +16,6 @@ export function createForceField(
 ): ForceField {
   const { atomTypes, charges, interactions } = assembleInteractions(molecule, settings.variant);
   const compiled = compileInteractions(molecule.atomCount, interactions, settings.dielectric);
-  return { molecule, settings, atomTypes, charges, ...compiled };
+  const skeleton = findSkeleton(molecule);
+  return { molecule, settings, atomTypes, charges, skeleton, ...compiled };
 }

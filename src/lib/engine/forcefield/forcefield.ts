@@ -1,6 +1,7 @@
 /** A molecule's force field: MMFF94 or MMFF94s compiled into flat arrays, as one energy term and by its parts. */
 import type { CurvatureTerm, EnergyTerm } from '../energy-term';
 import type { Molecule } from '../molecule/molecule';
+import type { Skeleton } from '../molecule/skeleton';
 
 export type Variant = 'MMFF94' | 'MMFF94s';
 
@@ -43,6 +44,8 @@ export interface ForceField {
   readonly energy: EnergyTerm;
   /** A cheap positive semidefinite curvature of the whole energy, for the minimizer. */
   readonly curvature: CurvatureTerm;
+  /** The molecule's bonds as the minimizer needs them. */
+  readonly skeleton: Skeleton;
   /** The energy by terms. */
   terms(x: Float64Array): TermEnergies;
 }

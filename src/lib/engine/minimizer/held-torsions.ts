@@ -6,6 +6,7 @@
 import { torsionDerivative } from '../forcefield/terms/torsion-derivative';
 import { toDegrees, turnBetween } from '../units';
 import { dot } from './history';
+import type { LocalFrames } from './local-frames';
 
 /** A torsion i-j-k-l with the angle it is held at, degrees. */
 export interface HeldTorsion {
@@ -14,19 +15,20 @@ export interface HeldTorsion {
 }
 
 export interface HeldTorsions {
-  /** Takes the position `x` as the place to step from; `solve` applies the inverse curvature there. */
-  linearize(x: Float64Array, solve: (vector: Float64Array) => void): void;
+  /** Learns the ways along which the torsions turn most softly; `solve` applies the inverse curvature, in local form. */
+  soften(x: Float64Array, frames: LocalFrames, solve: (vector: Float64Array) => void): void;
+  /** Takes the position `x` with its frames as the place to step from. */
+  linearize(x: Float64Array, frames: LocalFrames): void;
   /** Takes out of a direction (of steps from the linearized place) what would turn the torsions. */
   flatten(direction: Float64Array): void;
   /** Moves `x`, near the linearized place, so that the torsions have their targets; false where it cannot. */
   restore(x: Float64Array): boolean;
   /**
-   * Takes out of the gradient at `x` the forces that hold the torsions, so that its product with a flattened direction is
-   * the slope of the energy along the restored steps.
+   * Takes out of the gradient at the place restored last the forces that hold the torsions, so that its product with a
+   * flattened direction is the slope of the energy along the restored steps. Returns the root mean square of the gradient
+   * without any part that only turns the torsions.
    */
-  project(x: Float64Array, gradient: Float64Array): void;
-  /** Root mean square of the gradient at `x` without any part that only turns the torsions. */
-  tangentRms(x: Float64Array, gradient: Float64Array): number;
+  project(gradient: Float64Array): number;
   /** The farthest a torsion is from its target, degrees. */
   deviation(x: Float64Array): number;
 }
@@ -41,39 +43,61 @@ const LARGEST_CORRECTION = 0.1;
 export function holdTorsions(torsions: readonly HeldTorsion[], size: number): HeldTorsions {
   const count = torsions.length;
   const offsets = torsions.map(({ atoms }) => Int32Array.from(atoms, (atom) => 3 * atom));
-  const derivative = new Float64Array(12);
-  // For each torsion its derivatives at the linearized place and the way that turns it most softly.
-  const normals = torsions.map(() => new Float64Array(size));
+  // For each torsion its twelve derivatives at the linearized place and at another one.
+  const normals = torsions.map(() => new Float64Array(12));
+  const normalsHere = torsions.map(() => new Float64Array(12));
+  // The ways that turn them most softly, in local form and from the linearized place.
+  const localWays = torsions.map(() => new Float64Array(size));
   const ways = torsions.map(() => new Float64Array(size));
   const couplings = new Float64Array(count * count);
-  const normalsHere = torsions.map(() => new Float64Array(size));
-  const couplingsHere = new Float64Array(count * count);
   const amounts = new Float64Array(count);
   const tangent = new Float64Array(size);
 
   const missing = (x: Float64Array, t: number): number =>
-    turnBetween(toDegrees(torsionDerivative(x, offsets[t], derivative)), torsions[t].target) /
+    turnBetween(toDegrees(torsionDerivative(x, offsets[t], normalsHere[t])), torsions[t].target) /
     toDegrees(1);
   const derive = (x: Float64Array, into: readonly Float64Array[]): void => {
-    for (let t = 0; t < count; t++) {
-      torsionDerivative(x, offsets[t], derivative);
-      for (let a = 0; a < 4; a++) {
-        for (let p = 0; p < 3; p++) into[t][offsets[t][a] + p] = derivative[3 * a + p];
+    for (let t = 0; t < count; t++) torsionDerivative(x, offsets[t], into[t]);
+  };
+  /** All products between the derivatives of torsions and some vectors. */
+  const couple = (derivatives: readonly Float64Array[], vectors: readonly Float64Array[]): void => {
+    for (let r = 0; r < count; r++) {
+      for (let c = 0; c < count; c++) {
+        couplings[r * count + c] = dotSparse(derivatives[r], offsets[r], vectors[c]);
       }
+    }
+  };
+  const addDerivative = (
+    vector: Float64Array,
+    scale: number,
+    derivatives: readonly Float64Array[],
+    t: number,
+  ): void => {
+    for (let a = 0; a < 4; a++) {
+      const n = offsets[t][a];
+      vector[n] += scale * derivatives[t][3 * a];
+      vector[n + 1] += scale * derivatives[t][3 * a + 1];
+      vector[n + 2] += scale * derivatives[t][3 * a + 2];
     }
   };
 
   return {
-    linearize: (x, solve) => {
+    soften: (x, frames, solve) => {
       derive(x, normals);
       for (let t = 0; t < count; t++) {
-        ways[t].set(normals[t]);
-        solve(ways[t]);
+        tangent.fill(0);
+        addDerivative(tangent, 1, normals, t);
+        frames.gradientToLocal(tangent, localWays[t]);
+        solve(localWays[t]);
       }
-      multiplyAll(normals, ways, couplings);
+    },
+    linearize: (x, frames) => {
+      derive(x, normals);
+      for (let t = 0; t < count; t++) frames.stepFromLocal(localWays[t], ways[t]);
     },
     flatten: (direction) => {
-      for (let t = 0; t < count; t++) amounts[t] = dot(normals[t], direction);
+      couple(normals, ways);
+      for (let t = 0; t < count; t++) amounts[t] = dotSparse(normals[t], offsets[t], direction);
       solveSmall(couplings, amounts, count);
       subtractAll(direction, amounts, ways);
     },
@@ -86,26 +110,28 @@ export function holdTorsions(torsions: readonly HeldTorsion[], size: number): He
           amounts[t] = -Math.max(-LARGEST_CORRECTION, Math.min(LARGEST_CORRECTION, turn));
         }
         if (largest <= EXACT) return true;
+        couple(normalsHere, ways);
         solveSmall(couplings, amounts, count);
         subtractAll(x, amounts, ways);
       }
       return false;
     },
     // Restoring moves along the ways, so no force along them may be left: they, not the normals, weigh the gradient.
-    project: (x, gradient) => {
-      derive(x, normalsHere);
-      multiplyAll(ways, normalsHere, couplingsHere);
-      for (let t = 0; t < count; t++) amounts[t] = dot(ways[t], gradient);
-      solveSmall(couplingsHere, amounts, count);
-      subtractAll(gradient, amounts, normalsHere);
-    },
-    tangentRms: (x, gradient) => {
-      derive(x, normalsHere);
-      multiplyAll(normalsHere, normalsHere, couplingsHere);
-      for (let t = 0; t < count; t++) amounts[t] = dot(normalsHere[t], gradient);
-      solveSmall(couplingsHere, amounts, count);
+    project: (gradient) => {
       tangent.set(gradient);
-      subtractAll(tangent, amounts, normalsHere);
+      for (let r = 0; r < count; r++) {
+        amounts[r] = dotSparse(normalsHere[r], offsets[r], gradient);
+        for (let c = 0; c < count; c++) {
+          couplings[r * count + c] = r === c ? dot(normalsHere[r], normalsHere[r]) : overlap(r, c);
+        }
+      }
+      solveSmall(couplings, amounts, count);
+      for (let t = 0; t < count; t++) addDerivative(tangent, -amounts[t], normalsHere, t);
+      couple(normalsHere, ways);
+      transpose(couplings, count);
+      for (let t = 0; t < count; t++) amounts[t] = dot(ways[t], gradient);
+      solveSmall(couplings, amounts, count);
+      for (let t = 0; t < count; t++) addDerivative(gradient, -amounts[t], normalsHere, t);
       return Math.sqrt(dot(tangent, tangent) / size);
     },
     deviation: (x) => {
@@ -114,16 +140,42 @@ export function holdTorsions(torsions: readonly HeldTorsion[], size: number): He
       return toDegrees(largest);
     },
   };
+
+  /** Inner product of the derivatives of two torsions. */
+  function overlap(r: number, c: number): number {
+    let sum = 0;
+    for (let a = 0; a < 4; a++) {
+      for (let b = 0; b < 4; b++) {
+        if (offsets[r][a] !== offsets[c][b]) continue;
+        for (let p = 0; p < 3; p++) {
+          sum += normalsHere[r][3 * a + p] * normalsHere[c][3 * b + p];
+        }
+      }
+    }
+    return sum;
+  }
 }
 
-/** All inner products between two lists of vectors. */
-function multiplyAll(
-  rows: readonly Float64Array[],
-  columns: readonly Float64Array[],
-  products: Float64Array,
-): void {
-  for (let r = 0; r < rows.length; r++) {
-    for (let c = 0; c < rows.length; c++) products[r * rows.length + c] = dot(rows[r], columns[c]);
+/** Product of a torsion's twelve derivatives with a vector of all coordinates. */
+function dotSparse(derivative: Float64Array, offsets: Int32Array, vector: Float64Array): number {
+  let sum = 0;
+  for (let a = 0; a < 4; a++) {
+    const n = offsets[a];
+    sum +=
+      derivative[3 * a] * vector[n] +
+      derivative[3 * a + 1] * vector[n + 1] +
+      derivative[3 * a + 2] * vector[n + 2];
+  }
+  return sum;
+}
+
+function transpose(matrix: Float64Array, count: number): void {
+  for (let r = 0; r < count; r++) {
+    for (let c = 0; c < r; c++) {
+      const above = matrix[c * count + r];
+      matrix[c * count + r] = matrix[r * count + c];
+      matrix[r * count + c] = above;
+    }
   }
 }
 

@@ -6,10 +6,10 @@
 export interface History {
   /** Forgets everything. */
   clear(): void;
-  /** Remembers the step `next - previous` with its change of gradient, unless its curvature is not safely positive. */
+  /** Remembers `scale` times `direction` with the change of gradient it made, unless its curvature is not safely positive. */
   remember(
-    previous: Float64Array,
-    next: Float64Array,
+    direction: Float64Array,
+    scale: number,
     previousGradient: Float64Array,
     nextGradient: Float64Array,
   ): void;
@@ -19,8 +19,9 @@ export interface History {
 
 /** Creates a memory of `depth` pairs of vectors of length `size`. */
 export function createHistory(size: number, depth: number): History {
-  const steps = Array.from({ length: depth }, () => new Float64Array(size));
-  const changes = Array.from({ length: depth }, () => new Float64Array(size));
+  // One array each, a row a pair: a minimization of a small molecule is soon over, and many arrays cost more than it.
+  const steps = new Float64Array(depth * size);
+  const changes = new Float64Array(depth * size);
   const inverseProducts = new Float64Array(depth);
   const weights = new Float64Array(depth);
   let count = 0;
@@ -30,18 +31,17 @@ export function createHistory(size: number, depth: number): History {
     clear: () => {
       count = 0;
     },
-    remember: (previous, next, previousGradient, nextGradient) => {
+    remember: (direction, scale, previousGradient, nextGradient) => {
       const slot = (newest + 1) % depth;
-      const step = steps[slot];
-      const change = changes[slot];
+      const row = slot * size;
       let product = 0;
       let stepSquare = 0;
       let changeSquare = 0;
       for (let a = 0; a < size; a++) {
-        const s = next[a] - previous[a];
+        const s = scale * direction[a];
         const y = nextGradient[a] - previousGradient[a];
-        step[a] = s;
-        change[a] = y;
+        steps[row + a] = s;
+        changes[row + a] = y;
         product += s * y;
         stepSquare += s * s;
         changeSquare += y * y;
@@ -54,15 +54,15 @@ export function createHistory(size: number, depth: number): History {
     apply: (vector, applyInitial) => {
       for (let age = 0; age < count; age++) {
         const slot = (newest - age + depth) % depth;
-        const weight = inverseProducts[slot] * dot(steps[slot], vector);
+        const weight = inverseProducts[slot] * dotRow(steps, slot * size, vector);
         weights[slot] = weight;
-        addScaled(vector, -weight, changes[slot]);
+        addRow(vector, -weight, changes, slot * size);
       }
       applyInitial(vector);
       for (let age = count - 1; age >= 0; age--) {
         const slot = (newest - age + depth) % depth;
-        const correction = inverseProducts[slot] * dot(changes[slot], vector);
-        addScaled(vector, weights[slot] - correction, steps[slot]);
+        const correction = inverseProducts[slot] * dotRow(changes, slot * size, vector);
+        addRow(vector, weights[slot] - correction, steps, slot * size);
       }
     },
   };
@@ -70,22 +70,27 @@ export function createHistory(size: number, depth: number): History {
 
 /** Inner product of two vectors of one length. */
 export function dot(a: Float64Array, b: Float64Array): number {
+  return dotRow(a, 0, b);
+}
+
+/** Inner product of a vector and as many numbers of `rows` from `start` on. */
+function dotRow(rows: Float64Array, start: number, vector: Float64Array): number {
   // Four sums, because each addition would otherwise wait for the one before.
   let sum0 = 0;
   let sum1 = 0;
   let sum2 = 0;
   let sum3 = 0;
   let n = 0;
-  for (; n < a.length - 3; n += 4) {
-    sum0 += a[n] * b[n];
-    sum1 += a[n + 1] * b[n + 1];
-    sum2 += a[n + 2] * b[n + 2];
-    sum3 += a[n + 3] * b[n + 3];
+  for (; n < vector.length - 3; n += 4) {
+    sum0 += rows[start + n] * vector[n];
+    sum1 += rows[start + n + 1] * vector[n + 1];
+    sum2 += rows[start + n + 2] * vector[n + 2];
+    sum3 += rows[start + n + 3] * vector[n + 3];
   }
-  for (; n < a.length; n++) sum0 += a[n] * b[n];
+  for (; n < vector.length; n++) sum0 += rows[start + n] * vector[n];
   return sum0 + sum1 + (sum2 + sum3);
 }
 
-function addScaled(target: Float64Array, scale: number, source: Float64Array): void {
-  for (let n = 0; n < target.length; n++) target[n] += scale * source[n];
+function addRow(target: Float64Array, scale: number, rows: Float64Array, start: number): void {
+  for (let n = 0; n < target.length; n++) target[n] += scale * rows[start + n];
 }

@@ -5,7 +5,7 @@
  */
 import { dot } from './history';
 
-/** A point with its energy and gradient. */
+/** A point with its energy and gradient, in whatever coordinates the direction has. */
 export interface Point {
   x: Float64Array;
   gradient: Float64Array;

@@ -1,18 +1,18 @@
 /** Minimizes an energy: limited-memory quasi-Newton steps from a curvature that knows the molecule. */
 import type { Control } from '../control';
 import type { EnergyTerm } from '../energy-term';
-import { createHistory, dot } from './history';
+import { dot } from './history';
 import { holdTorsions } from './held-torsions';
 import { searchLine } from './line-search';
-import type { LineSearchResult, Point } from './line-search';
+import type { LineSearchResult } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
-import { createPreconditioner } from './preconditioner';
 import { separateCoincident } from './separate';
+import { swing } from './swing';
+import { returnWorkspace, takeWorkspace } from './workspace';
+import type { Place, Workspace } from './workspace';
 
-/** Pairs of steps and gradient changes remembered. */
-const MEMORY = 7;
 /** Steps after which the curvature is computed anew. */
-const REFRESH_INTERVAL = 6;
+const REFRESH_INTERVAL = 12;
 /** Longest way an atom may go in one step, Å: beyond it the local picture of the energy is worth nothing. */
 const LONGEST_STEP = 0.2;
 
@@ -32,56 +32,87 @@ export async function minimize(
   options: MinimizeOptions,
   control: Control,
 ): Promise<MinimizeResult> {
-  const size = x.length;
   separateCoincident(x);
-  const { gradientRms, maxEvaluations, curvature, torsions } = options;
-  const history = createHistory(size, MEMORY);
-  const preconditioner = curvature ? createPreconditioner(curvature, size) : null;
+  const workspace = takeWorkspace(x.length, options.skeleton);
+  try {
+    return await descend(energy, x, options, control, workspace);
+  } finally {
+    returnWorkspace(workspace);
+  }
+}
+
+async function descend(
+  energy: EnergyTerm,
+  x: Float64Array,
+  { gradientRms, maxEvaluations, curvature, skeleton, torsions }: MinimizeOptions,
+  control: Control,
+  workspace: Workspace,
+): Promise<MinimizeResult> {
+  const size = x.length;
+  const { history, preconditioner, curvatureFrames, direction, localDirection, plain } = workspace;
   const held = torsions && torsions.length > 0 ? holdTorsions(torsions, size) : null;
-  const direction = new Float64Array(size);
+  let [current, next] = workspace.places;
+  current.x.set(x);
   const found: LineSearchResult = { evaluations: 0, lower: false };
-  let current: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
-  let next: Point = { x: x.slice(), gradient: new Float64Array(size), energy: 0 };
-  const applyInitial = (vector: Float64Array): void => preconditioner?.solve(vector);
-  const compute = (point: Point): void => {
-    point.gradient.fill(0);
-    point.energy = energy(point.x, point.gradient);
-    held?.project(point.x, point.gradient);
+  let lastStep = 0;
+
+  const applyInitial = (vector: Float64Array): void => {
+    if (!curvature) return;
+    curvatureFrames.gradientFromLocal(vector, plain);
+    preconditioner.solve(plain);
+    curvatureFrames.stepToLocal(plain, vector);
   };
-  const reachedBy = ({ x: at, gradient }: Point): number =>
-    held ? held.tangentRms(at, gradient) : rootMeanSquare(gradient);
+  const refresh = (): void => {
+    curvatureFrames.copy(current.frames);
+    if (curvature) preconditioner.refresh(current.x, curvature);
+    held?.soften(current.x, current.frames, applyInitial);
+  };
+  const compute = (place: Place): void => {
+    plain.fill(0);
+    place.energy = energy(place.x, plain);
+    place.gradientRms = held ? held.project(plain) : rootMeanSquare(plain);
+    place.frames.place(place.x);
+    place.frames.gradientToLocal(plain, place.gradient);
+  };
   const stepTo = (step: number): void => {
-    for (let a = 0; a < size; a++) next.x[a] = current.x[a] + step * direction[a];
+    lastStep = step;
+    swing(skeleton, current.x, step, direction, next.x);
     if (held === null || held.restore(next.x)) compute(next);
     else next.energy = Infinity;
   };
+  const aim = (): void => {
+    localDirection.set(current.gradient);
+    history.apply(localDirection, applyInitial);
+    current.frames.stepFromLocal(localDirection, direction);
+    held?.flatten(direction);
+    for (let a = 0; a < size; a++) direction[a] = -direction[a];
+    current.frames.stepToLocal(direction, localDirection);
+  };
 
-  preconditioner?.refresh(current.x);
+  current.frames.place(current.x);
+  refresh();
   for (let turns = 0; held && turns < MOST_TURNS; turns++) {
-    held.linearize(current.x, applyInitial);
+    held.linearize(current.x, current.frames);
     if (held.restore(current.x)) break;
-    preconditioner?.refresh(current.x);
+    current.frames.place(current.x);
+    refresh();
   }
   compute(current);
   let evaluations = 1;
   let sinceRefresh = 0;
   let restarted = false;
-  while (reachedBy(current) > gradientRms && evaluations < maxEvaluations) {
+  while (current.gradientRms > gradientRms && evaluations < maxEvaluations) {
     if (control.due()) await control.pause();
     if (sinceRefresh >= REFRESH_INTERVAL) {
-      preconditioner?.refresh(current.x);
+      refresh();
       sinceRefresh = 0;
     }
     sinceRefresh++;
-    held?.linearize(current.x, applyInitial);
-    held?.project(current.x, current.gradient);
-    direction.set(current.gradient);
-    history.apply(direction, applyInitial);
-    held?.flatten(direction);
-    for (let a = 0; a < size; a++) direction[a] = -direction[a];
-    if (dot(direction, current.gradient) < 0) {
+    held?.linearize(current.x, current.frames);
+    aim();
+    if (dot(localDirection, current.gradient) < 0) {
       const largestStep = LONGEST_STEP / longestMove(direction);
-      searchLine(stepTo, current, direction, 1, largestStep, next, found);
+      searchLine(stepTo, current, localDirection, 1, largestStep, next, found);
       evaluations += found.evaluations;
     } else found.lower = false;
     if (!found.lower) {
@@ -93,16 +124,15 @@ export async function minimize(
       continue;
     }
     restarted = false;
-    history.remember(current.x, next.x, current.gradient, next.gradient);
+    history.remember(localDirection, lastStep, current.gradient, next.gradient);
     [current, next] = [next, current];
   }
   x.set(current.x);
-  const reached = reachedBy(current);
   const isHeld = held === null || held.deviation(x) <= HELD_TOLERANCE;
   return {
     energy: current.energy,
-    converged: reached <= gradientRms && isHeld,
-    gradientRms: reached,
+    converged: current.gradientRms <= gradientRms && isHeld,
+    gradientRms: current.gradientRms,
     evaluations,
   };
 }

@@ -1,5 +1,6 @@
 /** What goes into a minimization and what comes out. */
 import type { CurvatureTerm } from '../energy-term';
+import type { Skeleton } from '../molecule/skeleton';
 import type { HeldTorsion } from './held-torsions';
 
 export interface MinimizeOptions {
@@ -9,6 +10,8 @@ export interface MinimizeOptions {
   readonly maxEvaluations: number;
   /** A curvature that steers the steps; without one the steps start from the identity. */
   readonly curvature?: CurvatureTerm;
+  /** The bonds of the molecule whose energy it is: steps then follow the turns of its parts. Not for atoms held in place. */
+  readonly skeleton?: Skeleton;
   /** Torsions held exactly at their targets; a start near them is turned there most gently. */
   readonly torsions?: readonly HeldTorsion[];
 }

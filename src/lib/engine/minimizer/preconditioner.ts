@@ -6,8 +6,10 @@ import { createFactor, factorize, solve } from './sparse-cholesky';
 import type { BlockFactor } from './sparse-cholesky';
 
 export interface Preconditioner {
+  /** Forgets every curvature. */
+  clear(): void;
   /** Computes and factorizes the curvature at `x`. */
-  refresh(x: Float64Array): void;
+  refresh(x: Float64Array, curvature: CurvatureTerm): void;
   /** Turns `vector` in place into the solution of (curvature + regularization) · solution = vector. */
   solve(vector: Float64Array): void;
 }
@@ -15,24 +17,32 @@ export interface Preconditioner {
 /** Added to the diagonal, kcal/mol/Å²: about the stiffness of the softest modes a molecule has. */
 const REGULARIZATION = 2;
 
-/** Creates a preconditioner for `size` coordinates; `refresh` it before use. */
-export function createPreconditioner(curvature: CurvatureTerm, size: number): Preconditioner {
+/** Creates a preconditioner for `size` coordinates; before its first curvature it leaves vectors as they are. */
+export function createPreconditioner(size: number): Preconditioner {
   const atoms = size / 3;
-  const matrix = new Float64Array(size * size);
+  let matrix = new Float64Array(0);
   const coupled = new Uint8Array(atoms * atoms);
   let factor: BlockFactor | null = null;
+  let isFresh = false;
   return {
-    refresh: (x) => {
-      matrix.fill(0);
+    clear: () => {
+      coupled.fill(0);
+      isFresh = false;
+    },
+    refresh: (x, curvature) => {
+      if (matrix.length === 0) matrix = new Float64Array(size * size);
+      else matrix.fill(0);
       curvature(x, matrix);
       // Couplings may appear as atoms move, so the pattern grows; it never shrinks.
-      if (markCouplings(matrix, coupled, atoms) || factor === null) {
-        factor = createFactor(planFor(coupled, atoms));
+      if (markCouplings(matrix, coupled, atoms) || !isFresh || factor === null) {
+        const plan = planFor(coupled, atoms);
+        if (factor?.plan !== plan) factor = createFactor(plan);
+        isFresh = true;
       }
       factorize(factor, matrix, REGULARIZATION);
     },
     solve: (vector) => {
-      if (factor) solve(factor, vector);
+      if (isFresh && factor) solve(factor, vector);
     },
   };
 }

@@ -90,8 +90,8 @@ export async function softestMode(
   const rigid = rigidMotions(x);
   if (size <= rigid.length) return null;
   const multiply = hessianProduct(energy, x);
-  const preconditioner = createPreconditioner(curvature, size);
-  preconditioner.refresh(Float64Array.from(x));
+  const preconditioner = createPreconditioner(size);
+  preconditioner.refresh(Float64Array.from(x), curvature);
   const space: Subspace = { basis: [], products: [] };
   let mode: Mode | null = null;
   let guess = startVector(size);

@@ -71,6 +71,7 @@ async function freeMinimum(forceField: ForceField, start: Float64Array, control:
       gradientRms: REPORTED_GRADIENT_RMS,
       maxEvaluations: MAX_EVALUATIONS,
       curvature: forceField.curvature,
+      skeleton: forceField.skeleton,
     },
     control,
   );

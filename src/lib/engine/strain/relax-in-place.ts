@@ -54,6 +54,7 @@ export async function relaxInPlace(
       gradientRms: REPORTED_GRADIENT_RMS,
       maxEvaluations: MAX_EVALUATIONS,
       curvature: tethered.curvature,
+      skeleton: forceField.skeleton,
     },
     control,
   );

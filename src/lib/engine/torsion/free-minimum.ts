@@ -16,7 +16,7 @@ const MAX_EVALUATIONS = 2000;
 
 /** Minimizes a copy of a geometry (Å, 3N) to a true minimum; null when it does not converge to one. */
 export async function minimizeFreely(
-  { energy: energyTerm, curvature }: ForceField,
+  { energy: energyTerm, curvature, skeleton }: ForceField,
   start: Float64Array,
   control: Control,
 ): Promise<FreeMinimum | null> {
@@ -25,6 +25,7 @@ export async function minimizeFreely(
     gradientRms: REPORTED_GRADIENT_RMS,
     maxEvaluations: MAX_EVALUATIONS,
     curvature,
+    skeleton,
   };
   const { energy, converged } = await minimizeToMinimum(energyTerm, coordinates, options, control);
   return converged ? { coordinates, energy, converged } : null;

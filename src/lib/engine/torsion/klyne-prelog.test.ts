@@ -21,6 +21,12 @@ describe('Klyne-Prelog terms', () => {
     expect(torsionRange(300)).toBe('sc');
   });
 
+  it('do not depend on the last digits of an angle on a border', () => {
+    for (const border of [30, 90, 150]) {
+      expect(torsionRange(border + 1e-9)).toBe(torsionRange(border - 1e-9));
+    }
+  });
+
   it('carry the sign of the turn', () => {
     expect(klynePrelog(60)).toBe('+sc');
     expect(klynePrelog(-65)).toBe('-sc');

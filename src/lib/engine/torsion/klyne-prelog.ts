@@ -3,12 +3,15 @@ import { wrapDegrees } from '../units';
 
 export type TorsionRange = 'sp' | 'sc' | 'ac' | 'ap';
 
+/** Parts of a degree that a range is told by: a torsion held at 90 is 90 whatever its last digits. */
+const RESOLUTION = 1e4;
+
 /**
  * The range of a torsion angle in degrees: synperiplanar up to 30, synclinal to 90, anticlinal to 150,
  * antiperiplanar to 180.
  */
 export function torsionRange(angle: number): TorsionRange {
-  const size = Math.abs(wrapDegrees(angle));
+  const size = Math.round(Math.abs(wrapDegrees(angle)) * RESOLUTION) / RESOLUTION;
   if (size <= 30) return 'sp';
   if (size <= 90) return 'sc';
   return size <= 150 ? 'ac' : 'ap';

@@ -31,11 +31,11 @@ export interface ProfileSample {
 export interface ScanPoint {
   /** Target angle, degrees. */
   readonly angle: number;
-  /** kcal/mol, without the restraint's own energy. */
+  /** kcal/mol */
   readonly energy: number;
   /** kcal/mol above the lowest point. */
   readonly relative: number;
-  /** The torsion of the geometry returned, degrees; within 0.1 of the target. */
+  /** The torsion of the geometry returned, degrees; within 0.001 of the target. */
   readonly reached: number;
   /** 3N, Å */
   readonly coordinates: Float64Array;

@@ -16,12 +16,12 @@ export function createSoftKick(
   size: number,
   seed: number,
 ): (x: Float64Array) => Float64Array[] {
-  const preconditioner = createPreconditioner(curvature, size);
+  const preconditioner = createPreconditioner(size);
   return (x) => {
     const random = createRandom(seed);
     const direction = Float64Array.from({ length: size }, () => random.normal());
     const rigid = rigidMotions(x);
-    preconditioner.refresh(x);
+    preconditioner.refresh(x, curvature);
     orthonormalize(direction, rigid);
     preconditioner.solve(direction);
     orthonormalize(direction, rigid);

@@ -4,16 +4,16 @@ import { InputError } from '../errors';
 import type { ForceField } from '../forcefield/forcefield';
 import { angle, rotateAbout, torsion } from '../geometry';
 import { minimize } from '../minimizer/minimize';
-import { sumTerms, torsionRestraint } from '../minimizer/restraints';
 import type { Molecule } from '../molecule/molecule';
 import { checkTorsion, movedAtoms } from '../molecule/rotatable';
 import { turnBetween } from '../units';
 import type { TorsionAtoms } from './scan-symmetry';
+import { createSoftKick } from './soft-kick';
 
 /** A geometry held at target angles and relaxed otherwise. */
 export interface HeldGeometry {
   readonly coordinates: Float64Array;
-  /** kcal/mol, without the restraint's own energy. */
+  /** kcal/mol */
   readonly energy: number;
   readonly converged: boolean;
   /** Energy evaluations spent. */
@@ -26,7 +26,7 @@ export interface TorsionDrive {
   measure(x: Float64Array): number[];
   /** Turns one side about each bond, rigidly and in place, until the torsions have these angles. */
   turnTo(x: Float64Array, angles: readonly number[]): void;
-  /** Relaxes a copy of `start` with the torsions held. */
+  /** Relaxes a copy of `start` with the torsions held exactly; a start at rest already is pushed once, off a saddle. */
   relax(
     start: Float64Array,
     angles: readonly number[],
@@ -41,8 +41,10 @@ export interface RelaxSettings {
   readonly maxEvaluations: number;
 }
 
-/** Farthest a held torsion may be from its target, degrees. */
-export const TARGET_TOLERANCE = 0.1;
+/** A start from which no atom moves farther than this was at rest already, Å. */
+const STILL = 0.02;
+/** kcal/mol within which two energies are the same. */
+const SAME_ENERGY = 1e-4;
 /** Straighter than this, an end has no direction to count a torsion from; degrees. */
 const LINEAR_ANGLE = 172;
 
@@ -54,6 +56,8 @@ export function createTorsionDrive(
   const { molecule } = forceField;
   torsions.forEach((atoms) => checkTorsion(molecule, atoms));
   const sides = torsions.map(([, j, k]) => smallerSide(molecule, j, k));
+
+  const push = createSoftKick(forceField.curvature, 3 * molecule.atomCount, 1);
 
   const measure = (x: Float64Array): number[] =>
     torsions.map(([i, j, k, l]) => torsion(x, i, j, k, l));
@@ -71,20 +75,19 @@ export function createTorsionDrive(
   ): Promise<HeldGeometry> => {
     const x = start.slice();
     turnTo(x, angles);
-    const restraints = torsions.map((atoms, t) => torsionRestraint(atoms, angles[t]));
-    const { energy, curvature } = sumTerms(forceField, ...restraints);
-    const options = { gradientRms, maxEvaluations, curvature };
+    const turned = x.slice();
+    const { energy, curvature, skeleton } = forceField;
+    const held = torsions.map((atoms, t) => ({ atoms, target: angles[t] }));
+    const options = { gradientRms, maxEvaluations, curvature, skeleton, torsions: held };
     const result = await minimize(energy, x, options, control);
-    const unused = new Float64Array(x.length);
-    const held = measure(x).every(
-      (reached, t) => Math.abs(turnBetween(reached, angles[t])) <= TARGET_TOLERANCE,
-    );
-    return {
-      coordinates: x,
-      energy: forceField.energy(x, unused),
-      converged: result.converged && held,
-      evaluations: result.evaluations,
-    };
+    if (!result.converged || farthestMove(turned, x) > STILL) return { coordinates: x, ...result };
+    // Nothing moved: the start may sit on a saddle, as by symmetry it often does, and no gradient would tell.
+    const [pushed] = push(x);
+    const other = await minimize(energy, pushed, options, control);
+    const evaluations = result.evaluations + other.evaluations;
+    return other.converged && other.energy < result.energy - SAME_ENERGY
+      ? { coordinates: pushed, ...other, evaluations }
+      : { coordinates: x, ...result, evaluations };
   };
   return { torsions, measure, turnTo, relax };
 }
@@ -97,6 +100,16 @@ export function checkBent(x: Float64Array, [i, j, k, l]: TorsionAtoms): void {
     `Atoms ${i + 1}, ${j + 1}, ${k + 1}, ${l + 1} are in line at one end and have no torsion angle.`,
     { atom: j },
   );
+}
+
+/** The longest way of any atom from one geometry to another, Å. */
+function farthestMove(from: Float64Array, to: Float64Array): number {
+  let square = 0;
+  for (let a = 0; a < from.length; a += 3) {
+    const [dx, dy, dz] = [to[a] - from[a], to[a + 1] - from[a + 1], to[a + 2] - from[a + 2]];
+    square = Math.max(square, dx * dx + dy * dy + dz * dz);
+  }
+  return Math.sqrt(square);
 }
 
 /** The atoms on the bond's smaller side. */

@@ -77,21 +77,71 @@ export function torsionTerm({ atoms, v1, v2, v3 }: Interactions['torsions']): En
 }
 
 /**
- * The largest d²ET/dφ² a torsion can have times the outer product of its derivatives. The value at the place itself
- * steers worse: steps turn torsions far enough to change it.
+ * The largest d²ET/dφ² that turning about a bond can meet times the outer products of the derivatives of its torsions. The
+ * value at the place itself steers worse: steps turn torsions far enough to change it. But the torsions about a bond
+ * cancel each other in part, as the twofold ones of a methyl group do, and what they would have one by one is far too stiff.
  */
 export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']): CurvatureTerm {
   const count = v1.length;
-  const stiffness = v1.map(
-    (v, q) => 0.5 * (Math.abs(v) + 4 * Math.abs(v2[q]) + 9 * Math.abs(v3[q])),
-  );
+  const { bonds, bondCount } = centralBonds(atoms, count);
+  const alone = v1.map((v, q) => stiffnessOf(Math.abs(v), Math.abs(v2[q]), Math.abs(v3[q])));
   const offsets = new Int32Array(4);
-  const derivative = new Float64Array(12);
+  const derivatives = Array.from({ length: count }, () => new Float64Array(12));
+  /** For each bond the sums of V cos nφ and V sin nφ, n = 1 to 3, and of what its torsions have alone. */
+  const sums = new Float64Array(7 * bondCount);
   return (x, hessian) => {
+    sums.fill(0);
     for (let q = 0; q < count; q++) {
-      for (let a = 0; a < 4; a++) offsets[a] = 3 * atoms[4 * q + a];
-      torsionDerivative(x, offsets, derivative);
-      addOuterProduct(hessian, x.length, offsets, derivative, 4, stiffness[q]);
+      readOffsets(atoms, q, offsets);
+      const angle = torsionDerivative(x, offsets, derivatives[q]);
+      const c = Math.cos(angle);
+      const s = Math.sin(angle);
+      const c2 = c * c - s * s;
+      const s2 = 2 * c * s;
+      const bond = 7 * bonds[q];
+      sums[bond] += v1[q] * c;
+      sums[bond + 1] += v1[q] * s;
+      sums[bond + 2] += v2[q] * c2;
+      sums[bond + 3] += v2[q] * s2;
+      sums[bond + 4] += v3[q] * (c * c2 - s * s2);
+      sums[bond + 5] += v3[q] * (s * c2 + c * s2);
+      sums[bond + 6] += alone[q];
+    }
+    for (let q = 0; q < count; q++) {
+      readOffsets(atoms, q, offsets);
+      const bond = 7 * bonds[q];
+      if (sums[bond + 6] === 0) continue;
+      const together = stiffnessOf(
+        Math.sqrt(sums[bond] ** 2 + sums[bond + 1] ** 2),
+        Math.sqrt(sums[bond + 2] ** 2 + sums[bond + 3] ** 2),
+        Math.sqrt(sums[bond + 4] ** 2 + sums[bond + 5] ** 2),
+      );
+      const stiffness = (alone[q] * together) / sums[bond + 6];
+      addOuterProduct(hessian, x.length, offsets, derivatives[q], 4, stiffness);
     }
   };
+}
+
+/** The largest second derivative of a torsion energy with these amplitudes, kcal/mol/radian². */
+function stiffnessOf(v1: number, v2: number, v3: number): number {
+  return 0.5 * (v1 + 4 * v2 + 9 * v3);
+}
+
+function readOffsets(atoms: Readonly<Int32Array>, q: number, offsets: Int32Array): void {
+  for (let a = 0; a < 4; a++) offsets[a] = 3 * atoms[4 * q + a];
+}
+
+/** The number of the bond each torsion turns about. */
+function centralBonds(
+  atoms: Readonly<Int32Array>,
+  count: number,
+): { bonds: Int32Array; bondCount: number } {
+  const known = new Map<string, number>();
+  const bonds = Int32Array.from({ length: count }, (_, q) => {
+    const [j, k] = [atoms[4 * q + 1], atoms[4 * q + 2]];
+    const key = `${Math.min(j, k)} ${Math.max(j, k)}`;
+    if (!known.has(key)) known.set(key, known.size);
+    return known.get(key)!;
+  });
+  return { bonds, bondCount: known.size };
 }
