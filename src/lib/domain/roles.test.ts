@@ -13,6 +13,7 @@ const expected: Record<Role, Permission[]> = {
     'submit bulk batches',
     'cancel tasks',
     'rerun tasks',
+    'share with partners',
   ],
   lead: [
     'read results',
@@ -22,8 +23,10 @@ const expected: Record<Role, Permission[]> = {
     'submit bulk batches',
     'cancel tasks',
     'rerun tasks',
+    'share with partners',
     'manage members',
     'manage limits',
+    'read the record',
     'delete results',
     'delete any comment',
   ],

@@ -20,8 +20,8 @@ describe('ring moves', () => {
 
   it('takes chair cyclohexane to a boat and keeps every bond of the arc', async () => {
     const molecule = readMolecule({ smiles: 'C1CCCCC1' });
-    const { energy, curvature } = createForceField(molecule);
-    const options = { gradientRms: 0.01, maxEvaluations: 2000, curvature };
+    const { energy, curvature, skeleton } = createForceField(molecule);
+    const options = { gradientRms: 0.01, maxEvaluations: 2000, curvature, skeleton };
     const x = await initialGeometry(molecule, 1);
     await minimize(energy, x, options, unattended);
     const signs = (): string =>
