@@ -35,7 +35,7 @@ test('a modeler pastes molecules, watches them run, reads the answer and takes t
   await waitUntilDone(page);
   await expectAccessible(page);
 
-  await page.getByRole('link', { name: 'buta-1,3-diene' }).click();
+  await page.getByRole('link', { name: 'buta-1,3-diene', exact: true }).click();
   // MMFF94s: gauche butadiene 2.47, barrier 6.18, planar s-cis 3.43 kcal/mol.
   await expect(
     page.getByText(
@@ -47,7 +47,7 @@ test('a modeler pastes molecules, watches them run, reads the answer and takes t
 
   const [download] = await Promise.all([
     page.waitForEvent('download'),
-    page.getByRole('link', { name: 'Download bundle' }).click(),
+    page.getByRole('link', { name: 'Download bundle', exact: true }).click(),
   ]);
   expect(download.suggestedFilename()).toBe('buta-1_3-diene.zip');
   const files = unzipSync(readFileSync(await download.path()));
@@ -83,7 +83,7 @@ test('a chemist chooses a bond on the drawing of an uploaded file', async ({ pag
   await expect(page.getByText(/^1 task, /)).toBeVisible();
   await compute(page);
   await waitUntilDone(page);
-  await page.getByRole('link', { name: 'methyl acrylate' }).click();
+  await page.getByRole('link', { name: 'methyl acrylate', exact: true }).click();
   await expect(page.getByRole('heading', { name: /^Turn about/ })).toHaveCount(1);
 });
 
@@ -106,19 +106,19 @@ test('a molecule is drawn in the editor', async ({ page }) => {
 test('a reader reads and downloads, but has no way to submit', async ({ page }) => {
   await signInAs(page, 'reader');
   await open(page, '/batches');
-  await expect(page.getByRole('link', { name: 'New batch' })).toHaveCount(0);
+  await expect(page.getByRole('link', { name: 'New batch', exact: true })).toHaveCount(0);
   await expectAccessible(page);
   expect((await page.request.get('/batches/new')).status()).toBe(403);
-  await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
   await waitUntilDone(page);
   await expect(page.getByRole('button', { name: /again|Cancel/ })).toHaveCount(0);
-  await expect(page.getByRole('link', { name: 'Download bundle' })).toBeVisible();
+  await expect(page.getByRole('link', { name: 'Download bundle', exact: true })).toBeVisible();
 });
 
 test('the demo has a row that failed, and says why', async ({ page }) => {
   await signInAs(page, 'lead');
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Biaryls for the topcoat' }).click();
+  await page.getByRole('link', { name: 'Biaryls for the topcoat', exact: true }).click();
   await waitUntilDone(page);
   await expect(page.getByText(/MMFF94 has no parameters for atom \d+ \(B\)/).first()).toBeVisible();
 });
@@ -126,9 +126,13 @@ test('the demo has a row that failed, and says why', async ({ page }) => {
 test('another team’s pages are not there', async ({ page, browser }) => {
   await signInAs(page, 'modeler');
   await open(page, '/batches');
-  const href = await page.getByRole('link', { name: 'Dienes for the primer' }).getAttribute('href');
+  const href = await page
+    .getByRole('link', { name: 'Dienes for the primer', exact: true })
+    .getAttribute('href');
   await open(page, href!);
-  const molecule = await page.getByRole('link', { name: 'isoprene' }).getAttribute('href');
+  const molecule = await page
+    .getByRole('link', { name: 'isoprene', exact: true })
+    .getAttribute('href');
   const stranger = await browser.newContext();
   for (const path of [href!, `${href}/bundle`, `${href}/events`, molecule!]) {
     // A visitor is sent to sign in, and learns nothing.
@@ -155,10 +159,10 @@ for (const [width, scheme] of [
       await expectAccessible(page);
     }
     await open(page, '/batches');
-    await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+    await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
     await waitUntilDone(page);
     await expectAccessible(page);
-    await page.getByRole('link', { name: 'isoprene' }).click();
+    await page.getByRole('link', { name: 'isoprene', exact: true }).click();
     await expect(page.getByRole('heading', { name: /^Turn about/ })).toBeVisible();
     await expectAccessible(page);
   });

@@ -41,7 +41,9 @@ test('a modeler finds drafts, trouble, batches and answers on the desk', async (
   await expect(page.getByText('Left for later')).toHaveCount(0);
 
   const batches = page.getByRole('region', { name: 'Your batches' });
-  await expect(batches.getByRole('link', { name: 'Biaryls for the topcoat' })).toBeVisible();
+  await expect(
+    batches.getByRole('link', { name: 'Biaryls for the topcoat', exact: true }),
+  ).toBeVisible();
   await expect(needs.getByText(/has no parameters for atom \d+ \(B\)/)).toBeVisible({
     timeout: 240_000,
   });
@@ -55,7 +57,7 @@ test('a modeler finds drafts, trouble, batches and answers on the desk', async (
 test('chosen rows make a bundle of their own', async ({ page }) => {
   await signInAs(page, 'reader');
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
   await waitUntilDone(page);
   await page.getByRole('checkbox', { name: 'Choose all rows of this page' }).check();
   await expect(page.getByRole('link', { name: 'Download 7 chosen' })).toBeVisible();
@@ -104,7 +106,7 @@ for (const role of Object.keys(demoMembers) as (keyof typeof demoMembers)[]) {
     await expect(page.getByRole('region', { name: 'Needs you' })).toHaveCount(submits ? 1 : 0);
     await expectAccessible(page);
     await open(page, '/batches');
-    await page.getByRole('link', { name: 'Biaryls for the topcoat' }).click();
+    await page.getByRole('link', { name: 'Biaryls for the topcoat', exact: true }).click();
     await waitUntilDone(page);
     await expect(page.getByRole('button', { name: /^Run \d+ again/ })).toHaveCount(steers ? 1 : 0);
     await expect(page.getByRole('link', { name: 'Download bundle' })).toBeVisible();

@@ -6,7 +6,7 @@ import { expectAccessible, open, signInAs } from '../support/pages';
 /** Opens the demo's butadiene, whose batch is computed when the product starts for the first time. */
 async function openButadiene(page: Page): Promise<Locator> {
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
   await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
     timeout: 240_000,
   });

@@ -6,7 +6,7 @@ import { expectAccessible, open, signInAs } from '../support/pages';
 /** Opens the page of a molecule of the demo when its batch is computed; returns its path. */
 async function openMolecule(page: Page, name: string): Promise<string> {
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
   await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
     timeout: 240_000,
   });
@@ -19,7 +19,7 @@ async function openMolecule(page: Page, name: string): Promise<string> {
 test('a reader finds molecules by name, by SMILES and by a drawn structure', async ({ page }) => {
   await signInAs(page, 'reader');
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Search' }).click();
+  await page.getByRole('link', { name: 'Search', exact: true }).click();
   await expectAccessible(page);
   await page.getByLabel('Name or SMILES').fill('isopr');
   await page.getByRole('button', { name: 'Search' }).click();
@@ -94,9 +94,9 @@ test('a chemist writes to the lead, who sees it at once, answers and resolves', 
   await expect(thread.getByText('It is.')).toBeVisible();
 
   await open(lead, '/notes');
-  await expect(lead.getByRole('link', { name: 'isoprene' })).toBeVisible();
+  await expect(lead.getByRole('link', { name: 'isoprene', exact: true })).toBeVisible();
   await expectAccessible(lead);
-  await lead.getByRole('link', { name: 'isoprene' }).click();
+  await lead.getByRole('link', { name: 'isoprene', exact: true }).click();
   await lead.getByRole('button', { name: 'Resolve' }).click();
   await expect(page.getByText('1 resolved thread')).toBeVisible();
   await expect(page.getByText('Nothing is open here')).toBeVisible();
@@ -145,7 +145,7 @@ test('profiles are compared, sorted, downloaded and shared by their address', as
 test('a report fits A4 and Letter paper', async ({ page }) => {
   await signInAs(page, 'reader');
   await openMolecule(page, 'isoprene');
-  await page.getByRole('link', { name: 'Report' }).click();
+  await page.getByRole('link', { name: 'Report', exact: true }).click();
   await expect(page.getByRole('heading', { name: 'Methods' })).toBeVisible();
   for (const text of ['Turn about C2–C4', 'Conformers', 'Literature', 'Cautions', 'seed 1']) {
     await expect(page.getByText(text).first()).toBeVisible();

@@ -12,7 +12,7 @@ const section = (page: Page, name: string | RegExp) =>
 
 async function openDienes(page: Page): Promise<void> {
   await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer' }).click();
+  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
   await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
     timeout: 240_000,
   });
@@ -21,7 +21,7 @@ async function openDienes(page: Page): Promise<void> {
 test('a chemist compares the dienes of a batch and takes the table', async ({ page }) => {
   await signInAs(page, 'chemist');
   await openDienes(page);
-  await page.getByRole('link', { name: 'Compare conjugation' }).click();
+  await page.getByRole('link', { name: 'Compare conjugation', exact: true }).click();
   const table = page.getByRole('table', { name: 'Conjugated bonds of the batch' });
   await expect(table.getByRole('row')).toHaveCount(1 + 7);
   await expect(table.getByRole('img', { name: /of isoprene/ })).toBeVisible();
@@ -49,7 +49,7 @@ test('a chemist lays conformers over one another and reads s-cis beside s-trans'
 }) => {
   await signInAs(page, 'chemist');
   await openDienes(page);
-  await page.getByRole('link', { name: 'isoprene' }).click();
+  await page.getByRole('link', { name: 'isoprene', exact: true }).click();
   const conformers = section(page, 'Conformers');
   await conformers.getByRole('button', { name: /^Show the lowest/ }).click();
   const shown = conformers.getByRole('list', { name: 'Conformers in 3-D' });
@@ -117,7 +117,7 @@ test('a modeler maps two bonds of an uploaded geometry and reads its strain', as
   await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
     timeout: 240_000,
   });
-  await page.getByRole('link', { name: 'gauche butane' }).click();
+  await page.getByRole('link', { name: 'gauche butane', exact: true }).click();
 
   const map = section(page, /^Map of/);
   await expect(map.getByText(/minima; the lowest, A, is /)).toBeVisible();

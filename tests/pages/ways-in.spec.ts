@@ -26,10 +26,10 @@ test('the geometries of an SDF are measured for their strain', async ({ page }) 
   await compute(page);
   await waitUntilDone(page);
   const batch = page.url();
-  await page.getByRole('link', { name: 'gauche butane' }).click();
+  await page.getByRole('link', { name: 'gauche butane', exact: true }).click();
   await expect(page.getByText(/geometry is strained by 0[.]8 kcal\/mol/)).toBeVisible();
   await open(page, batch);
-  await page.getByRole('link', { name: 'anti butane' }).click();
+  await page.getByRole('link', { name: 'anti butane', exact: true }).click();
   await expect(page.getByText(/geometry is strained by 0[.]0 kcal\/mol/)).toBeVisible();
 });
 

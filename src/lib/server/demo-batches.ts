@@ -1,9 +1,11 @@
-/** The demo's two batches; like everybody's, they are computed by the worker. */
-import { planSchema, readingSchema } from '../domain/submission';
+/** The demo's batches; like everybody's, they are computed by the worker. */
+import { planSchema, readingSchema, type ChosenBonds } from '../domain/submission';
 import { db } from './db';
 import { batches } from './db/schema';
 import { eq } from 'drizzle-orm';
-import { readUpload } from './drafts';
+import { listRows } from './batches';
+import { packedBenzanilide } from './demo-structures';
+import { chooseBonds, readUpload, type DraftOptions } from './drafts';
 import type { Member } from './member';
 import { submit } from './submission';
 
@@ -33,24 +35,42 @@ const plan = planSchema.parse({
   conjugation: {},
 });
 
+/** What a given geometry is asked: its strain, and how its two rings turn together. */
+const posePlan = planSchema.parse({ strain: {}, maps: { step: 30 } });
+/** Ring to nitrogen, and ring to carbonyl carbon. */
+const POSE_BONDS: ChosenBonds = [
+  [2, 3],
+  [1, 9],
+];
+
 async function* bytesOf(text: string): AsyncGenerator<Uint8Array> {
   yield new TextEncoder().encode(text);
+}
+
+/** Reads one of the demo's texts into a draft. */
+function read(
+  member: Member,
+  name: string,
+  text: string,
+  options: Pick<DraftOptions, 'source' | 'format'>,
+): Promise<string> {
+  const draft = { name, reading: readingSchema.parse({}), ...options };
+  return readUpload(member, draft, bytesOf(text), () => undefined);
+}
+
+async function submitPose(member: Member): Promise<void> {
+  const options = { source: 'upload', format: 'mol' } as const;
+  const draft = await read(member, 'Benzanilide, as packed', packedBenzanilide, options);
+  const { rows } = await listRows(member, draft, 1, 1);
+  await chooseBonds(member, draft, rows[0].id, { purpose: 'map', bonds: POSE_BONDS });
+  await submit(member, draft, posePlan);
 }
 
 /** Submits the demo's batches as a member of its team, once. */
 export async function submitDemoBatches(member: Member): Promise<void> {
   if ((await db.$count(batches, eq(batches.teamId, member.teamId))) > 0) return;
-  for (const [name, text] of [
-    ['Dienes for the primer', dienes],
-    ['Biaryls for the topcoat', biaryls],
-  ]) {
-    const options = {
-      name,
-      source: 'paste',
-      format: 'smi',
-      reading: readingSchema.parse({}),
-    } as const;
-    const draft = await readUpload(member, options, bytesOf(text), () => undefined);
-    await submit(member, draft, plan);
-  }
+  const options = { source: 'paste', format: 'smi' } as const;
+  await submit(member, await read(member, 'Dienes for the primer', dienes, options), plan);
+  await submit(member, await read(member, 'Biaryls for the topcoat', biaryls, options), plan);
+  await submitPose(member);
 }
