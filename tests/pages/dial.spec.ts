@@ -78,22 +78,22 @@ test('temperature and unit change every number at once, and the unit is remember
   await expect(sentence).toContainText('at 227 °C');
   expect(Number(await share())).toBeLessThan(cold);
 
-  await page.getByRole('button', { name: 'kJ/mol' }).click();
+  await page.getByRole('button', { name: 'kJ/mol', exact: true }).click();
   await expect(sentence).toContainText('kJ/mol over gauche');
-  await expect(page.getByRole('button', { name: 'kJ/mol' })).toHaveAttribute(
+  await expect(page.getByRole('button', { name: 'kJ/mol', exact: true })).toHaveAttribute(
     'aria-pressed',
     'true',
   );
   const answered = page.waitForResponse((response) => response.url().endsWith('/reading'));
-  await page.getByRole('button', { name: 'kcal/mol' }).click();
+  await page.getByRole('button', { name: 'kcal/mol', exact: true }).click();
   expect((await answered).status()).toBe(204);
   const answeredAgain = page.waitForResponse((response) => response.url().endsWith('/reading'));
-  await page.getByRole('button', { name: 'kJ/mol' }).click();
+  await page.getByRole('button', { name: 'kJ/mol', exact: true }).click();
   expect((await answeredAgain).status()).toBe(204);
   await page.reload();
   await page.locator('html[data-alive]').waitFor();
   await expect(sentence).toContainText('kJ/mol over gauche');
-  await page.getByRole('button', { name: 'kcal/mol' }).click();
+  await page.getByRole('button', { name: 'kcal/mol', exact: true }).click();
 });
 
 test('the dial is saved as a picture that stands alone', async ({ page }) => {
