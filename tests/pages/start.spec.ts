@@ -82,7 +82,11 @@ test('a second start finds the first, and Ctrl-C ends everything', async () => {
   const first = start();
   const address = `http://127.0.0.1:${env['WINDLASS_PORT']}`;
   try {
-    await until('the product to be ready', async () => first.said().includes('is ready'), 200);
+    const isReady = async () => {
+      if (first.child.exitCode !== null) throw new Error(`The start ended:\n${first.said()}`);
+      return first.said().includes('is ready');
+    };
+    await until('the product to be ready', isReady, 200);
     expect(first.said()).toContain(`Windlass is ready: ${address}`);
     expect((await fetch(`${address}/readyz`)).status).toBe(200);
     const second = start();
@@ -90,7 +94,7 @@ test('a second start finds the first, and Ctrl-C ends everything', async () => {
     expect(second.said()).toMatch(/Already running \(process \d+\)/);
     expect(second.said()).toContain(address);
   } finally {
-    process.kill(-first.child.pid!, 'SIGINT');
+    if (first.child.exitCode === null) process.kill(-first.child.pid!, 'SIGINT');
   }
   expect(await exitCode(first.child)).toBe(0);
   for (const [name, port] of Object.entries(env).filter(([each]) =>
