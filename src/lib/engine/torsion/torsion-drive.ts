@@ -106,7 +106,9 @@ export function checkBent(x: Float64Array, [i, j, k, l]: TorsionAtoms): void {
 function farthestMove(from: Float64Array, to: Float64Array): number {
   let square = 0;
   for (let a = 0; a < from.length; a += 3) {
-    const [dx, dy, dz] = [to[a] - from[a], to[a + 1] - from[a + 1], to[a + 2] - from[a + 2]];
+    const dx = to[a] - from[a];
+    const dy = to[a + 1] - from[a + 1];
+    const dz = to[a + 2] - from[a + 2];
     square = Math.max(square, dx * dx + dy * dy + dz * dz);
   }
   return Math.sqrt(square);
