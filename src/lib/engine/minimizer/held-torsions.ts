@@ -15,6 +15,8 @@ export interface HeldTorsion {
 }
 
 export interface HeldTorsions {
+  /** Takes over the targets of `torsions`; false, and unchanged, where they are not the torsions it was made for. */
+  retarget(torsions: readonly HeldTorsion[]): boolean;
   /** Learns the ways along which the torsions turn most softly; `solve` applies the inverse curvature, in local form. */
   soften(x: Float64Array, frames: LocalFrames, solve: (vector: Float64Array) => void): void;
   /** Takes the position `x` with its frames as the place to step from. */
@@ -52,9 +54,10 @@ export function holdTorsions(torsions: readonly HeldTorsion[], size: number): He
   const couplings = new Float64Array(count * count);
   const amounts = new Float64Array(count);
   const tangent = new Float64Array(size);
+  const targets = Float64Array.from(torsions, ({ target }) => target);
 
   const missing = (x: Float64Array, t: number): number =>
-    turnBetween(toDegrees(torsionDerivative(x, offsets[t], normalsHere[t])), torsions[t].target) /
+    turnBetween(toDegrees(torsionDerivative(x, offsets[t], normalsHere[t])), targets[t]) /
     toDegrees(1);
   const derive = (x: Float64Array, into: readonly Float64Array[]): void => {
     for (let t = 0; t < count; t++) torsionDerivative(x, offsets[t], into[t]);
@@ -82,6 +85,12 @@ export function holdTorsions(torsions: readonly HeldTorsion[], size: number): He
   };
 
   return {
+    retarget: (others) => {
+      if (others.length !== count) return false;
+      for (let t = 0; t < count; t++) if (others[t].atoms !== torsions[t].atoms) return false;
+      for (let t = 0; t < count; t++) targets[t] = others[t].target;
+      return true;
+    },
     soften: (x, frames, solve) => {
       derive(x, normals);
       for (let t = 0; t < count; t++) {

@@ -2,13 +2,12 @@
 import type { Control } from '../control';
 import type { EnergyTerm } from '../energy-term';
 import { dot } from './history';
-import { holdTorsions } from './held-torsions';
 import { searchLine } from './line-search';
 import type { LineSearchResult } from './line-search';
 import type { MinimizeOptions, MinimizeResult } from './minimizer';
 import { separateCoincident } from './separate';
 import { swing } from './swing';
-import { returnWorkspace, takeWorkspace } from './workspace';
+import { heldTorsions, returnWorkspace, takeWorkspace } from './workspace';
 import type { Place, Workspace } from './workspace';
 
 /** Steps after which the curvature is computed anew. */
@@ -50,7 +49,7 @@ async function descend(
 ): Promise<MinimizeResult> {
   const size = x.length;
   const { history, preconditioner, curvatureFrames, direction, localDirection, plain } = workspace;
-  const held = torsions && torsions.length > 0 ? holdTorsions(torsions, size) : null;
+  const held = heldTorsions(workspace, torsions);
   let [current, next] = workspace.places;
   current.x.set(x);
   const found: LineSearchResult = { evaluations: 0, lower: false };

@@ -59,7 +59,9 @@ function planFor(coupled: Uint8Array, atoms: number): EliminationPlan {
 }
 
 function isSame(a: Uint8Array, b: Uint8Array): boolean {
-  return a.length === b.length && a.every((value, n) => value === b[n]);
+  if (a.length !== b.length) return false;
+  for (let n = 0; n < a.length; n++) if (a[n] !== b[n]) return false;
+  return true;
 }
 
 /** Marks the pairs of atoms with a nonzero block; true when there are new ones. */

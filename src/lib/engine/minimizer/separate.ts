@@ -11,8 +11,10 @@ const GOLDEN_ANGLE = Math.PI * (3 - Math.sqrt(5));
 export function separateCoincident(x: Float64Array): void {
   for (let i = 3; i < x.length; i += 3) {
     for (let j = 0; j < i; j += 3) {
-      const d = Math.hypot(x[i] - x[j], x[i + 1] - x[j + 1], x[i + 2] - x[j + 2]);
-      if (d >= COINCIDENT) continue;
+      const dx = x[i] - x[j];
+      const dy = x[i + 1] - x[j + 1];
+      const dz = x[i + 2] - x[j + 2];
+      if (dx * dx + dy * dy + dz * dz >= COINCIDENT * COINCIDENT) continue;
       const height = 1 - (2 * (i / 3) + 1) / (x.length / 3 + 1);
       const width = Math.sqrt(1 - height * height);
       const turn = (GOLDEN_ANGLE * i) / 3;

@@ -3,6 +3,8 @@
  * as long as a third of the steps; so those of the minimization that ended last are handed to the next one of the same molecule.
  */
 import type { Skeleton } from '../molecule/skeleton';
+import { holdTorsions } from './held-torsions';
+import type { HeldTorsion, HeldTorsions } from './held-torsions';
 import { createHistory } from './history';
 import type { History } from './history';
 import type { Point } from './line-search';
@@ -23,6 +25,8 @@ export interface Workspace {
   readonly skeleton: Skeleton | undefined;
   readonly history: History;
   readonly preconditioner: Preconditioner;
+  /** Of the minimization that held torsions last; ask `heldTorsions` for it. */
+  held: HeldTorsions | null;
   readonly places: readonly [Place, Place];
   /** Where the curvature was computed: it turns with the bonds like everything remembered. */
   readonly curvatureFrames: LocalFrames;
@@ -53,6 +57,16 @@ export function returnWorkspace(workspace: Workspace): void {
   spare = workspace;
 }
 
+/** What holds these torsions in place; null where there are none. The points of a scan hold the same ones at other angles. */
+export function heldTorsions(
+  workspace: Workspace,
+  torsions: readonly HeldTorsion[] | undefined,
+): HeldTorsions | null {
+  if (!torsions || torsions.length === 0) return null;
+  if (!workspace.held?.retarget(torsions)) workspace.held = holdTorsions(torsions, workspace.size);
+  return workspace.held;
+}
+
 function create(size: number, skeleton: Skeleton | undefined): Workspace {
   const place = (): Place => ({
     x: new Float64Array(size),
@@ -66,6 +80,7 @@ function create(size: number, skeleton: Skeleton | undefined): Workspace {
     skeleton,
     history: createHistory(size, MEMORY),
     preconditioner: createPreconditioner(size),
+    held: null,
     places: [place(), place()],
     curvatureFrames: createFrames(skeleton),
     direction: new Float64Array(size),

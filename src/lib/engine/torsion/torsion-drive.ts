@@ -59,6 +59,8 @@ export function createTorsionDrive(
 
   const push = createSoftKick(forceField.curvature, 3 * molecule.atomCount, 1);
 
+  const turned = new Float64Array(3 * molecule.atomCount);
+
   const measure = (x: Float64Array): number[] =>
     torsions.map(([i, j, k, l]) => torsion(x, i, j, k, l));
   const turnTo = (x: Float64Array, angles: readonly number[]): void => {
@@ -75,11 +77,13 @@ export function createTorsionDrive(
   ): Promise<HeldGeometry> => {
     const x = start.slice();
     turnTo(x, angles);
-    const turned = x.slice();
     const { energy, curvature, skeleton } = forceField;
     const held = torsions.map((atoms, t) => ({ atoms, target: angles[t] }));
     const options = { gradientRms, maxEvaluations, curvature, skeleton, torsions: held };
     const result = await minimize(energy, x, options, control);
+    // Turned again rather than kept: a copy for each point would cost more than a turn.
+    turned.set(start);
+    turnTo(turned, angles);
     if (!result.converged || farthestMove(turned, x) > STILL) return { coordinates: x, ...result };
     // Nothing moved: the start may sit on a saddle, as by symmetry it often does, and no gradient would tell.
     const [pushed] = push(x);
@@ -106,7 +110,9 @@ export function checkBent(x: Float64Array, [i, j, k, l]: TorsionAtoms): void {
 function farthestMove(from: Float64Array, to: Float64Array): number {
   let square = 0;
   for (let a = 0; a < from.length; a += 3) {
-    const [dx, dy, dz] = [to[a] - from[a], to[a + 1] - from[a + 1], to[a + 2] - from[a + 2]];
+    const dx = to[a] - from[a];
+    const dy = to[a + 1] - from[a + 1];
+    const dz = to[a + 2] - from[a + 2];
     square = Math.max(square, dx * dx + dy * dy + dz * dz);
   }
   return Math.sqrt(square);
