@@ -4,6 +4,7 @@ import { energyColor } from './energy-scale';
 import type { MapEnergies } from './fine-grid';
 import { layMap } from './map-layout';
 import { linearScale } from './scale';
+import { escapeText } from './svg-text';
 
 export interface PlottedMap extends MapEnergies {
   readonly title: string;
@@ -18,12 +19,6 @@ const TOP = 44;
 const RIGHT = 110;
 const BOTTOM = 60;
 const TICKS = [-180, -120, -60, 0, 60, 120, 180];
-
-const escape = (text: string): string =>
-  text.replace(
-    /[&<>"]/g,
-    (sign) => ({ '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' })[sign]!,
-  );
 
 /** Draws a map in kcal/mol with its contours, its minima by letter and its scale. */
 export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {
@@ -40,9 +35,9 @@ export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {
   });
   return [
     `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${height}" viewBox="0 0 ${width} ${height}" font-family="Rubik, sans-serif" font-size="12" fill="#16242b">`,
-    `<title>${escape(title)}</title>`,
+    `<title>${escapeText(title)}</title>`,
     `<rect width="${width}" height="${height}" fill="#ffffff"/>`,
-    `<text x="${LEFT}" y="24" font-size="15" font-weight="600">${escape(title)}</text>`,
+    `<text x="${LEFT}" y="24" font-size="15" font-weight="600">${escapeText(title)}</text>`,
     `<g transform="translate(${LEFT} ${TOP})">`,
     ...bands.map(({ share, path }) => `<path d="${path}" fill="${energyColor(share, 'light')}"/>`),
     ...contours.map(
@@ -68,8 +63,8 @@ export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {
         `<text x="${x(tick)}" y="${SIZE + 18}" text-anchor="middle">${tick}°</text>` +
         `<text x="-8" y="${SIZE - x(tick) + 4}" text-anchor="end">${tick}°</text>`,
     ),
-    `<text x="${SIZE / 2}" y="${SIZE + 44}" text-anchor="middle">${escape(axes[0])} / degrees</text>`,
-    `<text transform="translate(-54 ${SIZE / 2}) rotate(-90)" text-anchor="middle">${escape(axes[1])} / degrees</text>`,
+    `<text x="${SIZE / 2}" y="${SIZE + 44}" text-anchor="middle">${escapeText(axes[0])} / degrees</text>`,
+    `<text transform="translate(-54 ${SIZE / 2}) rotate(-90)" text-anchor="middle">${escapeText(axes[1])} / degrees</text>`,
     ...legend,
     `<text x="${SIZE + 16}" y="${SIZE - 18 * bands.length - 10}">kcal/mol</text>`,
     '</g>',

@@ -1,5 +1,6 @@
 /** An energy profile as a stand-alone SVG document, for bundles and downloads. */
 import { linearScale, roundTicks } from './scale';
+import { escapeText } from './svg-text';
 
 export interface PlottedProfile {
   readonly title: string;
@@ -17,11 +18,6 @@ const WIDTH = 640;
 const HEIGHT = 400;
 const MARGIN = { left: 64, right: 20, top: 40, bottom: 56 };
 
-const escape = (text: string): string =>
-  text.replace(
-    /[&<>"]/g,
-    (sign) => ({ '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' })[sign]!,
-  );
 const round = (value: number): string => value.toFixed(1);
 
 /** Draws a profile with axes in degrees and kcal/mol, and its stationary points by name. */
@@ -48,14 +44,14 @@ export function profilePlot({ title, points, stationary }: PlottedProfile): stri
     const below = kind === 'minimum';
     return (
       `<circle cx="${round(x(angle))}" cy="${round(y(relative))}" r="4" fill="${below ? '#0b6e6e' : '#b83a24'}"/>` +
-      `<text x="${round(Math.min(Math.max(x(angle), MARGIN.left + 30), WIDTH - MARGIN.right - 30))}" y="${round(y(relative) - 10)}" text-anchor="middle" font-size="11">${escape(label)}</text>`
+      `<text x="${round(Math.min(Math.max(x(angle), MARGIN.left + 30), WIDTH - MARGIN.right - 30))}" y="${round(y(relative) - 10)}" text-anchor="middle" font-size="11">${escapeText(label)}</text>`
     );
   });
   return [
     `<svg xmlns="http://www.w3.org/2000/svg" width="${WIDTH}" height="${HEIGHT}" viewBox="0 0 ${WIDTH} ${HEIGHT}" font-family="Rubik, sans-serif" font-size="13" fill="#16242b">`,
-    `<title>${escape(title)}</title>`,
+    `<title>${escapeText(title)}</title>`,
     `<rect width="${WIDTH}" height="${HEIGHT}" fill="#ffffff"/>`,
-    `<text x="${MARGIN.left}" y="22" font-size="15" font-weight="600">${escape(title)}</text>`,
+    `<text x="${MARGIN.left}" y="22" font-size="15" font-weight="600">${escapeText(title)}</text>`,
     ...axes,
     `<text x="${(MARGIN.left + WIDTH - MARGIN.right) / 2}" y="${HEIGHT - 14}" text-anchor="middle">Torsion angle / degrees</text>`,
     `<text transform="translate(18 ${(MARGIN.top + HEIGHT - MARGIN.bottom) / 2}) rotate(-90)" text-anchor="middle">Relative energy / kcal/mol</text>`,
