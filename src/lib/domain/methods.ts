@@ -28,6 +28,16 @@ const SENTENCES: Readonly<Record<string, string>> = {
     'Strain of given geometries was measured after relaxing hydrogens and then all atoms within a flat-bottomed tether, as energy above the lowest conformer found; the strain of single torsions was read from profiles of fragments.',
 };
 
+/** How the files of a bundle are computed anew, in Markdown. */
+export const COMPUTE_AGAIN = `## Computing it again
+
+\`requests.jsonl\` holds a line for every answer, in the order of the manifest: the structure and the settings that the answer rests on. In a clone of Windlass of the same version
+
+    npm run --silent compute -- --lines < requests.jsonl
+
+writes the answers again, a line each, with the same numbers.
+`;
+
 /** A text in Markdown, ready to paste: what was done, the literature, and how far to trust it. */
 export function methodsText({ engineVersion, models, kinds }: MethodFacts): string {
   const sentences = kinds.flatMap((kind) => SENTENCES[kind] ?? []);

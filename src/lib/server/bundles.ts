@@ -5,7 +5,7 @@ import { ZipArchive } from 'archiver';
 import { and, asc, eq, gt, inArray, isNotNull } from 'drizzle-orm';
 import { bundleSchemaText } from '../domain/bundle-schema';
 import { createNamer } from '../domain/file-names';
-import { methodsText } from '../domain/methods';
+import { COMPUTE_AGAIN, methodsText } from '../domain/methods';
 import { ENGINE_VERSION } from '../engine';
 import { readAnswers, resultIdsOf, type Answer } from './answers';
 import * as batches from './batches';
@@ -131,6 +131,7 @@ async function fill(
 ): Promise<void> {
   const sums: Record<string, string> = {};
   const answers: ManifestAnswer[] = [];
+  const requests: string[] = [];
   const nameFor = createNamer();
   const add = async ({ path, content }: BundleFile): Promise<void> => {
     const bytes = Buffer.from(content, 'utf8');
@@ -160,21 +161,31 @@ async function fill(
         settings,
       })),
     );
+    requests.push(...found.map((answer) => requestLine(row.molecule, answer)));
   }
   const unique = (values: readonly string[]): string[] => [...new Set(values)].sort();
   await add({
     path: 'methods.md',
-    content: methodsText({
+    content: `${methodsText({
       engineVersion:
         unique(answers.map((answer) => answer.engineVersion)).join(', ') || ENGINE_VERSION,
       models: unique(answers.map((answer) => answer.model)),
       kinds: unique(answers.map((answer) => answer.kind)),
-    }),
+    })}\n${COMPUTE_AGAIN}`,
   });
+  await add({ path: 'requests.jsonl', content: requests.join('') });
   await add({ path: 'answer.schema.json', content: bundleSchemaText() });
   const manifest = { name, madeBy: `Windlass ${ENGINE_VERSION}`, answers, sha256: sums };
   archive.append(`${JSON.stringify(manifest, null, 2)}\n`, { name: 'manifest.json' });
   await archive.finalize();
+}
+
+/** What the command line is asked to compute an answer again: the very structure and settings it rests on. */
+function requestLine(
+  { format, structure }: BundledRow['molecule'],
+  { kind, settings }: Answer,
+): string {
+  return `${JSON.stringify({ molecule: { [format]: structure }, task: { kind, ...settings } })}\n`;
 }
 
 async function answersOf(
