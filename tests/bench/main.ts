@@ -1,9 +1,9 @@
 /**
  * The bench: how fast and how lean the engine is beside openchemlib and, where installed, RDKit, in the same run;
- * and how quickly the pages of a large team answer.
+ * how quickly the pages of a large team answer, and how smoothly a molecule turns.
  *
  *     npm run bench                          every section
- *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, pages, search-page
+ *     npm run bench -- minimization scan     some of: minimization, scan, search, memory, pages, search-page, turning
  *     npm run bench -- --record              keeps the report in tests/bench/results
  */
 import { mkdirSync, writeFileSync } from 'node:fs';
@@ -17,6 +17,7 @@ import { hasRdkit } from './rdkit';
 import { scanSection } from './scan';
 import { searchSection } from './search';
 import { searchPageSection } from './search-page';
+import { turningSection } from './turning';
 
 const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   minimization: minimizationSection,
@@ -25,6 +26,7 @@ const sections: Record<string, (rdkit: boolean) => Promise<string> | string> = {
   memory: memorySection,
   pages: pagesSection,
   'search-page': searchPageSection,
+  turning: turningSection,
 };
 
 const chosen = process.argv.slice(2).filter((argument) => argument !== '--record');
