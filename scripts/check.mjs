@@ -1,5 +1,5 @@
 /** Runs the static checks and says which passed: format, lint, types, and the doors between the rooms. */
-import { spawnSync } from 'node:child_process';
+import { spawn, spawnSync } from 'node:child_process';
 import { fileURLToPath } from 'node:url';
 import { projectRoot } from './folders.mjs';
 
@@ -24,23 +24,38 @@ const checks = [
   },
 ];
 
-/** Runs every check, prints a line for each, and returns how many passed and failed. */
-export function runChecks() {
+/** Runs one check and keeps what it says until it has ended, so that checks side by side do not mix their lines. */
+function runCheck({ name, command }) {
+  return new Promise((resolve) => {
+    const child = spawn('npx', ['--no-install', ...command], {
+      cwd: projectRoot,
+      stdio: ['ignore', 'pipe', 'pipe'],
+    });
+    const said = [];
+    for (const stream of [child.stdout, child.stderr])
+      stream.on('data', (chunk) => said.push(chunk));
+    const end = (ok) => {
+      process.stdout.write(Buffer.concat(said));
+      console.log(`${ok ? 'ok    ' : 'FAILED'} ${name}`);
+      resolve(ok);
+    };
+    child.once('error', (error) => {
+      said.push(Buffer.from(`${error.message}\n`));
+      end(false);
+    });
+    child.once('close', (status) => end(status === 0));
+  });
+}
+
+/** Runs every check, side by side, prints a line for each, and returns how many passed and failed. */
+export async function runChecks() {
   // Writes the types of the routes, which the checks read.
   spawnSync('npx', ['--no-install', 'svelte-kit', 'sync'], { cwd: projectRoot, stdio: 'inherit' });
-  const counts = { passed: 0, failed: 0 };
-  for (const { name, command } of checks) {
-    const { status } = spawnSync('npx', ['--no-install', ...command], {
-      cwd: projectRoot,
-      stdio: 'inherit',
-    });
-    console.log(`${status === 0 ? 'ok    ' : 'FAILED'} ${name}`);
-    if (status === 0) counts.passed += 1;
-    else counts.failed += 1;
-  }
-  return counts;
+  const results = await Promise.all(checks.map(runCheck));
+  const passed = results.filter(Boolean).length;
+  return { passed, failed: results.length - passed };
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
-  process.exitCode = runChecks().failed === 0 ? 0 : 1;
+  process.exitCode = (await runChecks()).failed === 0 ? 0 : 1;
 }

@@ -73,7 +73,7 @@ await installPackages();
 installPostgres();
 installChromium();
 const results = [
-  { ...runChecks(), skipped: 0 },
+  { ...(await runChecks()), skipped: 0 },
   runRunner(vitest(files)),
   hasPageTests ? runRunner(playwright(files)) : { passed: 0, failed: 0, skipped: 0 },
 ];

@@ -1,6 +1,6 @@
 /** What the page tests share: how to sign in, and the check of a page's accessibility. */
 import { AxeBuilder } from '@axe-core/playwright';
-import { expect, type Page } from '@playwright/test';
+import { expect, type BrowserContext, type Page } from '@playwright/test';
 
 function setting(name: string): string {
   const value = process.env[name];
@@ -35,8 +35,20 @@ export async function signIn(page: Page, email: string, password: string): Promi
   await page.waitForURL('**/desk');
 }
 
-export function signInAs(page: Page, role: keyof typeof demoMembers): Promise<void> {
-  return signIn(page, demoMembers[role], demoPassword());
+type Cookies = Awaited<ReturnType<BrowserContext['cookies']>>;
+/** Sign-ins of the demo's members, kept from test to test: the form has tests of its own. */
+const signedIn = new Map<string, Cookies>();
+
+/** Opens the desk as a member of the demo, in a sign-in that may be shared with other tests of the file. */
+export async function signInAs(page: Page, role: keyof typeof demoMembers): Promise<void> {
+  const kept = signedIn.get(role);
+  if (kept) {
+    await page.context().addCookies(kept);
+    await open(page, '/desk');
+    if (new URL(page.url()).pathname === '/desk') return;
+  }
+  await signIn(page, demoMembers[role], demoPassword());
+  signedIn.set(role, await page.context().cookies());
 }
 
 /** Pastes molecules, one on each line, and has them read into a preview. */
