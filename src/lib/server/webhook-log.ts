@@ -6,6 +6,7 @@ import { db } from './db';
 import { webhookDeliveries, webhooks } from './db/schema';
 import { recordEvent } from './events';
 import { notFound, require, type Member } from './member';
+import { limitSendingByHand } from './webhook-messages';
 import { enqueueDeliveries } from './webhook-queue';
 
 /** Where the log goes on: after the delivery that was made at this time with this id. */
@@ -54,6 +55,7 @@ export async function listDeliveries(
 /** Sends a delivery again at once, with its old number, so that receivers can tell that they have it already. */
 export async function redeliver(member: Member, deliveryId: string): Promise<void> {
   require(member, 'manage webhooks');
+  await limitSendingByHand(member);
   await db.transaction(async (tx) => {
     const [found] = await tx
       .select({

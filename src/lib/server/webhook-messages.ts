@@ -1,10 +1,19 @@
 /** Deliveries before they are sent: written and put into the queue in the caller's transaction. */
 import { randomUUID } from 'node:crypto';
+import { error } from '@sveltejs/kit';
 import { and, eq, isNull } from 'drizzle-orm';
 import type { BatchFinished, WebhookTest } from '../domain/webhooks';
 import type { Executor } from './db';
 import { webhookDeliveries } from './db/schema';
+import type { InTeam } from './member';
+import { limitRate } from './rate-limits';
 import { enqueueDeliveries } from './webhook-queue';
+
+/** Throws 429 where a team sends so much by hand that a receiver may suffer. */
+export async function limitSendingByHand({ teamId }: InTeam): Promise<void> {
+  const wait = await limitRate(['send to webhooks by hand', teamId]);
+  if (wait !== null) error(429, `That was a lot to send by hand. Wait ${wait} seconds.`);
+}
 
 /** A message without the number of its delivery. */
 export type Message = Omit<BatchFinished, 'delivery'> | Omit<WebhookTest, 'delivery'>;

@@ -9,7 +9,7 @@ import { notFound, require, type Member } from './member';
 import { seal, unseal } from './sealing';
 import { makeSecret } from './secrets';
 import { checkAddress, type Resolve } from './webhook-addresses';
-import { dropWaiting, queueDelivery } from './webhook-messages';
+import { dropWaiting, limitSendingByHand, queueDelivery } from './webhook-messages';
 
 /** Begins every secret, so that one that leaked into a file is found by looking for it. */
 const PREFIX = 'windlass_hook_';
@@ -145,6 +145,7 @@ export async function remove(member: Member, webhookId: string): Promise<void> {
 /** Sends a test, also to a webhook that is off; answers the delivery's id. */
 export async function sendTest(member: Member, webhookId: string): Promise<string> {
   require(member, 'manage webhooks');
+  await limitSendingByHand(member);
   return db.transaction(async (tx) => {
     const [found] = await tx
       .select({ id: webhooks.id, team: { id: teams.id, name: teams.name } })
