@@ -102,7 +102,10 @@ describe('a delivery', () => {
     const waits: number[] = [];
     for (let n = 0; n <= RETRY_WAITS.length; n += 1) {
       expect(await attempt(lead, id)).toBe('failed');
-      const [{ attempts, nextAt, attemptedAt, status: code, reason }] = await deliveriesOf(lead, id);
+      const [{ attempts, nextAt, attemptedAt, status: code, reason }] = await deliveriesOf(
+        lead,
+        id,
+      );
       expect({ attempts, code }).toEqual({ attempts: n + 1, code: 500 });
       expect(reason).toContain('The answer was 500');
       if (nextAt) waits.push((nextAt.getTime() - attemptedAt!.getTime()) / 1000);
@@ -404,7 +407,10 @@ describe('a webhook', () => {
     const { id, secret } = await add(lead);
     const [row] = await db.select().from(rows).where(eq(rows.id, id));
     expect(JSON.stringify(row)).not.toContain(secret);
-    await db.update(rows).set({ secret: `${row.secret.slice(0, -4)}AAAA` }).where(eq(rows.id, id));
+    await db
+      .update(rows)
+      .set({ secret: `${row.secret.slice(0, -4)}AAAA` })
+      .where(eq(rows.id, id));
     await webhooks.sendTest(lead, id);
     expect(await attempt(lead, id)).toBe('failed');
     expect((await deliveriesOf(lead, id))[0].reason).toContain('AUTH_SECRET');

@@ -7,7 +7,10 @@ import { webhookEvents, webhookHeaders } from './webhooks';
 interface DescribedEvent {
   parameters: { name: string }[];
   requestBody: {
-    content: Record<string, { schema: { properties: Record<string, unknown>; required: string[] } }>;
+    content: Record<
+      string,
+      { schema: { properties: Record<string, unknown>; required: string[] } }
+    >;
   };
 }
 
@@ -25,7 +28,9 @@ function routed(): string[] {
     .filter((file) => file.endsWith('+server.ts'))
     .flatMap((file) => {
       const path = `/${file.replace(/\/\+server\.ts$/, '')}`.replace(/\[(\w+)\]/g, '{$1}');
-      const methods = readFileSync(`${root}${file}`, 'utf8').matchAll(/export const (GET|POST|DELETE)/g);
+      const methods = readFileSync(`${root}${file}`, 'utf8').matchAll(
+        /export const (GET|POST|DELETE)/g,
+      );
       return [...methods].map(([, method]) => `${method.toLowerCase()} ${path}`);
     });
 }

@@ -35,18 +35,17 @@ function parametersOf({ path, query, takesKey }: Operation): Json[] {
     required: false,
     schema: json(schema as z.ZodType, 'input'),
   }));
-  const key =
-    takesKey
-      ? [
-          {
-            name: 'Idempotency-Key',
-            in: 'header',
-            required: false,
-            description: 'Any text of up to 200 characters, kept for a day',
-            schema: { type: 'string', maxLength: 200 },
-          },
-        ]
-      : [];
+  const key = takesKey
+    ? [
+        {
+          name: 'Idempotency-Key',
+          in: 'header',
+          required: false,
+          description: 'Any text of up to 200 characters, kept for a day',
+          schema: { type: 'string', maxLength: 200 },
+        },
+      ]
+    : [];
   return [...inPath, ...inQuery, ...key];
 }
 

@@ -68,9 +68,7 @@ export function failuresByReason() {
       week: count(),
     })
     .from(tasks)
-    .where(
-      and(eq(tasks.state, 'failed'), gt(tasks.finishedAt, sql`now() - interval '7 days'`)),
-    )
+    .where(and(eq(tasks.state, 'failed'), gt(tasks.finishedAt, sql`now() - interval '7 days'`)))
     .groupBy(reasonOf)
     .orderBy(desc(count()), asc(reasonOf));
 }

@@ -82,8 +82,8 @@ describe('checkAddress', () => {
     await expect(
       checkAddress('https://hooks.example/', () => Promise.resolve(['8.8.8.8', '10.0.0.1'])),
     ).rejects.toThrow('private or reserved');
-    await expect(
-      checkAddress('https://hooks.example/', () => Promise.resolve([])),
-    ).rejects.toThrow('no address');
+    await expect(checkAddress('https://hooks.example/', () => Promise.resolve([]))).rejects.toThrow(
+      'no address',
+    );
   });
 });

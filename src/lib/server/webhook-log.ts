@@ -112,7 +112,5 @@ export async function requeueStranded(): Promise<number> {
 export async function forgetOld(): Promise<void> {
   await db
     .delete(webhookDeliveries)
-    .where(
-      lt(webhookDeliveries.createdAt, sql`now() - make_interval(days => ${DELIVERY_DAYS})`),
-    );
+    .where(lt(webhookDeliveries.createdAt, sql`now() - make_interval(days => ${DELIVERY_DAYS})`));
 }

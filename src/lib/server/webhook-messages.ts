@@ -26,9 +26,7 @@ export async function queueDelivery(
 ): Promise<string> {
   const id = randomUUID();
   const body = JSON.stringify({ delivery: id, ...message });
-  await executor
-    .insert(webhookDeliveries)
-    .values({ id, webhookId, event: message.event, body });
+  await executor.insert(webhookDeliveries).values({ id, webhookId, event: message.event, body });
   await enqueueDeliveries(executor, [{ deliveryId: id, attempts: 0 }]);
   return id;
 }

@@ -28,11 +28,7 @@ export interface Attempt {
 }
 
 /** `v1=` and the hex HMAC-SHA256 of "timestamp.body" for each secret, separated by commas. */
-export function signatureOf(
-  secrets: readonly string[],
-  timestamp: number,
-  body: string,
-): string {
+export function signatureOf(secrets: readonly string[], timestamp: number, body: string): string {
   return secrets
     .map((secret) => createHmac('sha256', secret).update(`${timestamp}.${body}`).digest('hex'))
     .map((digest) => `v1=${digest}`)

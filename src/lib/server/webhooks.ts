@@ -33,9 +33,10 @@ export function list(member: Member) {
       isOn: webhooks.isOn,
       failingSince: webhooks.failingSince,
       givenUpAt: webhooks.givenUpAt,
-      previousUntil: sql<Date | null>`case when ${webhooks.previousUntil} > now() then ${webhooks.previousUntil} end`.mapWith(
-        webhooks.previousUntil,
-      ),
+      previousUntil:
+        sql<Date | null>`case when ${webhooks.previousUntil} > now() then ${webhooks.previousUntil} end`.mapWith(
+          webhooks.previousUntil,
+        ),
       createdAt: webhooks.createdAt,
     })
     .from(webhooks)
@@ -107,7 +108,8 @@ export async function switchTo(member: Member, webhookId: string, isOn: boolean)
       .where(own(member, webhookId))
       .returning();
     if (!changed) notFound('webhook');
-    if (!isOn) await dropWaiting(tx, webhookId, 'The webhook was switched off before this was sent.');
+    if (!isOn)
+      await dropWaiting(tx, webhookId, 'The webhook was switched off before this was sent.');
     await record(tx, member, isOn ? 'switch webhook on' : 'switch webhook off', changed);
   });
 }

@@ -58,7 +58,11 @@ export function listWorkers() {
 }
 
 /** Tells a living worker what is wanted of it, as a part of the caller's transaction; false where it is gone. */
-export async function order(executor: Executor, name: string, wanted: WorkerOrder): Promise<boolean> {
+export async function order(
+  executor: Executor,
+  name: string,
+  wanted: WorkerOrder,
+): Promise<boolean> {
   const told = await executor
     .update(workers)
     .set({ wanted })

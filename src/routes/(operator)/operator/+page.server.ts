@@ -73,7 +73,8 @@ export const actions: Actions = {
   requeueReason: async (event) => {
     const operator = whoOperates(event);
     const form = await readForm(event.request, requeueReasonSchema);
-    if (!form.data) return fail(400, { message: 'Only faults of machine or program can be mended so.' });
+    if (!form.data)
+      return fail(400, { message: 'Only faults of machine or program can be mended so.' });
     return { message: requeued(await operatorActions.requeueReason(operator, form.data.reason)) };
   },
 
