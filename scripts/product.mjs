@@ -107,7 +107,8 @@ export function createProduct(settings) {
     const signIns = settings.seed ? readSignIns(await once('seed'), print) : [];
     for (const name of ['web', 'worker']) {
       const mayEnd = name === 'worker';
-      if (!isStopped) keep(superviseProgram({ args: programs[name], env }, { name, print, mayEnd }));
+      if (!isStopped)
+        keep(superviseProgram({ args: programs[name], env }, { name, print, mayEnd }));
     }
     const address = `http://${host === '0.0.0.0' ? '127.0.0.1' : host}:${ports.web}`;
     await waitUntilReady(address);
