@@ -47,10 +47,11 @@ function start({ args, env }, onLine) {
 /**
  * Keeps a Node.js program running until stopped.
  * @param {{ args: string[], env: Record<string, string> }} program
- * @param {{ name: string, print: (name: string, line: string) => void }} options
+ * @param {{ name: string, print: (name: string, line: string) => void, mayEnd?: boolean }} options
+ * A program that `mayEnd` stays down when it ended well, as a worker does that was drained.
  * @returns {{ stop: () => Promise<void> }}
  */
-export function superviseProgram(program, { name, print }) {
+export function superviseProgram(program, { name, print, mayEnd = false }) {
   let child;
   let timer;
   let isStopping = false;
@@ -62,6 +63,10 @@ export function superviseProgram(program, { name, print }) {
       if (isStopping) return;
       // What a crashed child had started must not work on beside its successor.
       signalGroup(child, 'SIGKILL');
+      if (mayEnd && code === 0) {
+        print(name, 'ended well and stays down until the next start');
+        return;
+      }
       if (Date.now() - startedAt > HEALTHY_MS) delay = FIRST_DELAY_MS;
       print(name, `ended with ${signal ?? `code ${code}`}; starting it again in ${delay / 1000} s`);
       timer = setTimeout(run, delay);

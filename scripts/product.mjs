@@ -106,7 +106,9 @@ export function createProduct(settings) {
     await once('migrate');
     const signIns = settings.seed ? readSignIns(await once('seed'), print) : [];
     for (const name of ['web', 'worker']) {
-      if (!isStopped) keep(superviseProgram({ args: programs[name], env }, { name, print }));
+      const mayEnd = name === 'worker';
+      if (!isStopped)
+        keep(superviseProgram({ args: programs[name], env }, { name, print, mayEnd }));
     }
     const address = `http://${host === '0.0.0.0' ? '127.0.0.1' : host}:${ports.web}`;
     await waitUntilReady(address);

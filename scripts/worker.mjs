@@ -17,7 +17,8 @@ const { superviseProgram } = await import('./processes.mjs');
 const { printLine } = await import('./log-lines.mjs');
 const env = { NODE_ENV: 'production', ...process.env };
 const args = [join(folder, 'worker', 'main.js')];
-const worker = superviseProgram({ args, env }, { name: 'worker', print: printLine });
+const options = { name: 'worker', print: printLine, mayEnd: true };
+const worker = superviseProgram({ args, env }, options);
 for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
   process.once(signal, () => void worker.stop().then(() => process.exit(0)));
 }

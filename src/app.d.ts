@@ -16,6 +16,7 @@ declare global {
         readonly email: string;
         readonly name: string;
         readonly energyUnit: EnergyUnit;
+        readonly isOperator: boolean;
       } | null;
       /** The sign-in this request belongs to. */
       sessionId: string | null;

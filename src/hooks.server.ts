@@ -1,6 +1,8 @@
 /** What happens to every request: the right address, who asks, who may enter, headers, and an id for surprises. */
 import {
   error,
+  isHttpError,
+  isRedirect,
   redirect,
   type Handle,
   type HandleServerError,
@@ -15,6 +17,7 @@ import { environment } from '$lib/server/environment';
 import { keepHouse } from '$lib/server/housekeeping';
 import { log } from '$lib/server/log';
 import { closeMail } from '$lib/server/mail';
+import { countRequest, watchProcess } from '$lib/server/metrics';
 import { stopQueue } from '$lib/server/queue';
 import { addHeaders } from '$lib/server/response-headers';
 import * as sessions from '$lib/server/sessions';
@@ -24,11 +27,12 @@ import { forgetCookie, handle as handleAuth, readSessionId } from './auth';
 const origin = new URL(environment.WINDLASS_ORIGIN);
 const LOOPBACK = ['localhost', '127.0.0.1', '[::1]'];
 /** Asked by machines, also while the database is away. */
-const PROBES = ['/healthz', '/readyz'];
+const PROBES = ['/healthz', '/readyz', '/metrics'];
 
 export const init: ServerInit = () => {
   if (building) return;
   registerChemistryResources();
+  watchProcess();
   keepHouse();
   // Open sockets would keep the process from ending.
   process.once('sveltekit:shutdown', () => {
@@ -51,10 +55,19 @@ const settleAddress: Handle = ({ event, resolve }) => {
 
 const finishResponse: Handle = async ({ event, resolve }) => {
   const startedAt = performance.now();
-  const response = await resolve(event);
-  addHeaders(response, event.locals.user !== null);
   const { method } = event.request;
-  const milliseconds = Math.round(performance.now() - startedAt);
+  const count = (status: number) => {
+    const milliseconds = Math.round(performance.now() - startedAt);
+    countRequest({ method, route: event.route.id, status, milliseconds });
+    return milliseconds;
+  };
+  const response = await Promise.resolve(resolve(event)).catch((thrown: unknown) => {
+    // The guards below end a request by throwing.
+    count(isRedirect(thrown) || isHttpError(thrown) ? thrown.status : 500);
+    throw thrown;
+  });
+  addHeaders(response, event.locals.user !== null);
+  const milliseconds = count(response.status);
   log.debug(
     { method, path: event.url.pathname, status: response.status, milliseconds },
     'answered',

@@ -1,28 +1,39 @@
 /** The worker: takes tasks from the queue and performs them until it is told to stop. */
 import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
+import { ENGINE_VERSION } from '../src/lib/engine';
 import { closeDatabase } from '../src/lib/server/db';
 import { log } from '../src/lib/server/log';
+import { closeMail } from '../src/lib/server/mail';
+import { watchProcess } from '../src/lib/server/metrics';
 import { stopQueue, workOnTasks } from '../src/lib/server/queue';
 import { failAbandoned } from '../src/lib/server/tasks';
+import { requeueStranded } from '../src/lib/server/webhook-log';
+import { deliverWebhooks } from './deliveries';
 import { keepFingerprints } from './fingerprints';
+import { showLife } from './life';
 import { hearCancels, performTask } from './perform';
 import { closePool, concurrency } from './pool';
 
-/** How often tasks are looked for whose workers all died. */
+/** How often tasks and deliveries are looked for whose workers all died. */
 const ABANDONED_CHECK_MS = 60_000;
 
 const name = `${hostname()} ${process.pid} ${randomUUID().slice(0, 4)}`;
+watchProcess({ worker: name });
 
 await hearCancels();
-await workOnTasks(concurrency, (taskId, lastTry) => performTask(taskId, name, lastTry));
+const slots = await workOnTasks(concurrency, (taskId, lastTry) =>
+  performTask(taskId, name, lastTry),
+);
+const stopDelivering = await deliverWebhooks();
 const check = setInterval(() => {
-  failAbandoned().catch((error: unknown) =>
-    log.warn({ error }, 'Looking for abandoned tasks failed; it is tried again'),
+  Promise.all([failAbandoned(), requeueStranded()]).catch((error: unknown) =>
+    log.warn({ error }, 'Looking for what was abandoned failed; it is tried again'),
   );
 }, ABANDONED_CHECK_MS);
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
+const leave = await showLife({ name, version: ENGINE_VERSION, concurrency }, slots, endDrained);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
 /** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
@@ -30,8 +41,16 @@ async function stop(): Promise<void> {
   clearInterval(check);
   ending.abort();
   await closePool();
+  await leave();
   await stopQueue();
+  await closeMail();
   await closeDatabase();
+}
+
+/** Ends once nothing runs any more, with exit code 0: supervisors leave it down. */
+async function endDrained(): Promise<void> {
+  await stopDelivering();
+  await stop();
 }
 
 for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => void stop());

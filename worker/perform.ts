@@ -4,6 +4,7 @@ import { environment } from '../src/lib/server/environment';
 import * as results from '../src/lib/server/results';
 import * as tasks from '../src/lib/server/tasks';
 import { listen } from '../src/lib/server/live';
+import { countTask } from '../src/lib/server/metrics';
 import { computeInThread } from './pool';
 
 /** How often a running task shows that it is alive; well under the silence after which it counts as lost. */
@@ -25,7 +26,10 @@ export async function hearCancels(): Promise<void> {
 export async function performTask(taskId: string, worker: string, lastTry: boolean): Promise<void> {
   const task = await tasks.claim(taskId, worker);
   if (!task) return;
-  if (await results.reuseStored(task)) return;
+  if (await results.reuseStored(task)) {
+    countTask(task.kind, 'done');
+    return;
+  }
   const controller = new AbortController();
   running.set(task.id, controller);
   const life = keepAlive(task, controller);
@@ -36,7 +40,7 @@ export async function performTask(taskId: string, worker: string, lastTry: boole
     if (controller.signal.aborted) return;
     log.error({ error, task: task.id, attempt: task.attempt, lastTry }, 'A task could not be run');
     if (lastTry) {
-      await tasks.fail(task, tasks.workerLost);
+      if (await tasks.fail(task, tasks.workerLost)) countTask(task.kind, 'failed');
       return;
     }
     await tasks.release(task);
@@ -52,6 +56,11 @@ async function computeAndStore(
   signal: AbortSignal,
   report: (fraction: number, stage: string) => void,
 ): Promise<void> {
+  const began = performance.now();
+  const since = (engine?: number) => ({
+    task: (performance.now() - began) / 1000,
+    ...(engine === undefined ? {} : { engine }),
+  });
   const budget = environment.WINDLASS_TASK_SECONDS * 1000;
   const limit = AbortSignal.timeout(budget + 60_000);
   const answer = await computeInThread(results.requestOf(task), {
@@ -62,9 +71,13 @@ async function computeAndStore(
     if (!limit.aborted || signal.aborted) throw error;
     return { refused: overTime(budget) };
   });
-  if ('broken' in answer) await tasks.fail(task, internalError(task, answer.broken));
-  else if ('refused' in answer) await tasks.fail(task, answer.refused);
-  else await results.store(task, answer.result);
+  if ('result' in answer) {
+    const engine = answer.result.provenance.seconds;
+    if (await results.store(task, answer.result)) countTask(task.kind, 'done', since(engine));
+    return;
+  }
+  const fault = 'broken' in answer ? internalError(task, answer.broken) : answer.refused;
+  if (await tasks.fail(task, fault)) countTask(task.kind, 'failed', since());
 }
 
 /** Our own code failed on this molecule: trying again would fail again, so it is said and logged instead. */

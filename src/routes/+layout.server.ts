@@ -4,7 +4,7 @@ import type { LayoutServerLoad } from './$types';
 export const load: LayoutServerLoad = ({ locals }) => {
   const { user, membership, memberships } = locals;
   return {
-    user: user && { name: user.name, email: user.email },
+    user: user && { name: user.name, email: user.email, isOperator: user.isOperator },
     energyUnit: user?.energyUnit ?? ('kcal/mol' as const),
     team: membership && {
       id: membership.teamId,

@@ -50,6 +50,19 @@ describe('superviseProgram', () => {
     expect(printed[0]).toBe('web: ended with code 3; starting it again in 0.5 s');
   });
 
+  it('leaves a program down that may end and ended well, but not one that crashed', async () => {
+    const ending = program('process.exit(0);');
+    const child = superviseProgram(ending, { name: 'worker', print, mayEnd: true });
+    await until(() => printed.length > 0);
+    expect(printed).toEqual(['worker: ended well and stays down until the next start']);
+    await child.stop();
+    expect(ending.numbers()).toHaveLength(1);
+    const crashing = program('process.exit(1);');
+    const other = superviseProgram(crashing, { name: 'worker', print, mayEnd: true });
+    await until(() => crashing.numbers().length >= 3);
+    await other.stop();
+  });
+
   it('ends the program and does not start it again', async () => {
     const waiting = program('setInterval(() => undefined, 1000);');
     const child = superviseProgram(waiting, { name: 'web', print });

@@ -35,6 +35,9 @@ export default async function setUp(): Promise<() => Promise<void>> {
       WINDLASS_DEMO_PASSWORD: demoPassword,
       // All tests come from one address.
       WINDLASS_RATE_LIMIT_FACTOR: '1000',
+      // Receivers of webhooks are a part of the tests, on this machine.
+      WINDLASS_WEBHOOK_NETWORKS: '127.0.0.0/8',
+      WINDLASS_WEBHOOK_HTTP: 'on',
     },
     print: (name: string, line: string) => log.write(`${name} | ${line}\n`),
   });

@@ -2,10 +2,22 @@ import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { operations } from './api';
 import { apiDocument } from './api-document';
+import { webhookEvents, webhookHeaders } from './webhooks';
+
+interface DescribedEvent {
+  parameters: { name: string }[];
+  requestBody: {
+    content: Record<
+      string,
+      { schema: { properties: Record<string, unknown>; required: string[] } }
+    >;
+  };
+}
 
 const document = apiDocument('https://windlass.example') as {
   openapi: string;
   paths: Record<string, Record<string, { operationId: string; parameters: { name: string }[] }>>;
+  webhooks: Record<string, { post: DescribedEvent }>;
 };
 
 /** What the routes answer: "get /batches/{id}". */
@@ -16,7 +28,9 @@ function routed(): string[] {
     .filter((file) => file.endsWith('+server.ts'))
     .flatMap((file) => {
       const path = `/${file.replace(/\/\+server\.ts$/, '')}`.replace(/\[(\w+)\]/g, '{$1}');
-      const methods = readFileSync(`${root}${file}`, 'utf8').matchAll(/export const (GET|POST)/g);
+      const methods = readFileSync(`${root}${file}`, 'utf8').matchAll(
+        /export const (GET|POST|DELETE)/g,
+      );
       return [...methods].map(([, method]) => `${method.toLowerCase()} ${path}`);
     });
 }
@@ -39,6 +53,17 @@ describe('the OpenAPI document', () => {
       const inPath = [...path.matchAll(/\{(\w+)\}/g)].map(([, name]) => name);
       const { parameters } = document.paths[path][method];
       expect(parameters.map(({ name }) => name)).toEqual(expect.arrayContaining(inPath));
+    }
+  });
+
+  // OpenAPI 3.1.0, 4.8.1: what the product sends by itself stands under `webhooks`.
+  it('describes every event with the headers and the body that are sent', () => {
+    expect(Object.keys(document.webhooks)).toEqual([...webhookEvents]);
+    for (const [event, { post }] of Object.entries(document.webhooks)) {
+      expect(post.parameters.map(({ name }) => name)).toEqual(Object.values(webhookHeaders));
+      const { properties, required } = post.requestBody.content['application/json'].schema;
+      expect(properties['event']).toEqual({ type: 'string', const: event });
+      expect(required).toEqual(expect.arrayContaining(['delivery', 'event', 'team']));
     }
   });
 

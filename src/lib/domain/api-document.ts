@@ -1,6 +1,13 @@
 /** The OpenAPI 3.1 document of the REST interface, made from the schemas that check its requests and answers. */
 import { z } from 'zod';
 import { operations, problemSchema, type Operation } from './api';
+import {
+  batchFinishedSchema,
+  REPLAY_MINUTES,
+  webhookHeaders,
+  webhookTestSchema,
+  type WebhookEvent,
+} from './webhooks';
 
 type Json = Record<string, unknown>;
 
@@ -14,7 +21,7 @@ const problem = (description: string): Json => ({
   content: { 'application/problem+json': { schema: { $ref: '#/components/schemas/Problem' } } },
 });
 
-function parametersOf({ path, query, method, body }: Operation): Json[] {
+function parametersOf({ path, query, takesKey }: Operation): Json[] {
   const inPath = [...path.matchAll(/\{(\w+)\}/g)].map(([, name]) => ({
     name,
     in: 'path',
@@ -28,18 +35,17 @@ function parametersOf({ path, query, method, body }: Operation): Json[] {
     required: false,
     schema: json(schema as z.ZodType, 'input'),
   }));
-  const key =
-    method === 'post' && body
-      ? [
-          {
-            name: 'Idempotency-Key',
-            in: 'header',
-            required: false,
-            description: 'Any text of up to 200 characters, kept for a day',
-            schema: { type: 'string', maxLength: 200 },
-          },
-        ]
-      : [];
+  const key = takesKey
+    ? [
+        {
+          name: 'Idempotency-Key',
+          in: 'header',
+          required: false,
+          description: 'Any text of up to 200 characters, kept for a day',
+          schema: { type: 'string', maxLength: 200 },
+        },
+      ]
+    : [];
   return [...inPath, ...inQuery, ...key];
 }
 
@@ -48,6 +54,10 @@ function describe(name: string, operation: Operation): Json {
   const content = answer
     ? { 'application/json': { schema: json(answer, 'output') } }
     : { 'application/zip': { schema: { type: 'string', format: 'binary' } } };
+  const good =
+    method === 'delete'
+      ? { '204': { description: 'Done' } }
+      : { [method === 'post' && body ? '201' : '200']: { description: 'Done', content } };
   return {
     operationId: name,
     summary,
@@ -62,7 +72,7 @@ function describe(name: string, operation: Operation): Json {
         }
       : {}),
     responses: {
-      [method === 'post' && body ? '201' : '200']: { description: 'Done', content },
+      ...good,
       ...(method === 'get' && answer
         ? { '304': { description: 'As If-None-Match names it' } }
         : {}),
@@ -73,6 +83,51 @@ function describe(name: string, operation: Operation): Json {
       '429': problem('Too many requests; Retry-After says how long to wait'),
     },
   };
+}
+
+const headersOfWebhooks: Record<keyof typeof webhookHeaders, string> = {
+  event: 'Name of the event',
+  delivery: 'Number of the delivery, as in the body; the same when it is sent again',
+  timestamp: `When it was signed, seconds since 1970; refuse what is older than ${REPLAY_MINUTES} minutes`,
+  signature:
+    'One or two of `v1=` and the hex HMAC-SHA256 of "timestamp.body" with a secret of the webhook, separated by commas',
+};
+
+const messages: Record<WebhookEvent, { summary: string; schema: z.ZodType }> = {
+  'batch.finished': {
+    summary: 'Nothing of a batch waits or runs any more. Sent once for each finish',
+    schema: batchFinishedSchema,
+  },
+  'webhook.test': { summary: 'Sent when a lead asks for it', schema: webhookTestSchema },
+};
+
+/** What Windlass itself posts to the addresses that leads add. */
+function describeWebhooks(): Json {
+  const parameters = Object.entries(webhookHeaders).map(([key, name]) => ({
+    name,
+    in: 'header',
+    required: true,
+    description: headersOfWebhooks[key as keyof typeof webhookHeaders],
+    schema: { type: 'string' },
+  }));
+  return Object.fromEntries(
+    Object.entries(messages).map(([event, { summary, schema }]) => [
+      event,
+      {
+        post: {
+          summary,
+          parameters,
+          requestBody: {
+            required: true,
+            content: { 'application/json': { schema: json(schema, 'output') } },
+          },
+          responses: {
+            '2XX': { description: 'Taken. Anything else is tried again for about a day' },
+          },
+        },
+      },
+    ]),
+  );
 }
 
 /** The document for the product at an address. */
@@ -94,6 +149,7 @@ export function apiDocument(origin: string): Json {
     },
     servers: [{ url: `${origin}/api/v1` }],
     paths,
+    webhooks: describeWebhooks(),
     components: {
       schemas: { Problem: json(problemSchema, 'output') },
       securitySchemes: { token: { type: 'http', scheme: 'bearer' } },

@@ -3,10 +3,21 @@ import { z } from 'zod';
 import { answerSchema } from './bundle-schema';
 import { moleculeSchema } from './compute';
 import { planSchema, readingSchema, remarkSchema, ROW_LIMIT } from './submission';
+import {
+  DELIVERY_DAYS,
+  deliveryAnswerSchema,
+  newWebhookSchema,
+  WEBHOOK_LIMIT,
+  webhookAnswerSchema,
+} from './webhooks';
 
 /** What a token may do; its person's role in the team still counts. */
-export const apiScopes = ['read', 'submit'] as const;
+export const apiScopes = ['read', 'submit', 'webhooks'] as const;
 export type ApiScope = (typeof apiScopes)[number];
+
+/** The scopes of a token that is made for one thing: whatever it does, it may read. */
+export const scopesFor = (scope: ApiScope): readonly ApiScope[] =>
+  scope === 'read' ? ['read'] : ['read', scope];
 
 /** How long a token may be good for, days. */
 export const tokenDays = [7, 30, 90, 365] as const;
@@ -17,7 +28,7 @@ export const newTokenSchema = z.object({
     .trim()
     .min(1, 'Give the token a name, so that you know it again.')
     .max(80, 'Use at most 80 characters.'),
-  /** 'read', or 'submit' for both. */
+  /** What it may do beside reading. */
   scope: z.enum(apiScopes, 'Choose what the token may do.'),
   days: z.coerce
     .number()
@@ -83,14 +94,16 @@ const changed = z.object({ tasks: z.number().int().describe('How many were chang
 
 /** One thing that can be asked, as routes carry it out and the document describes it. */
 export interface Operation {
-  readonly method: 'get' | 'post';
+  readonly method: 'get' | 'post' | 'delete';
   /** Below /api/v1; names in braces are parameters. */
   readonly path: string;
   readonly summary: string;
   readonly scope: ApiScope;
   readonly query?: z.ZodObject;
   readonly body?: z.ZodType;
-  /** Absent where the answer is a zip. */
+  /** True where a repeated request can be recognized by an Idempotency-Key. */
+  readonly takesKey?: true;
+  /** Absent where the answer is a zip, or after a deletion nothing. */
   readonly answer?: z.ZodType;
 }
 
@@ -120,6 +133,7 @@ export const operations = {
     summary:
       'Submits molecules. Rows that cannot be read are kept with the reason and hinder no other. With an Idempotency-Key a repeated request is answered as the first one and not carried out again',
     scope: 'submit',
+    takesKey: true,
     body: newBatchSchema,
     answer: z.object({
       id,
@@ -195,6 +209,42 @@ export const operations = {
     path: '/molecules/{id}/bundle',
     summary: 'The bundle of a molecule, a zip',
     scope: 'read',
+  },
+  listWebhooks: {
+    method: 'get',
+    path: '/webhooks',
+    summary: 'Webhooks of the team; for leads, as all about webhooks',
+    scope: 'webhooks',
+    answer: z.object({ items: z.array(webhookAnswerSchema) }),
+  },
+  createWebhook: {
+    method: 'post',
+    path: '/webhooks',
+    summary: `Adds a webhook, of which a team has at most ${WEBHOOK_LIMIT}. The answer tells its secret, which is told only once`,
+    scope: 'webhooks',
+    body: newWebhookSchema,
+    answer: z.object({ id, name: z.string(), secret: z.string() }),
+  },
+  deleteWebhook: {
+    method: 'delete',
+    path: '/webhooks/{id}',
+    summary: 'Removes a webhook with its log',
+    scope: 'webhooks',
+  },
+  testWebhook: {
+    method: 'post',
+    path: '/webhooks/{id}/test',
+    summary: 'Sends a test, also to a webhook that is off',
+    scope: 'webhooks',
+    answer: z.object({ delivery: id }),
+  },
+  listDeliveries: {
+    method: 'get',
+    path: '/webhooks/{id}/deliveries',
+    summary: `What was sent to a webhook in the last ${DELIVERY_DAYS} days, the newest first`,
+    scope: 'webhooks',
+    query: pageQuerySchema,
+    answer: page(deliveryAnswerSchema),
   },
 } as const satisfies Record<string, Operation>;
 export type OperationName = keyof typeof operations;

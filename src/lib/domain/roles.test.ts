@@ -26,6 +26,7 @@ const expected: Record<Role, Permission[]> = {
     'share with partners',
     'manage members',
     'manage limits',
+    'manage webhooks',
     'read the record',
     'delete results',
     'delete any comment',

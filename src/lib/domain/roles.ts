@@ -16,6 +16,7 @@ export const lowestRole = {
   'share with partners': 'modeler',
   'manage members': 'lead',
   'manage limits': 'lead',
+  'manage webhooks': 'lead',
   'read the record': 'lead',
   'delete results': 'lead',
   'delete any comment': 'lead',

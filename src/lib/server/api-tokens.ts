@@ -1,6 +1,6 @@
 /** Tokens of the REST interface: made by a person for one of their teams, shown once, stored as hashes. */
 import { and, desc, eq, gt, lt, sql } from 'drizzle-orm';
-import type { ApiScope } from '../domain/api';
+import { scopesFor, type ApiScope } from '../domain/api';
 import { db } from './db';
 import { apiTokens, memberships, teams } from './db/schema';
 import { recordEvent } from './events';
@@ -25,7 +25,7 @@ export async function create(
       teamId: member.teamId,
       name: given.name,
       tokenHash: hashSecret(token),
-      scopes: given.scope === 'read' ? ['read'] : ['read', 'submit'],
+      scopes: scopesFor(given.scope),
       expiresAt: sql`now() + make_interval(days => ${given.days})`,
     });
     await recordEvent(tx, member, 'make token', `user:${member.userId}`, {

@@ -19,9 +19,13 @@ const members = [
   { name: 'Jo Marsh', email: 'jo.marsh@tideline.example', role: 'reader' },
 ] as const satisfies readonly { name: string; email: string; role: Role }[];
 
+/** Whoever tries the product on their own machine wants to see its operator's page as well. */
+const OPERATOR = members[0].email;
+
 export interface DemoSignIn {
   readonly email: string;
-  readonly role: Role;
+  /** Their role in the team, and what they are beside it. */
+  readonly role: string;
 }
 
 /** The demo's team, by its name and its lead; null where no demo was seeded. */
@@ -56,7 +60,13 @@ export async function seedDemo(): Promise<DemoSignIn[]> {
     for (const { name, email, role } of members) {
       const [user] = await tx
         .insert(users)
-        .values({ name, email, passwordHash, confirmedAt: sql`now()` })
+        .values({
+          name,
+          email,
+          passwordHash,
+          confirmedAt: sql`now()`,
+          isOperator: email === OPERATOR,
+        })
         .onConflictDoUpdate({ target: users.email, set: { passwordHash, confirmedAt: sql`now()` } })
         .returning({ id: users.id });
       await tx.insert(memberships).values({ teamId, userId: user!.id, role }).onConflictDoNothing();
@@ -65,5 +75,8 @@ export async function seedDemo(): Promise<DemoSignIn[]> {
     return submitter;
   });
   if (modeler) await submitDemoBatches(modeler);
-  return members.map(({ email, role }) => ({ email, role }));
+  return members.map(({ email, role }) => ({
+    email,
+    role: email === OPERATOR ? `${role}, operator` : role,
+  }));
 }

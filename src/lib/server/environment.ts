@@ -1,5 +1,22 @@
 /** The only reader of process.env: every setting of the web and the worker, checked once when the process starts. */
+import ipaddr from 'ipaddr.js';
 import { z } from 'zod';
+
+/** Networks as "10.20.0.0/16, fd00::/8". */
+const networks = z
+  .string()
+  .default('')
+  .transform((text, context) =>
+    text
+      .split(',')
+      .map((each) => each.trim())
+      .filter(Boolean)
+      .flatMap((each) => {
+        if (ipaddr.isValidCIDR(each)) return [ipaddr.parseCIDR(each)];
+        context.addIssue({ code: 'custom', message: `"${each}" is no network, like 10.20.0.0/16` });
+        return [];
+      }),
+  );
 
 const schema = z.object({
   DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/ }),
@@ -21,6 +38,15 @@ const schema = z.object({
   WINDLASS_WORKER_CONCURRENCY: z.coerce.number().int().min(0).max(256).default(0),
   /** Longest time one task may take, seconds. */
   WINDLASS_TASK_SECONDS: z.coerce.number().int().min(10).max(86_400).default(1_800),
+  /** Private networks that webhooks may reach; others than public ones are refused. */
+  WINDLASS_WEBHOOK_NETWORKS: networks,
+  /** Whether webhooks may go without encryption. */
+  WINDLASS_WEBHOOK_HTTP: z
+    .enum(['on', 'off'])
+    .default('off')
+    .transform((value) => value === 'on'),
+  /** What collectors of metrics send as a bearer token; unset, only this machine may read them. */
+  WINDLASS_METRICS_TOKEN: z.string().min(16).optional(),
   WINDLASS_LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 

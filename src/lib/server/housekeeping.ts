@@ -8,6 +8,8 @@ import { log } from './log';
 import * as molecules from './molecules';
 import { forgetFullBuckets } from './rate-limits';
 import * as sessions from './sessions';
+import * as webhookLog from './webhook-log';
+import * as workers from './workers';
 
 const INTERVAL_MS = 3_600_000;
 
@@ -20,6 +22,8 @@ export async function tidy(): Promise<void> {
   await apiTokens.forgetExpired();
   await idempotency.forgetOld();
   await sessions.forgetEnded();
+  await webhookLog.forgetOld();
+  await workers.forgetGone();
   await forgetFullBuckets();
 }
 

@@ -1,5 +1,6 @@
 /** What the letters say, as plain text and as HTML made from the same lines. */
 import type { Role } from '../domain/roles';
+import { GIVE_UP_DAYS } from '../domain/webhooks';
 import { environment } from './environment';
 import { LETTER_HOURS } from './letter-tokens';
 import type { Letter } from './mail';
@@ -117,5 +118,21 @@ export function memberRemovedLetter(name: string, team: string): Letter {
     ],
     link: { label: 'Open Windlass', path: '/desk' },
     closing: 'If this surprises you, ask a lead of the team.',
+  });
+}
+
+export function webhookGivenUpLetter(
+  name: string,
+  given: { readonly team: string; readonly webhook: string; readonly reason: string },
+): Letter {
+  return compose({
+    subject: `A webhook of ${given.team} was switched off`,
+    greeting: `Hello ${name},`,
+    lines: [
+      `For ${GIVE_UP_DAYS} days nothing got through to the webhook “${given.webhook}” of ${given.team}, so Windlass switched it off. It hears of no further batches until somebody switches it on again.`,
+      `What was wrong the last time: ${given.reason}`,
+    ],
+    link: { label: 'Look at the webhooks', path: '/team/webhooks' },
+    closing: 'You get this letter because you lead the team. Send a test before switching it on.',
   });
 }

@@ -2,14 +2,18 @@
 import { sql } from 'drizzle-orm';
 import { client, type Executor } from './db';
 
-/** What can be news: a batch whose tasks changed, a task that a person cancelled, a molecule whose notes changed. */
-export type Topic = 'batch-changed' | 'task-cancelled' | 'notes-changed';
+/**
+ * What can be news: a batch whose tasks changed, a task that a person cancelled, a molecule whose notes changed, a worker
+ * of whom an operator wants something.
+ */
+export type Topic = 'batch-changed' | 'task-cancelled' | 'notes-changed' | 'worker-ordered';
 type Hear = (id: string) => void;
 
 const CHANNELS: Record<Topic, string> = {
   'batch-changed': 'windlass_batch_changed',
   'task-cancelled': 'windlass_task_cancelled',
   'notes-changed': 'windlass_notes_changed',
+  'worker-ordered': 'windlass_worker_ordered',
 };
 
 const hearers = new Map<Topic, Set<Hear>>();

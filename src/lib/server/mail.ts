@@ -3,6 +3,7 @@ import { createTransport } from 'nodemailer';
 import { setTimeout as wait } from 'node:timers/promises';
 import { environment } from './environment';
 import { log } from './log';
+import { countLetter } from './metrics';
 
 export interface Letter {
   readonly subject: string;
@@ -24,11 +25,13 @@ async function deliver(to: string, letter: Letter): Promise<void> {
     await wait(seconds * 1000, undefined, { ref: false });
     try {
       await transport.sendMail({ to, ...letter });
+      countLetter('handed in');
       return;
     } catch (error) {
       log.warn({ error, subject: letter.subject }, 'A letter could not be handed in');
     }
   }
+  countLetter('given up');
   log.error({ subject: letter.subject }, 'A letter was given up');
 }
 

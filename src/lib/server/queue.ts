@@ -7,6 +7,7 @@ import { fromDrizzle, PgBoss, type JobWithMetadata } from 'pg-boss';
 import type { Executor } from './db';
 import { environment } from './environment';
 import { log } from './log';
+import { keepSlots, type Slots } from './task-slots';
 
 const TASKS = 'tasks';
 
@@ -30,7 +31,7 @@ export interface QueuedTask {
 let opening: Promise<PgBoss> | null = null;
 
 /** This process's side of the queue, opened once: the web only sends, a worker also looks after lost jobs. */
-function openQueue(isWorker = false): Promise<PgBoss> {
+export function openQueue(isWorker = false): Promise<PgBoss> {
   opening ??= start(isWorker).catch((error: unknown) => {
     opening = null;
     throw error;
@@ -87,25 +88,27 @@ export async function dequeue(executor: Executor, ids: readonly string[]): Promi
   await boss.deleteJob(TASKS, [...ids], { db: fromDrizzle(executor, sql) });
 }
 
-/** Runs `handle` for every job, `concurrency` at a time; a handler that throws hands its job back for a later try. */
+/**
+ * Opens the queue as a worker. Where its places are told to take tasks, `handle` runs for every job, one at a place; a
+ * handler that throws hands its job back for a later try.
+ */
 export async function workOnTasks(
   concurrency: number,
   handle: (taskId: string, lastTry: boolean) => Promise<void>,
-): Promise<void> {
+): Promise<Slots> {
   const boss = await openQueue(true);
-  await boss.work(
-    TASKS,
-    {
-      includeMetadata: true,
-      localConcurrency: concurrency,
-      batchSize: 1,
-      pollingIntervalSeconds: 2,
-      notifyPollingIntervalSeconds: 5,
-    },
-    async (jobs: JobWithMetadata<TaskJob>[]) => {
-      for (const { data, retryCount, retryLimit } of jobs) {
-        await handle(data.taskId, retryCount >= retryLimit);
-      }
-    },
-  );
+  const options = { batchSize: 1, pollingIntervalSeconds: 2, notifyPollingIntervalSeconds: 5 };
+  return keepSlots(concurrency, {
+    open: () =>
+      boss.work(
+        TASKS,
+        { ...options, includeMetadata: true },
+        async (jobs: JobWithMetadata<TaskJob>[]) => {
+          for (const { data, retryCount, retryLimit } of jobs) {
+            await handle(data.taskId, retryCount >= retryLimit);
+          }
+        },
+      ),
+    close: (id) => boss.offWork(TASKS, { id, wait: true }),
+  });
 }

@@ -24,6 +24,7 @@ const limits = {
   'wrong token from a client': { capacity: 20, perMinute: 5 },
   'ask the interface as a member': { capacity: 600, perMinute: 600 },
   'submit as a member': { capacity: 60, perMinute: 20 },
+  'send to webhooks by hand': { capacity: 30, perMinute: 6 },
 } as const satisfies Record<string, Limit>;
 export type LimitName = keyof typeof limits;
 

@@ -65,7 +65,7 @@ export async function findStored(
 export async function reuseStored(task: ClaimedTask): Promise<boolean> {
   const resultId = (await findStored(db, [task])).get(identityOf(task));
   if (resultId === undefined) return false;
-  await finish(db, task, resultId, true);
+  await db.transaction((transaction) => finish(transaction, task, resultId, true));
   return true;
 }
 
@@ -82,16 +82,19 @@ class NoLongerHeld extends Error {}
 
 /**
  * Stores what a task computed and marks it done, in one transaction. However often a task is delivered, one result is
- * stored: a second one of the same identity gives way to the first. Nothing is stored for a task that is no longer held.
+ * stored: a second one of the same identity gives way to the first. Nothing is stored for a task that is no longer held;
+ * the answer then is false.
  */
-export async function store(task: ClaimedTask, result: Result): Promise<void> {
+export async function store(task: ClaimedTask, result: Result): Promise<boolean> {
   try {
     await db.transaction(async (transaction) => {
       const resultId = await insertResult(transaction, task, result);
       if (!(await finish(transaction, task, resultId, false))) throw new NoLongerHeld();
     });
+    return true;
   } catch (error) {
     if (!(error instanceof NoLongerHeld)) throw error;
+    return false;
   }
 }
 

@@ -25,6 +25,7 @@ export interface SignedIn {
     readonly email: string;
     readonly name: string;
     readonly energyUnit: EnergyUnit;
+    readonly isOperator: boolean;
   };
   readonly memberships: readonly Membership[];
 }
@@ -50,7 +51,13 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
   const rows = await db
     .select({
       seenAt: sessions.seenAt,
-      user: { id: users.id, email: users.email, name: users.name, energyUnit: users.energyUnit },
+      user: {
+        id: users.id,
+        email: users.email,
+        name: users.name,
+        energyUnit: users.energyUnit,
+        isOperator: users.isOperator,
+      },
       teamId: memberships.teamId,
       role: memberships.role,
       teamName: teams.name,

@@ -6,6 +6,7 @@ import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks } from './db/schema';
 import { ownDraft } from './drafts';
 import { recordEvent } from './events';
+import { batchFinished } from './finished-batches';
 import { tell } from './live';
 import { require, type Member } from './member';
 import { planTasks, type PlannedTask } from './plans';
@@ -66,6 +67,7 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
       queued,
       reused,
     });
+    await batchFinished(transaction, batchId);
     await tell(transaction, 'batch-changed', [batchId]);
     return { queued, reused };
   });

@@ -3,9 +3,12 @@ import { and, asc, count, eq, inArray, lt, min, or, sql } from 'drizzle-orm';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { recordEvent } from './events';
+import { batchFinished } from './finished-batches';
 import { tell } from './live';
 import { notFound, require, type Member } from './member';
-import { dequeue, enqueue } from './queue';
+import { countTask } from './metrics';
+import { dequeue } from './queue';
+import { queueAgain } from './queue-again';
 
 /** A running task whose worker has been silent for this long is lost, and another worker may take it. */
 const SILENCE = sql`now() - interval '12 seconds'`;
@@ -114,17 +117,27 @@ export async function finish(
     .where(held(task))
     .returning({ id: tasks.id });
   if (rows.length === 0) return false;
+  await batchFinished(executor, task.batchId);
   await tell(executor, 'batch-changed', [task.batchId]);
   return true;
 }
 
-/** Marks a task failed by its molecule or its settings, which trying again would not mend. */
-export async function fail(task: ClaimedTask, error: TaskError): Promise<void> {
-  await db
-    .update(tasks)
-    .set({ state: 'failed', error, stage: '', finishedAt: sql`now()` })
-    .where(held(task));
-  await tell(db, 'batch-changed', [task.batchId]);
+/**
+ * Marks a task failed by its molecule or its settings, which trying again would not mend. False when the task was
+ * cancelled or taken over meanwhile.
+ */
+export async function fail(task: ClaimedTask, error: TaskError): Promise<boolean> {
+  return db.transaction(async (transaction) => {
+    const rows = await transaction
+      .update(tasks)
+      .set({ state: 'failed', error, stage: '', finishedAt: sql`now()` })
+      .where(held(task))
+      .returning({ id: tasks.id });
+    if (rows.length === 0) return false;
+    await batchFinished(transaction, task.batchId);
+    await tell(transaction, 'batch-changed', [task.batchId]);
+    return true;
+  });
 }
 
 /** Gives a task back to the queue after a fault of the machine; its job is thrown back by the caller. */
@@ -145,13 +158,18 @@ export const workerLost: TaskError = {
 
 /** Ends tasks whose workers kept dying until the queue gave up; without it they would seem to run for ever. */
 export async function failAbandoned(): Promise<number> {
-  const rows = await db
-    .update(tasks)
-    .set({ state: 'failed', error: workerLost, finishedAt: sql`now()` })
-    .where(and(eq(tasks.state, 'running'), lt(tasks.beatAt, ABANDONED)))
-    .returning({ batchId: tasks.batchId });
-  await tell(db, 'batch-changed', [...new Set(rows.map((row) => row.batchId))]);
-  return rows.length;
+  return db.transaction(async (transaction) => {
+    const rows = await transaction
+      .update(tasks)
+      .set({ state: 'failed', error: workerLost, finishedAt: sql`now()` })
+      .where(and(eq(tasks.state, 'running'), lt(tasks.beatAt, ABANDONED)))
+      .returning({ batchId: tasks.batchId });
+    // In the same order everywhere, so that no two wait for each other.
+    const changed = [...new Set(rows.map((row) => row.batchId))].sort();
+    for (const batchId of changed) await batchFinished(transaction, batchId);
+    await tell(transaction, 'batch-changed', changed);
+    return rows.length;
+  });
 }
 
 /** The chosen tasks, if they are the member's own team's; locked until the transaction ends. */
@@ -161,7 +179,7 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
   );
   return executor
-    .select({ id: tasks.id, state: tasks.state, batchId: tasks.batchId })
+    .select({ id: tasks.id, kind: tasks.kind, state: tasks.state, batchId: tasks.batchId })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .where(and(chosen, eq(batches.teamId, member.teamId)))
@@ -178,26 +196,29 @@ export interface TaskChoice {
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
 export async function cancel(member: Member, choice: TaskChoice): Promise<number> {
   require(member, 'cancel tasks');
-  return db.transaction(async (transaction) => {
+  const cancelled = await db.transaction(async (transaction) => {
     const rows = await lockOwn(transaction, member, choice);
     if (rows.length === 0) notFound('task');
     const open = rows.filter((row) => row.state === 'queued' || row.state === 'running');
     const ids = open.map((row) => row.id);
-    if (ids.length === 0) return 0;
+    if (ids.length === 0) return [];
     await transaction
       .update(tasks)
       .set({ state: 'cancelled', stage: '', finishedAt: sql`now()` })
       .where(inArray(tasks.id, ids));
     const queued = open.filter((row) => row.state === 'queued').map((row) => row.id);
     await dequeue(transaction, queued);
+    await batchFinished(transaction, open[0].batchId);
     await recordEvent(transaction, member, 'cancel tasks', `batch:${open[0].batchId}`, {
       tasks: ids.length,
     });
     const running = open.filter((row) => row.state === 'running').map((row) => row.id);
     await tell(transaction, 'task-cancelled', running);
     await tell(transaction, 'batch-changed', [...new Set(open.map((row) => row.batchId))]);
-    return ids.length;
+    return open;
   });
+  for (const { kind } of cancelled) countTask(kind, 'cancelled');
+  return cancelled.length;
 }
 
 /** Queues the failed and cancelled ones among the chosen tasks again, as a new attempt. Returns how many. */
@@ -209,25 +230,7 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
     const ended = rows.filter((row) => row.state === 'failed' || row.state === 'cancelled');
     const ids = ended.map((row) => row.id);
     if (ids.length === 0) return 0;
-    await transaction
-      .update(tasks)
-      .set({
-        state: 'queued',
-        error: null,
-        progress: 0,
-        worker: null,
-        startedAt: null,
-        beatAt: null,
-        finishedAt: null,
-      })
-      .where(inArray(tasks.id, ids));
-    // The job of the attempt before has the same id and would stand in the way.
-    await dequeue(transaction, ids);
-    const ahead = await waitingOf(transaction, member);
-    await enqueue(
-      transaction,
-      ids.map((id, position) => ({ id, priority: -(ahead + position) })),
-    );
+    await queueAgain(transaction, ids, await waitingOf(transaction, member));
     await recordEvent(transaction, member, 'rerun tasks', `batch:${ended[0].batchId}`, {
       tasks: ids.length,
     });
@@ -275,14 +278,14 @@ export async function queueOf(member: Member) {
       batchName: batches.name,
       maker: users.name,
       count: count(),
-      since: min(tasks.createdAt),
+      since: min(tasks.queuedAt),
     })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .leftJoin(users, eq(users.id, batches.createdBy))
     .where(and(eq(batches.teamId, member.teamId), eq(tasks.state, 'queued')))
     .groupBy(batches.id, users.name)
-    .orderBy(asc(min(tasks.createdAt)))
+    .orderBy(asc(min(tasks.queuedAt)))
     .limit(100);
   return { running, waiting };
 }

@@ -67,6 +67,8 @@ export const users = pgTable(
     confirmedAt: moment('confirmed_at'),
     /** In which unit the person reads energies. */
     energyUnit: energyUnitEnum('energy_unit').notNull().default('kcal/mol'),
+    /** Looks after the machines; set by `npm run operator` only. */
+    isOperator: boolean('is_operator').notNull().default(false),
     createdAt: created(),
   },
   (table) => [check('users_email_lower_case', sql`${table.email} = lower(${table.email})`)],
@@ -468,6 +470,8 @@ export const tasks = pgTable(
     /** True when the answer was there already and nothing was computed for this task. */
     reused: boolean('reused').notNull().default(false),
     createdAt: created(),
+    /** When it last began to wait: at first with its batch, later by being run again. */
+    queuedAt: moment('queued_at').notNull().defaultNow(),
     startedAt: moment('started_at'),
     /** The worker's last sign of life. */
     beatAt: moment('beat_at'),
@@ -484,8 +488,11 @@ export const tasks = pgTable(
       .on(table.beatAt)
       .where(sql`${table.state} = 'running'`),
     index('tasks_queued')
-      .on(table.createdAt)
+      .on(table.queuedAt)
       .where(sql`${table.state} = 'queued'`),
+    index('tasks_failed')
+      .on(table.finishedAt)
+      .where(sql`${table.state} = 'failed'`),
     check('tasks_progress_range', sql`${table.progress} between 0 and 1`),
     check('tasks_failed_says_why', sql`(${table.state} = 'failed') = (${table.error} is not null)`),
   ],
@@ -565,3 +572,108 @@ export const events = pgTable(
   },
   (table) => [index('events_team').on(table.teamId, table.id)],
 );
+
+/** Addresses of a team's own programs that are told of finished batches. */
+export const webhooks = pgTable(
+  'webhooks',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    teamId: uuid('team_id')
+      .notNull()
+      .references(() => teams.id, { onDelete: 'cascade' }),
+    createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
+    name: text('name').notNull(),
+    url: text('url').notNull(),
+    /** What signs the deliveries, sealed; the one before signs as well until its time is over. */
+    secret: text('secret').notNull(),
+    previousSecret: text('previous_secret'),
+    previousUntil: moment('previous_until'),
+    isOn: boolean('is_on').notNull().default(true),
+    /** Since when every attempt failed; null after one that did not. */
+    failingSince: moment('failing_since'),
+    /** When the product switched it off by itself; null when people did, or when it is on. */
+    givenUpAt: moment('given_up_at'),
+    createdAt: created(),
+  },
+  (table) => [
+    index('webhooks_team').on(table.teamId, table.createdAt),
+    check(
+      'webhooks_previous_secret_ends',
+      sql`(${table.previousSecret} is null) = (${table.previousUntil} is null)`,
+    ),
+  ],
+);
+
+export const deliveryStateEnum = pgEnum('delivery_state', ['waiting', 'delivered', 'failed']);
+
+/** What was, or is to be, told to a webhook, and how that went. The row is the truth; the queue only names it. */
+export const webhookDeliveries = pgTable(
+  'webhook_deliveries',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    webhookId: uuid('webhook_id')
+      .notNull()
+      .references(() => webhooks.id, { onDelete: 'cascade' }),
+    event: text('event').notNull(),
+    /** The JSON that is signed and sent, to the letter. */
+    body: text('body').notNull(),
+    state: deliveryStateEnum('state').notNull().default('waiting'),
+    /** Attempts that ended, in all. */
+    attempts: smallint('attempts').notNull().default(0),
+    /** Attempts since it was last put in line, which set how long the next one waits. */
+    step: smallint('step').notNull().default(0),
+    createdAt: created(),
+    /** When the next attempt is due; null when there is none. */
+    nextAt: moment('next_at').defaultNow(),
+    /** Set while an attempt is under way. */
+    startedAt: moment('started_at'),
+    /** The last attempt: when it ended, the status of the answer or the reason in words, how long it took. */
+    attemptedAt: moment('attempted_at'),
+    status: smallint('status'),
+    reason: text('reason').notNull().default(''),
+    milliseconds: integer('milliseconds'),
+  },
+  (table) => [
+    index('webhook_deliveries_webhook').on(table.webhookId, table.createdAt),
+    index('webhook_deliveries_created').on(table.createdAt),
+    index('webhook_deliveries_waiting')
+      .on(table.nextAt)
+      .where(sql`${table.state} = 'waiting'`),
+    check(
+      'webhook_deliveries_waiting_has_next',
+      sql`(${table.state} = 'waiting') = (${table.nextAt} is not null)`,
+    ),
+  ],
+);
+
+export const workerStateEnum = pgEnum('worker_state', ['taking', 'paused', 'draining', 'gone']);
+export const workerOrderEnum = pgEnum('worker_order', ['take', 'pause', 'drain']);
+
+/** Every worker that was seen, with its signs of life and what the operator wants of it. */
+export const workers = pgTable(
+  'workers',
+  {
+    name: text('name').primaryKey(),
+    version: text('version').notNull(),
+    concurrency: smallint('concurrency').notNull(),
+    state: workerStateEnum('state').notNull().default('taking'),
+    wanted: workerOrderEnum('wanted').notNull().default('take'),
+    startedAt: moment('started_at').notNull().defaultNow(),
+    beatAt: moment('beat_at').notNull().defaultNow(),
+    /** Its metrics as of the last sign of life, for whoever collects them from the web. */
+    metrics: jsonb('metrics').notNull().default([]),
+  },
+  (table) => [index('workers_beat').on(table.beatAt)],
+);
+
+/** What operators did to the machines, and when; rows are only ever added. */
+export const operatorEvents = pgTable('operator_events', {
+  id: bigserial('id', { mode: 'number' }).primaryKey(),
+  at: moment('at').notNull().defaultNow(),
+  /** Null for the command line. */
+  actorId: uuid('actor_id').references(() => users.id, { onDelete: 'set null' }),
+  action: text('action').notNull(),
+  subject: text('subject').notNull(),
+  address: text('address').notNull().default(''),
+  details: jsonb('details').notNull().default({}),
+});

@@ -3,6 +3,7 @@ import { uuidParam } from '$lib/domain/identifiers';
 import * as batches from '$lib/server/batches';
 import { listen } from '$lib/server/live';
 import { log } from '$lib/server/log';
+import { countStream } from '$lib/server/metrics';
 import { whoAsks } from '$lib/server/teams';
 import type { RequestHandler } from './$types';
 
@@ -42,6 +43,7 @@ export const GET: RequestHandler = async ({ locals, params }) => {
       const keepOpen = setInterval(() => say(': open\n\n'), KEEP_OPEN_MS);
       undo.push(() => clearInterval(keepOpen));
       undo.push(() => clearTimeout(timer));
+      undo.push(countStream('batch'));
       undo.push(await listen('batch-changed', changed));
       if (isOpen) await send();
       else end();

@@ -1,6 +1,7 @@
 /** Tells a page by server-sent events that the notes of its molecule changed; what they say it asks for itself. */
 import { uuidParam } from '$lib/domain/identifiers';
 import { listen } from '$lib/server/live';
+import { countStream } from '$lib/server/metrics';
 import { get } from '$lib/server/molecules';
 import { whoAsks } from '$lib/server/teams';
 import type { RequestHandler } from './$types';
@@ -18,10 +19,12 @@ export const GET: RequestHandler = async ({ locals, params }) => {
       const stopListening = await listen('notes-changed', (id) => {
         if (id === molecule.id || id === '') say('event: changed\ndata:\n\n');
       });
+      const stopCounting = countStream('notes');
       const keepOpen = setInterval(() => say(': open\n\n'), KEEP_OPEN_MS);
       end = () => {
         clearInterval(keepOpen);
         stopListening();
+        stopCounting();
       };
       say(': open\n\n');
     },
