@@ -8,6 +8,7 @@ import { log } from './log';
 import * as molecules from './molecules';
 import { forgetFullBuckets } from './rate-limits';
 import * as sessions from './sessions';
+import * as signInSteps from './sign-in-steps';
 
 const INTERVAL_MS = 3_600_000;
 
@@ -20,6 +21,7 @@ export async function tidy(): Promise<void> {
   await apiTokens.forgetExpired();
   await idempotency.forgetOld();
   await sessions.forgetEnded();
+  await signInSteps.forgetExpired();
   await forgetFullBuckets();
 }
 

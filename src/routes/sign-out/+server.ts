@@ -3,6 +3,7 @@ import type { RequestHandler } from './$types';
 import { endSignIn } from '../../auth';
 
 export const POST: RequestHandler = async (event) => {
+  const isThroughProvider = event.locals.proof?.method === 'single sign-on';
   await endSignIn(event);
-  redirect(303, '/');
+  redirect(303, isThroughProvider ? '/signed-out?provider' : '/');
 };

@@ -26,6 +26,7 @@ import {
 } from 'drizzle-orm/pg-core';
 import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
+import { signInMethods } from '../../domain/sign-in-strength';
 import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
 
@@ -54,7 +55,7 @@ export const taskStateEnum = pgEnum('task_state', [
 export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
 export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload', 'program']);
 export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
-export const signInMethodEnum = pgEnum('sign_in_method', ['password', 'single sign-on']);
+export const signInMethodEnum = pgEnum('sign_in_method', signInMethods);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
 
 /** People. The address is stored in lower case. */
