@@ -127,7 +127,7 @@ export async function startIdentityProvider({ port, origin }) {
       WINDLASS_OIDC_ISSUER: issuer,
       WINDLASS_OIDC_CLIENT_ID: clientId,
       WINDLASS_OIDC_CLIENT_SECRET: clientSecret,
-      WINDLASS_OIDC_NAME: 'the test provider',
+      WINDLASS_OIDC_NAME: 'Skerry ID',
     },
     stop: () =>
       new Promise((resolve) => {

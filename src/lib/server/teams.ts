@@ -1,11 +1,12 @@
 /** Teams and who belongs to them. */
 import { error, type Cookies } from '@sveltejs/kit';
 import type { TeamRequirements } from '../domain/sign-in-strength';
+import { environment } from './environment';
 import type { Member } from './member';
 import { sayWhatIsMissing } from './team-requirements';
 
 /** Names the chosen team, between visits. */
-export const TEAM_COOKIE = 'windlass-team';
+export const TEAM_COOKIE = `${environment.WINDLASS_ORIGIN.startsWith('https:') ? '__Host-' : ''}windlass-team`;
 const ONE_YEAR_SECONDS = 31_536_000;
 
 /** A person in one of their teams, with the team's name: it can be handed in wherever a Member asks. */

@@ -12,10 +12,13 @@ export const GET: RequestHandler = async (event) => {
   const wait = await limitRate(['single sign-on from a client', network]);
   if (wait !== null) error(429, `Too many tries. Wait ${wait} seconds.`);
   const next = encodeURIComponent(localPath(event.url.searchParams.get('next'), '/desk'));
-  const isAgain = event.locals.user !== null && event.url.searchParams.has('again');
-  const arrival = isAgain ? `/again?tried&next=${next}` : `/sign-in/arrived?next=${next}`;
+  // Also after a wrong turn: who is signed in there as somebody else can choose again.
+  const isAgain = event.url.searchParams.has('again');
+  const isSignedIn = event.locals.user !== null;
+  const arrival =
+    isAgain && isSignedIn ? `/again?tried&next=${next}` : `/sign-in/arrived?next=${next}`;
   const url = await findProviderUrl(event, arrival, isAgain);
-  if (!url) redirect(303, isAgain ? `/again?fault=away&next=${next}` : '/sign-in?fault=away');
+  if (!url) redirect(303, isSignedIn ? `/again?fault=away&next=${next}` : '/sign-in?fault=away');
   event.setHeaders({ 'cache-control': 'no-store' });
   redirect(303, url);
 };
