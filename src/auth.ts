@@ -34,8 +34,9 @@ async function authorize(given: unknown, event: RequestEvent) {
     const begun = await checkGiven(given, event);
     return { id: begun.userId, ...begun };
   } catch (error) {
-    if (error instanceof RefusedProof) throw new RefusedSignIn(error.refusal);
-    throw error;
+    if (!(error instanceof RefusedProof)) throw error;
+    log.info({ ...error.refusal, address: event.getClientAddress() }, 'A sign-in was refused');
+    throw new RefusedSignIn(error.refusal);
   }
 }
 

@@ -1,6 +1,7 @@
 /** What happens to every request: the right address, who asks, who may enter, headers, and an id for surprises. */
 import {
   error,
+  isRedirect,
   redirect,
   type Handle,
   type HandleServerError,
@@ -51,16 +52,26 @@ const settleAddress: Handle = ({ event, resolve }) => {
   return resolve(event);
 };
 
+/** A redirect that a guard below threw, as an answer: thrown any further, it would leave without the headers. */
+function asAnswer(cause: unknown, { request, isDataRequest }: RequestEvent): Response {
+  // Pages with script get it in words of their own, which SvelteKit writes.
+  const isScripted = isDataRequest || request.headers.has('x-sveltekit-action');
+  if (!isRedirect(cause) || isScripted) throw cause;
+  return new Response(null, { status: cause.status, headers: { location: cause.location } });
+}
+
 const finishResponse: Handle = async ({ event, resolve }) => {
   const startedAt = performance.now();
-  const response = await resolve(event);
-  addHeaders(response, event.locals.user !== null);
-  const { method } = event.request;
-  const milliseconds = Math.round(performance.now() - startedAt);
-  log.debug(
-    { method, path: event.url.pathname, status: response.status, milliseconds },
-    'answered',
+  const response = await Promise.resolve(resolve(event)).catch((cause: unknown) =>
+    asAnswer(cause, event),
   );
+  addHeaders(response, Boolean(event.locals.user));
+  const { method } = event.request;
+  const { status } = response;
+  const line = { method, path: event.url.pathname, status };
+  // Who tries what they may not shall be found later.
+  if (status === 403) log.info({ ...line, userId: event.locals.user?.id }, 'refused');
+  else log.debug({ ...line, milliseconds: Math.round(performance.now() - startedAt) }, 'answered');
   return response;
 };
 

@@ -49,6 +49,8 @@ export interface Row {
 const own = 'own' as const;
 const fresh = true as const;
 const note = ({ noteId }: Place) => ({ note: noteId });
+/** The form of a plan, as it is when nothing but conformers is ticked. */
+const plan = { conformers: 'on', effort: 'quick', window: '6', temperature: '298.15' };
 const submission = {
   name: 'By a program',
   molecules: [{ molecule: { smiles: 'CCC' } }],
@@ -57,7 +59,7 @@ const submission = {
 
 export const rows: Record<string, Row> = {
   // Pages for everybody
-  'GET /(public)/': { may: 'public' },
+  'GET /(public)': { may: 'public' },
   'GET /(public)/interface': { may: 'public' },
   'GET /(public)/sign-in': { may: 'public' },
   'POST /(public)/sign-in?/signIn': { may: 'public', form: { email: 'a@people.example' } },
@@ -184,13 +186,13 @@ export const rows: Record<string, Row> = {
   'GET /(app)/batches/[id]/series': { may: 'reader' },
   'GET /(app)/batches/[id]/series.csv': { may: 'reader' },
   'GET /(app)/batches/[id]/preview': { may: 'maker' },
-  'POST /(app)/batches/[id]/preview?/submit': { may: 'maker', form: { conformers: 'on' } },
+  'POST /(app)/batches/[id]/preview?/submit': { may: 'maker', form: plan },
   'POST /(app)/batches/[id]/preview?/choose': {
     may: 'maker',
     form: ({ draftRowId }) => ({ row: draftRowId, purpose: 'scan', bonds: '[[1,2]]' }),
   },
   'POST /(app)/batches/[id]/preview?/discard': { may: 'maker' },
-  'POST /(app)/batches/[id]/preview/estimate': { may: 'maker', form: { conformers: 'on' } },
+  'POST /(app)/batches/[id]/preview/estimate': { may: 'maker', form: plan },
   'GET /(app)/molecules/[id]': { may: 'reader' },
   'GET /(app)/molecules/[id]/bundle': { may: 'reader' },
   'GET /(app)/molecules/[id]/report': { may: 'reader' },

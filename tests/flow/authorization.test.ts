@@ -37,8 +37,9 @@ beforeAll(async () => {
   web = await startWeb();
   const queued = await newPlace();
   await performAll(queued.batchId);
-  const [result] = await db.select().from(results).where(eq(results.moleculeId, queued.moleculeId));
-  place = { ...queued, resultId: result!.id };
+  const found = await db.select().from(results).where(eq(results.moleculeId, queued.moleculeId));
+  const idOf = (kind: string) => found.find((result) => result.kind === kind)!.id;
+  place = { ...queued, resultId: idOf('conformers'), scanId: idOf('scan') };
 }, BUILD_PATIENCE_MS);
 
 afterAll(async () => {
@@ -56,7 +57,7 @@ function addressOf(way: string, row: Row, { batchId, moleculeId, draftId, ...at 
   const isDraft = route.includes('/preview');
   const fill: Record<string, string> = {
     '[id]': isDraft ? draftId : route.includes('/molecules/') ? moleculeId : batchId,
-    '[result]': at.resultId,
+    '[result]': route.endsWith('/packed') ? at.scanId : at.resultId,
     '[token]': at.linkSecret,
   };
   const path = route

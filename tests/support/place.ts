@@ -35,8 +35,9 @@ export interface Place {
   readonly invitationId: string;
   readonly linkId: string;
   readonly linkSecret: string;
-  /** An answer, where one was computed; else an id that nothing has. */
+  /** Answers, where they were computed; else ids that nothing has. */
   readonly resultId: string;
+  readonly scanId: string;
 }
 
 async function openDraft(chemist: Member, name: string) {
@@ -69,8 +70,11 @@ export async function newPlace(): Promise<Place> {
   const marker = `Heron-${randomUUID().slice(0, 8)}`;
   const request = newBatchSchema.parse({
     name: marker,
-    molecules: [{ name: marker, molecule: { smiles: 'CCO' } }],
-    plan: { conformers: { effort: 'quick' } },
+    molecules: [{ name: marker, molecule: { smiles: 'CCCC' } }],
+    plan: {
+      conformers: { effort: 'quick' },
+      scans: { bonds: 'rotatable', relaxed: false, step: 30 },
+    },
   });
   const { id: batchId } = await submitRequest(chemist, request);
   const [entry] = await lists.listEntriesAfter(chemist, batchId, 0, 1);
@@ -95,5 +99,6 @@ export async function newPlace(): Promise<Place> {
     invitationId: invitation!.id,
     ...(await share(modeler, batchId)),
     resultId: randomUUID(),
+    scanId: randomUUID(),
   };
 }

@@ -24,6 +24,10 @@ const POLICY_OF_DATA =
 /** Adds the headers; what is made for one person is kept by nobody, unless it says so. */
 export function addHeaders(response: Response, isPersonal: boolean): void {
   for (const [name, value] of Object.entries(always)) response.headers.set(name, value);
+  const type = response.headers.get('content-type') ?? '';
+  if (/^text\/(html|plain|csv)$/.test(type)) {
+    response.headers.set('content-type', `${type}; charset=utf-8`);
+  }
   if (!response.headers.has('content-security-policy')) {
     response.headers.set('content-security-policy', POLICY_OF_DATA);
   }
