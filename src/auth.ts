@@ -87,7 +87,8 @@ const auth = SvelteKitAuth(async (event) => ({
       return true;
     },
     jwt: ({ token, user }) => (user ? namesOf(user as Partial<NamedRow>) : token),
-    session: ({ session, token }) => Object.assign(session, namesOf({ ...token })),
+    session: ({ session, token }) =>
+      Object.assign(session, namesOf({ sessionId: token['sessionId'], stepId: token['stepId'] })),
   },
   logger: {
     // Refused sign-ins and cookies of another secret are no faults of the program; a provider that fails may be one.
