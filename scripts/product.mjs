@@ -1,9 +1,10 @@
-/** Web, worker and mail catcher as one product on given ports; used by `npm start`, `npm run dev` and the page tests. */
+/** Web, worker, mail catcher and a provider of invented identities as one product on given ports; used by `npm start`, `npm run dev` and the page tests. */
 import { spawnSync } from 'node:child_process';
 import { join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import { buildProduct } from './build.mjs';
 import { projectRoot } from './folders.mjs';
+import { startIdentityProvider } from './identity-provider.mjs';
 import { startMailCatcher } from './mail-catcher.mjs';
 import { runProgram, superviseProgram } from './processes.mjs';
 
@@ -32,7 +33,11 @@ async function choosePrograms({ isDevelopment, host, ports }) {
 }
 
 /** The settings of the programs, as src/lib/server/environment.ts and the web server read them. */
-function makeVariables({ isDevelopment, host, ports, origin, databaseUrl, variables }, catcher) {
+function makeVariables(
+  { isDevelopment, host, ports, origin, databaseUrl, variables },
+  catcher,
+  identityProvider,
+) {
   return {
     ...process.env,
     NODE_ENV: isDevelopment ? 'development' : 'production',
@@ -48,6 +53,7 @@ function makeVariables({ isDevelopment, host, ports, origin, databaseUrl, variab
       WINDLASS_SMTP_URL: catcher.smtpUrl,
       WINDLASS_MAIL_CATCHER_URL: catcher.lettersUrl,
     }),
+    ...identityProvider?.variables,
   };
 }
 
@@ -81,10 +87,11 @@ async function waitUntilReady(address) {
  * Everything but the database, which must be there.
  * @param {{
  *   isDevelopment: boolean, host: string, origin: string, databaseUrl: string,
- *   ports: { web: number, smtp: number, letters: number }, catchMail: boolean, seed: boolean,
+ *   ports: { web: number, smtp: number, letters: number, identity: number }, catchMail: boolean,
+ *   inventIdentities: boolean, seed: boolean,
  *   variables: Record<string, string>, print: (name: string, line: string) => void,
  * }} settings
- * @returns {{ start: () => Promise<{ address: string, lettersUrl: string | null, signIns: object[] }>,
+ * @returns {{ start: () => Promise<{ address: string, lettersUrl: string | null, issuer: string | null, signIns: object[] }>,
  *   stop: () => Promise<void> }} `start` waits until the product answers; `stop` may be called at any time
  */
 export function createProduct(settings) {
@@ -101,7 +108,10 @@ export function createProduct(settings) {
     const catcher = settings.catchMail
       ? keep(await startMailCatcher({ smtpPort: ports.smtp, httpPort: ports.letters }))
       : null;
-    const env = makeVariables(settings, catcher);
+    const identityProvider = settings.inventIdentities
+      ? keep(await startIdentityProvider({ port: ports.identity, origin: settings.origin }))
+      : null;
+    const env = makeVariables(settings, catcher, identityProvider);
     const once = (name) => runProgram({ args: programs[name], env }, { name, print });
     await once('migrate');
     const signIns = settings.seed ? readSignIns(await once('seed'), print) : [];
@@ -112,7 +122,12 @@ export function createProduct(settings) {
     }
     const address = `http://${host === '0.0.0.0' ? '127.0.0.1' : host}:${ports.web}`;
     await waitUntilReady(address);
-    return { address, lettersUrl: catcher?.lettersUrl ?? null, signIns };
+    return {
+      address,
+      lettersUrl: catcher?.lettersUrl ?? null,
+      issuer: identityProvider?.issuer ?? null,
+      signIns,
+    };
   };
   const stop = async () => {
     isStopped = true;

@@ -35,6 +35,7 @@ export function readPorts() {
     postgres: readPort('WINDLASS_POSTGRES_PORT', web + 1),
     smtp: readPort('WINDLASS_MAIL_CATCHER_SMTP_PORT', web + 5),
     letters: readPort('WINDLASS_MAIL_CATCHER_PORT', web + 6),
+    identity: readPort('WINDLASS_IDENTITY_PORT', web + 7),
   };
 }
 

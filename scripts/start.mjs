@@ -42,11 +42,21 @@ function readPlan() {
     );
   }
   const seed = (process.env.WINDLASS_DEMO || (isLocal ? 'on' : 'off')) === 'on';
-  return { isDevelopment, ports, host, origin: new URL(origin).origin, catchMail, seed };
+  // Invented people are for one's own machine only, and never beside a real provider.
+  const inventIdentities = isLocal && !process.env.WINDLASS_OIDC_ISSUER;
+  return {
+    isDevelopment,
+    ports,
+    host,
+    origin: new URL(origin).origin,
+    catchMail,
+    inventIdentities,
+    seed,
+  };
 }
 
 /** Says which ports are taken, and a way out, before anything long is begun. */
-async function checkPorts({ ports, host, catchMail }) {
+async function checkPorts({ ports, host, catchMail, inventIdentities }) {
   const wanted = [{ what: 'the web', port: ports.web, host }];
   if (!process.env.DATABASE_URL && runningPort(postgresFolder) !== ports.postgres) {
     wanted.push({ what: 'PostgreSQL', port: ports.postgres, host: '127.0.0.1' });
@@ -54,6 +64,9 @@ async function checkPorts({ ports, host, catchMail }) {
   if (catchMail) {
     wanted.push({ what: 'the mail catcher', port: ports.smtp, host: '127.0.0.1' });
     wanted.push({ what: 'the mail catcher', port: ports.letters, host: '127.0.0.1' });
+  }
+  if (inventIdentities) {
+    wanted.push({ what: 'the identity provider', port: ports.identity, host: '127.0.0.1' });
   }
   const taken = [];
   for (const each of wanted) if (!(await isPortFree(each.port, each.host))) taken.push(each);
@@ -67,7 +80,7 @@ async function checkPorts({ ports, host, catchMail }) {
   throw new StartError(
     `Another program uses a port that is needed:\n${lines.join('\n')}\n` +
       `Choose others with\n  WINDLASS_PORT=${other} ${command}\n` +
-      'which moves all of them (PostgreSQL one above it, the mail catcher five and six above it).',
+      'which moves all of them (PostgreSQL one above it, the mail catcher five and six, the identity provider seven).',
   );
 }
 
@@ -89,13 +102,14 @@ function openDatabase(ports, secrets) {
   return cluster.url;
 }
 
-function describe({ origin, catchMail }, { signIns }, password) {
+function describe({ origin, catchMail, inventIdentities }, { signIns }, password) {
   const lines = [`Windlass is ready: ${origin}`];
   if (signIns.length > 0) {
     lines.push('', `Demo sign-ins, all with the password ${password}`);
     for (const { email, role } of signIns) lines.push(`  ${email.padEnd(32)} ${role}`);
   }
   if (catchMail) lines.push('', `Letters are caught here: ${origin}/development/letters`);
+  if (inventIdentities) lines.push('Single sign-on goes to a provider of invented people.');
   return lines.join('\n');
 }
 

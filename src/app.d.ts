@@ -1,4 +1,6 @@
 import type { EnergyUnit } from '$lib/domain/energy-units';
+import type { Missing } from '$lib/domain/sign-in-strength';
+import type { Proof } from '$lib/server/sessions';
 import type { Membership } from '$lib/server/teams';
 
 declare global {
@@ -20,9 +22,15 @@ declare global {
       } | null;
       /** The sign-in this request belongs to. */
       sessionId: string | null;
+      /** The sign-in of this browser that waits for the code of a second factor. */
+      stepId: string | null;
+      /** How and when the person proved who they are; null for a visitor. */
+      proof: Proof | null;
+      /** The chosen team when it asks for more than this sign-in showed; then `membership` is null. */
+      barred: { readonly membership: Membership; readonly missing: Missing } | null;
       /** Every team the person belongs to, by name. */
       memberships: readonly Membership[];
-      /** The chosen team: who asks, for every query. Null only for a visitor or a person without a team. */
+      /** The chosen team: who asks, for every query. Null for a visitor, a person without a team, or one who is barred. */
       membership: Membership | null;
     }
   }

@@ -11,6 +11,7 @@ import {
 } from '@sveltejs/kit';
 import { sequence } from '@sveltejs/kit/hooks';
 import { building } from '$app/environment';
+import { findMissing } from '$lib/domain/sign-in-strength';
 import { registerChemistryResources } from '$lib/server/chemistry-resources';
 import { closeDatabase } from '$lib/server/db';
 import { environment } from '$lib/server/environment';
@@ -22,7 +23,8 @@ import { stopQueue } from '$lib/server/queue';
 import { addHeaders } from '$lib/server/response-headers';
 import * as sessions from '$lib/server/sessions';
 import { chooseMembership, TEAM_COOKIE } from '$lib/server/teams';
-import { forgetCookie, handle as handleAuth, readSessionId } from './auth';
+import { sayWhatIsMissing } from '$lib/server/team-requirements';
+import { CALLBACK_PATH, forgetCookie, handle as handleAuth, readCookie } from './auth';
 
 const origin = new URL(environment.WINDLASS_ORIGIN);
 const LOOPBACK = ['localhost', '127.0.0.1', '[::1]'];
@@ -53,6 +55,14 @@ const settleAddress: Handle = ({ event, resolve }) => {
   return resolve(event);
 };
 
+/** A redirect that a guard below threw, as an answer: thrown any further, it would leave without the headers. */
+function asAnswer(cause: unknown, { request, isDataRequest }: RequestEvent): Response {
+  // Pages with script get it in words of their own, which SvelteKit writes.
+  const isScripted = isDataRequest || request.headers.has('x-sveltekit-action');
+  if (!isRedirect(cause) || isScripted) throw cause;
+  return new Response(null, { status: cause.status, headers: { location: cause.location } });
+}
+
 const finishResponse: Handle = async ({ event, resolve }) => {
   const startedAt = performance.now();
   const { method } = event.request;
@@ -61,36 +71,47 @@ const finishResponse: Handle = async ({ event, resolve }) => {
     countRequest({ method, route: event.route.id, status, milliseconds });
     return milliseconds;
   };
-  const response = await Promise.resolve(resolve(event)).catch((thrown: unknown) => {
-    // The guards below end a request by throwing.
-    count(isRedirect(thrown) || isHttpError(thrown) ? thrown.status : 500);
-    throw thrown;
+  const response = await Promise.resolve(resolve(event)).catch((cause: unknown) => {
+    try {
+      return asAnswer(cause, event);
+    } catch (thrown) {
+      // The guards below end a request by throwing.
+      count(isRedirect(thrown) || isHttpError(thrown) ? thrown.status : 500);
+      throw thrown;
+    }
   });
-  addHeaders(response, event.locals.user !== null);
-  const milliseconds = count(response.status);
-  log.debug(
-    { method, path: event.url.pathname, status: response.status, milliseconds },
-    'answered',
-  );
+  addHeaders(response, Boolean(event.locals.user));
+  const { status } = response;
+  const line = { method, path: event.url.pathname, status, milliseconds: count(status) };
+  // Who tries what they may not shall be found later.
+  if (status === 403) log.info({ ...line, userId: event.locals.user?.id }, 'refused');
+  else log.debug(line, 'answered');
   return response;
 };
 
-/** Auth.js brings endpoints of its own; the forms here call it directly, so none of them has to be open. */
+/** Auth.js brings endpoints of its own; the forms here call it directly, so only the way back from a provider is open. */
 const closeAuthEndpoints: Handle = ({ event, resolve }) => {
-  if (event.url.pathname.startsWith('/auth/')) error(404, 'There is no page at this address.');
+  const isWayBack = event.url.pathname === CALLBACK_PATH && event.request.method === 'GET';
+  if (event.url.pathname.startsWith('/auth/') && !isWayBack)
+    error(404, 'There is no page at this address.');
   return resolve(event);
 };
 
 async function identify(event: RequestEvent): Promise<void> {
-  const sessionId = await readSessionId(event);
+  const { sessionId, stepId } = await readCookie(event);
   const signedIn = sessionId ? await sessions.find(sessionId) : null;
   if (sessionId && !signedIn) forgetCookie(event);
   const address = event.getClientAddress();
   const memberships = (signedIn?.memberships ?? []).map((one) => ({ ...one, address }));
+  const chosen = chooseMembership(memberships, event.cookies.get(TEAM_COOKIE));
+  const missing = chosen && signedIn ? findMissing(chosen.requires, signedIn.proof) : null;
   event.locals.user = signedIn?.user ?? null;
   event.locals.sessionId = signedIn?.sessionId ?? null;
+  event.locals.stepId = stepId;
+  event.locals.proof = signedIn?.proof ?? null;
   event.locals.memberships = memberships;
-  event.locals.membership = chooseMembership(memberships, event.cookies.get(TEAM_COOKIE));
+  event.locals.barred = chosen && missing ? { membership: chosen, missing } : null;
+  event.locals.membership = missing ? null : chosen;
 }
 
 /** Programs come with a token of their own and are never taken for the person whose browser sends a cookie. */
@@ -100,6 +121,27 @@ const identifyPerson: Handle = async ({ event, resolve }) => {
   if (PROBES.includes(event.url.pathname) || isForPrograms(event)) event.locals.user = null;
   else await identify(event);
   return resolve(event);
+};
+
+/** What people need for becoming able to see a team's data again, or for looking at their own account. */
+const OPEN_TO_BARRED = [
+  '/(app)/account',
+  '/(app)/account/second-factor',
+  '/(app)/again',
+  '/(app)/required',
+  '/(app)/reading',
+];
+
+/** Whose sign-in lacks what the chosen team requires is led to the page that says how to mend it. */
+const leadBarred: Handle = ({ event, resolve }) => {
+  const route = event.route.id ?? '';
+  const isOpen = OPEN_TO_BARRED.includes(route);
+  if (!event.locals.barred || !route.startsWith('/(app)') || isOpen) return resolve(event);
+  const isPage = event.isDataRequest || event.request.headers.get('accept')?.includes('text/html');
+  // Programs of a page that asked for data are told; see `whoAsks`.
+  if (!isPage || event.request.method !== 'GET')
+    error(403, sayWhatIsMissing(event.locals.barred.missing));
+  redirect(303, `/required?next=${encodeURIComponent(event.url.pathname + event.url.search)}`);
 };
 
 /** The groups of routes carry the rule of who may enter. */
@@ -120,6 +162,7 @@ export const handle = sequence(
   handleAuth,
   identifyPerson,
   guardRoutes,
+  leadBarred,
 );
 
 export const handleError: HandleServerError = ({ error: cause, event, status, message }) => {

@@ -37,7 +37,7 @@ async function newPerson() {
   const email = await signUp();
   const confirmToken = tokenOf(await waitForLetter(lettersUrl, email, confirmSubject));
   const outcome = await account.signIn({ email, password, confirmToken }, client);
-  if ('fault' in outcome) throw new Error(`Signing in failed: ${outcome.fault}`);
+  if (!('sessionId' in outcome)) throw new Error(`Signing in failed: ${JSON.stringify(outcome)}`);
   return { email, ...outcome };
 }
 

@@ -36,7 +36,7 @@ describe('an invitation', () => {
     const teamId = await users.signUpByInvitation({ token, name: 'Ada', password }, '192.0.2.7');
     expect(teamId).toBe(lead.teamId);
     const outcome = await users.signIn({ email, password }, { address: '', userAgent: '' });
-    if ('fault' in outcome) throw new Error(outcome.fault);
+    if (!('sessionId' in outcome)) throw new Error(JSON.stringify(outcome));
     const found = await sessions.find(outcome.sessionId);
     expect(found?.memberships).toMatchObject([{ teamId, role: 'chemist' }]);
   });

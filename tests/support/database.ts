@@ -25,6 +25,10 @@ Object.assign(process.env, {
   DATABASE_URL: own.href,
   AUTH_SECRET: randomBytes(32).toString('hex'),
   WINDLASS_SMTP_URL: inject('mail').smtpUrl,
+  // Nothing answers there; what it would say is given to the functions that listen to it.
+  WINDLASS_OIDC_ISSUER: 'https://identity.example',
+  WINDLASS_OIDC_CLIENT_ID: 'windlass',
+  WINDLASS_OIDC_CLIENT_SECRET: 'no secret, since nobody listens',
   WINDLASS_DEMO_PASSWORD: 'nine lanterns over the pier',
   WINDLASS_LOG_LEVEL: process.env['WINDLASS_LOG_LEVEL'] ?? 'silent',
 });

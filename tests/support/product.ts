@@ -18,6 +18,7 @@ export default async function setUp(): Promise<() => Promise<void>> {
     web: await findFreePort(),
     smtp: await findFreePort(),
     letters: await findFreePort(),
+    identity: await findFreePort(),
   };
   const origin = `http://127.0.0.1:${ports.web}`;
   const demoPassword = 'nine lanterns over the pier';
@@ -29,6 +30,7 @@ export default async function setUp(): Promise<() => Promise<void>> {
     databaseUrl: cluster.url,
     ports,
     catchMail: true,
+    inventIdentities: true,
     seed: true,
     variables: {
       AUTH_SECRET: randomBytes(32).toString('hex'),

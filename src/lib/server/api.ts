@@ -6,6 +6,7 @@ import type { Operation, Problem } from '../domain/api';
 import { uuidParam } from '../domain/identifiers';
 import { findBearer, type Bearer } from './api-tokens';
 import { log } from './log';
+import { sayWhatTokenMisses } from './team-requirements';
 import type { Membership } from './teams';
 import { clientNetwork, limitRate, takeFrom } from './rate-limits';
 
@@ -81,6 +82,7 @@ async function identify(event: RequestEvent): Promise<Bearer> {
   const address = event.getClientAddress();
   const token = /^Bearer (\S+)$/i.exec(event.request.headers.get('authorization') ?? '')?.[1];
   const bearer = token === undefined ? null : await findBearer(token, address);
+  if (bearer?.missing) error(403, sayWhatTokenMisses(bearer.missing));
   if (bearer) return bearer;
   const wait = await limitRate(['wrong token from a client', clientNetwork(address)]);
   if (wait !== null) error(429, `Too many wrong tokens. Wait ${wait} seconds.`);

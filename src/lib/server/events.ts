@@ -23,3 +23,12 @@ export async function recordEvent(
     details,
   });
 }
+
+/** Adds a line to the record of what happened to an account, which belongs to no team. */
+export async function recordAccountEvent(
+  executor: Executor,
+  userId: string,
+  action: string,
+): Promise<void> {
+  await executor.insert(events).values({ actorId: userId, action, subject: `user:${userId}` });
+}

@@ -2,7 +2,7 @@
 import type { z } from 'zod';
 
 /** Fields whose content never travels back to the page. */
-const SECRET_FIELDS = ['password', 'current', 'token'];
+const SECRET_FIELDS = ['password', 'current', 'token', 'code'];
 
 export interface FormFaults {
   /** What was written, for filling the form again. */

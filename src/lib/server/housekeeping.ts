@@ -10,6 +10,7 @@ import { forgetFullBuckets } from './rate-limits';
 import * as sessions from './sessions';
 import * as webhookLog from './webhook-log';
 import * as workers from './workers';
+import * as signInSteps from './sign-in-steps';
 
 const INTERVAL_MS = 3_600_000;
 
@@ -24,6 +25,7 @@ export async function tidy(): Promise<void> {
   await sessions.forgetEnded();
   await webhookLog.forgetOld();
   await workers.forgetGone();
+  await signInSteps.forgetExpired();
   await forgetFullBuckets();
 }
 

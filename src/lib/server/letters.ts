@@ -89,6 +89,83 @@ export function passwordChangedLetter(name: string): Letter {
   });
 }
 
+/** What every letter about the ways into an account ends with. */
+const CHECK_ACCOUNT = { label: 'Look at my account', path: '/account' } as const;
+const NOT_ME =
+  'If this was not you, choose a new password at once, end the other sign-ins, and look at your second factor.';
+
+export function secondFactorOnLetter(name: string): Letter {
+  return compose({
+    subject: 'Your second factor is on',
+    greeting: `Hello ${name},`,
+    lines: [
+      'From now on signing in to your account on Windlass also asks for a code of your app. Keep the recovery codes where you find them without your phone.',
+    ],
+    link: CHECK_ACCOUNT,
+    closing: NOT_ME,
+  });
+}
+
+export function secondFactorOffLetter(name: string): Letter {
+  return compose({
+    subject: 'Your second factor is off',
+    greeting: `Hello ${name},`,
+    lines: [
+      'Signing in to your account on Windlass no longer asks for a code. Its recovery codes stopped working.',
+    ],
+    link: CHECK_ACCOUNT,
+    closing: NOT_ME,
+  });
+}
+
+export function recoveryCodeUsedLetter(name: string, left: number): Letter {
+  return compose({
+    subject: 'A recovery code was used',
+    greeting: `Hello ${name},`,
+    lines: [
+      `A recovery code was used just now in place of a code of your app. ${left === 1 ? 'One is' : `${left} are`} left; you can make new ones.`,
+    ],
+    link: CHECK_ACCOUNT,
+    closing: NOT_ME,
+  });
+}
+
+export function wrongCodesLetter(name: string): Letter {
+  return compose({
+    subject: 'Wrong codes were tried',
+    greeting: `Hello ${name},`,
+    lines: [
+      'Somebody gave several wrong codes for the second factor of your account on Windlass. They were refused. Who gets that far knows your password, or signed in as you elsewhere.',
+    ],
+    link: { label: 'Choose a new password', path: '/forgot' },
+    closing: 'If this was you, there is nothing to do.',
+  });
+}
+
+export function singleSignOnLinkedLetter(name: string, provider: string): Letter {
+  return compose({
+    subject: 'Your account can be opened another way',
+    greeting: `Hello ${name},`,
+    lines: [
+      `Somebody signed in to Windlass through ${provider}, which says that this address is theirs. From now on your account opens that way, too.`,
+    ],
+    link: CHECK_ACCOUNT,
+    closing: NOT_ME,
+  });
+}
+
+export function noPasswordLetter(name: string, provider: string): Letter {
+  return compose({
+    subject: 'Your account has no password',
+    greeting: `Hello ${name},`,
+    lines: [
+      `Somebody, probably you, asked for a new password or a new account on Windlass with this address. Its account has no password: sign in through ${provider}.`,
+    ],
+    link: { label: 'Sign in', path: '/sign-in' },
+    closing: 'If this was not you, there is nothing to do. Nothing was changed.',
+  });
+}
+
 /** Article and noun of a role: "a chemist". */
 const aRole = (role: Role) => `a ${role}`;
 

@@ -1,10 +1,12 @@
 /** How a request with a partner's link gets in: the link in the address, and the proof of its password in a cookie. */
 import { error, type RequestEvent } from '@sveltejs/kit';
 import { describeWait } from '../domain/waiting';
+import { environment } from './environment';
 import * as partnerLinks from './partner-links';
 import { clientNetwork, limitRate } from './rate-limits';
 
-const PROOF_COOKIE = 'windlass-partner';
+/** Bound to the link's own address, which the prefix `__Host-` does not allow. */
+const PROOF_COOKIE = `${environment.WINDLASS_ORIGIN.startsWith('https:') ? '__Secure-' : ''}windlass-partner`;
 const PROOF_SECONDS = 3600;
 
 type LinkEvent = Pick<RequestEvent, 'getClientAddress' | 'cookies' | 'url'> & {

@@ -15,6 +15,10 @@ interface Limit {
 const limits = {
   'sign in to an address': { capacity: 10, perMinute: 1 },
   'sign in from a client': { capacity: 30, perMinute: 6 },
+  'code of an account': { capacity: 5, perMinute: 0.2 },
+  'code from a client': { capacity: 30, perMinute: 6 },
+  'letter about wrong codes': { capacity: 1, perMinute: 1 / 1440 },
+  'single sign-on from a client': { capacity: 30, perMinute: 6 },
   'sign up from a client': { capacity: 10, perMinute: 0.5 },
   'letter to an address': { capacity: 4, perMinute: 0.1 },
   'letter from a client': { capacity: 10, perMinute: 0.5 },

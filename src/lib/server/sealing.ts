@@ -1,37 +1,38 @@
-/** Secrets that the product has to read again: sealed in the database, opened with a key from AUTH_SECRET. */
+/**
+ * Encrypts what must be read again later and would be of use to a thief of the database: AES-256-GCM (NIST SP 800-38D)
+ * under a key that HKDF (RFC 5869) derives from AUTH_SECRET, one for each purpose. Whom a text belongs to is
+ * authenticated with it, so that no row's text works in another row.
+ */
 import { createCipheriv, createDecipheriv, hkdfSync, randomBytes } from 'node:crypto';
 import { environment } from './environment';
 
-const ALGORITHM = 'aes-256-gcm';
+const CIPHER = 'aes-256-gcm';
+const KEY_BYTES = 32;
 const NONCE_BYTES = 12;
 const TAG_BYTES = 16;
 
-/** One key for each use, so that what is sealed for one cannot be opened as another. */
-function keyFor(use: string): Buffer {
-  return Buffer.from(hkdfSync('sha256', environment.AUTH_SECRET, '', `windlass ${use}`, 32));
+function keyOf(purpose: string): Buffer {
+  return Buffer.from(
+    hkdfSync('sha256', environment.AUTH_SECRET, '', `windlass ${purpose}`, KEY_BYTES),
+  );
 }
 
-/** The text sealed for a use, as base64url of nonce, ciphertext and tag. */
-export function seal(use: string, text: string): string {
+/** Encrypts a text for a purpose and an owner; the answer is base64url of nonce, tag and cipher text. */
+export function seal(text: string, purpose: string, owner: string): string {
   const nonce = randomBytes(NONCE_BYTES);
-  const cipher = createCipheriv(ALGORITHM, keyFor(use), nonce);
+  const cipher = createCipheriv(CIPHER, keyOf(purpose), nonce).setAAD(Buffer.from(owner));
   const sealed = Buffer.concat([cipher.update(text, 'utf8'), cipher.final()]);
-  return Buffer.concat([nonce, sealed, cipher.getAuthTag()]).toString('base64url');
+  return Buffer.concat([nonce, cipher.getAuthTag(), sealed]).toString('base64url');
 }
 
-/** Opens what was sealed for a use; null where AUTH_SECRET is not the one it was sealed with, or it was changed. */
-export function unseal(use: string, sealed: string): string | null {
+/** Reads what `seal` wrote; throws when it was changed, belongs to another owner, or AUTH_SECRET is another one. */
+export function unseal(sealed: string, purpose: string, owner: string): string {
   const bytes = Buffer.from(sealed, 'base64url');
-  if (bytes.length < NONCE_BYTES + TAG_BYTES) return null;
-  const tag = bytes.subarray(-TAG_BYTES);
-  const decipher = createDecipheriv(ALGORITHM, keyFor(use), bytes.subarray(0, NONCE_BYTES), {
-    authTagLength: TAG_BYTES,
-  });
-  decipher.setAuthTag(tag);
-  try {
-    const text = decipher.update(bytes.subarray(NONCE_BYTES, -TAG_BYTES));
-    return Buffer.concat([text, decipher.final()]).toString('utf8');
-  } catch {
-    return null;
-  }
+  const nonce = bytes.subarray(0, NONCE_BYTES);
+  const tag = bytes.subarray(NONCE_BYTES, NONCE_BYTES + TAG_BYTES);
+  const decipher = createDecipheriv(CIPHER, keyOf(purpose), nonce, { authTagLength: TAG_BYTES })
+    .setAAD(Buffer.from(owner))
+    .setAuthTag(tag);
+  const text = decipher.update(bytes.subarray(NONCE_BYTES + TAG_BYTES));
+  return Buffer.concat([text, decipher.final()]).toString('utf8');
 }

@@ -4,12 +4,15 @@ import type { SignUp } from '../domain/accounts';
 import type { EnergyUnit } from '../domain/energy-units';
 import { findPasswordFault } from '../domain/passwords';
 import { db, type Executor } from './db';
-import { events, memberships, users } from './db/schema';
+import { memberships, users } from './db/schema';
+import { environment } from './environment';
+import { recordAccountEvent } from './events';
 import * as invitations from './invitations';
 import * as letterTokens from './letter-tokens';
 import {
   alreadyMemberLetter,
   confirmAddressLetter,
+  noPasswordLetter,
   passwordChangedLetter,
   resetPasswordLetter,
 } from './letters';
@@ -19,21 +22,14 @@ import { openTeamWithin } from './memberships';
 import { hashPassword, verifyPassword } from './passwords';
 import * as sessions from './sessions';
 import type { Client } from './sessions';
+import * as signInSteps from './sign-in-steps';
+import type { Begun } from './sign-in-steps';
 
 export type SignInFault = 'wrong' | 'unconfirmed' | 'letter';
 
 async function findByEmail(email: string) {
   const [user] = await db.select().from(users).where(eq(users.email, email));
   return user ?? null;
-}
-
-/** Adds a line to the record of what happened to an account, which belongs to no team. */
-async function recordAccountEvent(
-  executor: Executor,
-  userId: string,
-  action: string,
-): Promise<void> {
-  await executor.insert(events).values({ actorId: userId, action, subject: `user:${userId}` });
 }
 
 /**
@@ -53,7 +49,7 @@ export async function signUp({ name, email, password }: SignUp): Promise<void> {
         setWhere: sql`${users.confirmedAt} is null`,
       })
       .returning({ id: users.id });
-    if (!opened) return alreadyMemberLetter((await findByEmail(email))!.name);
+    if (!opened) return letterToOwner((await findByEmail(email))!);
     await openOwnTeam(tx, opened.id, name);
     await recordAccountEvent(tx, opened.id, 'signed up');
     return confirmAddressLetter(name, await letterTokens.issue(tx, opened.id, 'confirm-address'));
@@ -61,8 +57,17 @@ export async function signUp({ name, email, password }: SignUp): Promise<void> {
   post(email, letter);
 }
 
+/** True when the account is opened through the identity provider, which is there, and in no other way. */
+const signsInElsewhere = ({ passwordHash }: { passwordHash: string | null }) =>
+  passwordHash === null && environment.WINDLASS_OIDC_ISSUER !== undefined;
+
+const letterToOwner = (owner: { name: string; passwordHash: string | null }): Letter =>
+  signsInElsewhere(owner)
+    ? noPasswordLetter(owner.name, environment.WINDLASS_OIDC_NAME)
+    : alreadyMemberLetter(owner.name);
+
 /** Gives a person without a team one of their own, which they lead. */
-async function openOwnTeam(executor: Executor, userId: string, name: string): Promise<void> {
+export async function openOwnTeam(executor: Executor, userId: string, name: string): Promise<void> {
   const present = await executor
     .select({ teamId: memberships.teamId })
     .from(memberships)
@@ -109,13 +114,14 @@ export async function hasAccount(email: string): Promise<boolean> {
 }
 
 /**
- * Checks address and password and begins a session; with the secret of a letter it first confirms the address.
- * @returns the session, or why there is none: 'unconfirmed' is only told to who knows the password
+ * Checks address and password and begins a session, or the step of the second factor; with the secret of a letter it
+ * first confirms the address.
+ * @returns what was begun, or why there is none: 'unconfirmed' is only told to who knows the password
  */
 export async function signIn(
   given: { email: string; password: string; confirmToken?: string },
   client: Client,
-): Promise<{ userId: string; sessionId: string } | { fault: SignInFault }> {
+): Promise<Begun | { fault: SignInFault }> {
   const user = await findByEmail(given.email);
   const isRight = await verifyPassword(user?.passwordHash ?? null, given.password);
   if (!user || !isRight) return { fault: 'wrong' };
@@ -124,7 +130,7 @@ export async function signIn(
   } else if (!user.confirmedAt) {
     return { fault: 'unconfirmed' };
   }
-  return { userId: user.id, sessionId: await sessions.begin(user.id, client) };
+  return signInSteps.proceed(user.id, sessions.byPassword(), client);
 }
 
 async function confirmAddress(userId: string, token: string): Promise<boolean> {
@@ -158,11 +164,16 @@ export function resendConfirmation(email: string): void {
   });
 }
 
-/** Sends a letter with which the owner of the address can choose a new password, if there is an account. */
+/**
+ * Sends a letter with which the owner of the address can choose a new password, if there is an account. One that is
+ * opened by single sign-on gets no password by letter: that would be a way around the provider and its rules. Where the
+ * operator took the provider away, a letter is the only way back in.
+ */
 export function forgotPassword(email: string): void {
   later(async () => {
     const user = await findByEmail(email);
     if (!user) return;
+    if (signsInElsewhere(user)) return post(email, letterToOwner(user));
     const token = await letterTokens.issue(db, user.id, 'reset-password');
     post(email, resetPasswordLetter(user.name, token));
   });
@@ -189,6 +200,7 @@ export async function resetPassword(
       .set({ passwordHash, confirmedAt: sql`coalesce(${users.confirmedAt}, now())` })
       .where(eq(users.id, owner.id));
     await sessions.revokeAll(tx, owner.id);
+    await signInSteps.endAll(tx, owner.id);
     await letterTokens.revoke(tx, owner.id, 'confirm-address');
     await recordAccountEvent(tx, owner.id, 'reset password');
     return true;
@@ -218,6 +230,7 @@ export async function changePassword(
   await db.transaction(async (tx) => {
     await tx.update(users).set({ passwordHash }).where(eq(users.id, user.id));
     await sessions.revokeAll(tx, user.id, who.sessionId);
+    await signInSteps.endAll(tx, user.id);
     await letterTokens.revoke(tx, user.id, 'reset-password');
     await recordAccountEvent(tx, user.id, 'changed password');
   });

@@ -13,7 +13,7 @@ import { dropWaiting, limitSendingByHand, queueDelivery } from './webhook-messag
 
 /** Begins every secret, so that one that leaked into a file is found by looking for it. */
 const PREFIX = 'windlass_hook_';
-const USE = 'webhook secret';
+const PURPOSE = 'webhook secret';
 
 /** What is told once about a new webhook, or about a new secret of one. */
 export interface MadeWebhook {
@@ -76,7 +76,7 @@ export async function create(
         createdBy: member.userId,
         name,
         url,
-        secret: seal(USE, secret),
+        secret: seal(secret, PURPOSE, member.teamId),
       })
       .returning({ id: webhooks.id });
     await record(tx, member, 'add webhook', { id, name, url });
@@ -124,7 +124,7 @@ export async function renewSecret(member: Member, webhookId: string): Promise<Ma
       .set({
         previousSecret: webhooks.secret,
         previousUntil: sql`now() + make_interval(hours => ${OVERLAP_HOURS})`,
-        secret: seal(USE, secret),
+        secret: seal(secret, PURPOSE, member.teamId),
       })
       .where(own(member, webhookId))
       .returning();
@@ -162,11 +162,16 @@ export async function sendTest(member: Member, webhookId: string): Promise<strin
 
 /** What signs at this moment, the present secret first; empty where AUTH_SECRET is another one than it was. */
 export function openSecrets(row: {
+  readonly teamId: string;
   readonly secret: string;
   readonly previousSecret: string | null;
   readonly previousUntil: Date | null;
 }): string[] {
   const isOverlap = row.previousUntil !== null && row.previousUntil.getTime() > Date.now();
   const sealed = isOverlap ? [row.secret, row.previousSecret] : [row.secret];
-  return sealed.flatMap((each) => (each && unseal(USE, each)) ?? []);
+  try {
+    return sealed.flatMap((each) => (each ? unseal(each, PURPOSE, row.teamId) : []));
+  } catch {
+    return [];
+  }
 }

@@ -26,6 +26,7 @@ import {
 } from 'drizzle-orm/pg-core';
 import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
+import { signInMethods } from '../../domain/sign-in-strength';
 import type { ApiScope } from '../../domain/api';
 import type { Rotor } from '../../domain/submission';
 
@@ -54,6 +55,7 @@ export const taskStateEnum = pgEnum('task_state', [
 export const verdictEnum = pgEnum('verdict', ['ready', 'warning', 'error']);
 export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload', 'program']);
 export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
+export const signInMethodEnum = pgEnum('sign_in_method', signInMethods);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
 
 /** People. The address is stored in lower case. */
@@ -63,7 +65,8 @@ export const users = pgTable(
     id: uuid('id').primaryKey().defaultRandom(),
     email: text('email').notNull().unique(),
     name: text('name').notNull(),
-    passwordHash: text('password_hash').notNull(),
+    /** Null for who signs in by single sign-on only. */
+    passwordHash: text('password_hash'),
     confirmedAt: moment('confirmed_at'),
     /** In which unit the person reads energies. */
     energyUnit: energyUnitEnum('energy_unit').notNull().default('kcal/mol'),
@@ -88,8 +91,74 @@ export const sessions = pgTable(
     seenAt: moment('seen_at').notNull().defaultNow(),
     expiresAt: moment('expires_at').notNull(),
     revokedAt: moment('revoked_at'),
+    method: signInMethodEnum('method').notNull().default('password'),
+    /** True when a second factor was shown, here or (as it says) at the identity provider. */
+    withSecondFactor: boolean('with_second_factor').notNull().default(false),
+    /** When the person last proved who they are; null where the identity provider did not say. */
+    provedAt: moment('proved_at'),
   },
   (table) => [index('sessions_user').on(table.userId, table.seenAt)],
+);
+
+/** Sign-ins whose first factor was right and that wait for the code of the second. */
+export const signInSteps = pgTable(
+  'sign_in_steps',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    method: signInMethodEnum('method').notNull(),
+    provedAt: moment('proved_at'),
+    createdAt: created(),
+    expiresAt: moment('expires_at').notNull(),
+  },
+  (table) => [index('sign_in_steps_user').on(table.userId)],
+);
+
+/** Time-based one-time passwords (RFC 6238), one for a person. */
+export const secondFactors = pgTable('second_factors', {
+  userId: uuid('user_id')
+    .primaryKey()
+    .references(() => users.id, { onDelete: 'cascade' }),
+  /** Encrypted, see sealing.ts. */
+  secret: text('secret').notNull(),
+  /** Null until the first right code was given. */
+  confirmedAt: moment('confirmed_at'),
+  /** The time step of the last code that was taken: no code counts twice. */
+  lastStep: integer('last_step').notNull().default(0),
+  createdAt: created(),
+});
+
+/** Codes for who has lost the second factor, each good once; argon2id hashes. */
+export const recoveryCodes = pgTable(
+  'recovery_codes',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    codeHash: text('code_hash').notNull(),
+    usedAt: moment('used_at'),
+  },
+  (table) => [index('recovery_codes_user').on(table.userId)],
+);
+
+/** Who somebody is at an identity provider: issuer and subject never change, addresses may. */
+export const identities = pgTable(
+  'identities',
+  {
+    issuer: text('issuer').notNull(),
+    subject: text('subject').notNull(),
+    userId: uuid('user_id')
+      .notNull()
+      .references(() => users.id, { onDelete: 'cascade' }),
+    createdAt: created(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.issuer, table.subject] }),
+    unique('identities_one_of_a_provider').on(table.userId, table.issuer),
+  ],
 );
 
 /** Single-use secrets sent by mail, stored as SHA-256 hashes. */
@@ -118,6 +187,9 @@ export const rateBuckets = pgTable('rate_buckets', {
 export const teams = pgTable('teams', {
   id: uuid('id').primaryKey().defaultRandom(),
   name: text('name').notNull(),
+  /** How members must have signed in to see the team's data. */
+  requiresSecondFactor: boolean('requires_second_factor').notNull().default(false),
+  requiresSingleSignOn: boolean('requires_single_sign_on').notNull().default(false),
   createdAt: created(),
 });
 
@@ -398,6 +470,9 @@ export const apiTokens = pgTable(
     name: text('name').notNull(),
     tokenHash: text('token_hash').notNull().unique(),
     scopes: text('scopes').array().$type<readonly ApiScope[]>().notNull(),
+    /** How its maker was signed in: a team may require more than a password of tokens, too. */
+    method: signInMethodEnum('method').notNull().default('password'),
+    withSecondFactor: boolean('with_second_factor').notNull().default(false),
     createdAt: created(),
     expiresAt: moment('expires_at').notNull(),
     usedAt: moment('used_at'),

@@ -2,7 +2,12 @@ import { fail } from '@sveltejs/kit';
 import { changePasswordSchema, renameSchema, sessionSchema } from '$lib/domain/accounts';
 import { describeUserAgent } from '$lib/domain/user-agents';
 import { readForm } from '$lib/server/forms';
+import { requireFresh } from '$lib/server/freshness';
+import * as identities from '$lib/server/identities';
+import { findProvider } from '$lib/server/identity-provider';
+import { hasPassword } from '$lib/server/prove-again';
 import { limitRate } from '$lib/server/rate-limits';
+import * as secondFactor from '$lib/server/second-factor';
 import * as sessions from '$lib/server/sessions';
 import { whoIsSignedIn } from '$lib/server/teams';
 import * as users from '$lib/server/users';
@@ -18,6 +23,10 @@ export const load: PageServerLoad = async ({ locals }) => {
   const { user, sessionId } = whoIsSignedIn(locals);
   const list = await sessions.list(user.id);
   return {
+    hasPassword: await hasPassword(user.id),
+    hasSecondFactor: await secondFactor.isOn(user.id),
+    provider: findProvider()?.name ?? null,
+    isBound: await identities.isBoundToProvider(user.id),
     sessions: list.map(({ userAgent, ...session }) => ({
       ...session,
       program: describeUserAgent(userAgent),
@@ -35,8 +44,10 @@ export const actions: Actions = {
     return answer('name');
   },
 
-  changePassword: async ({ request, locals }) => {
+  changePassword: async (event) => {
+    const { request, locals } = event;
     const { user, sessionId } = whoIsSignedIn(locals);
+    requireFresh(event);
     const form = await readForm(request, changePasswordSchema);
     if (!form.data) return fail(400, answer('password', form.faults.errors));
     const wait = await limitRate(['sign in to an address', user.email]);

@@ -8,6 +8,7 @@ import {
   teamNameSchema,
 } from '$lib/domain/team-forms';
 import { nothing, readForm, type FormFaults } from '$lib/server/forms';
+import { requireFresh } from '$lib/server/freshness';
 import * as invitations from '$lib/server/invitations';
 import { limitLetters } from '$lib/server/letter-limits';
 import * as memberships from '$lib/server/memberships';
@@ -60,6 +61,7 @@ export const actions: Actions = {
   },
 
   changeRole: async (event) => {
+    requireFresh(event);
     const form = await readForm(event.request, changeRoleSchema);
     if (!form.data) return badForm('members', form.faults);
     const { member, role } = form.data;
@@ -69,6 +71,7 @@ export const actions: Actions = {
   },
 
   remove: async (event) => {
+    requireFresh(event);
     const form = await readForm(event.request, memberSchema);
     if (!form.data) return badForm('members', form.faults);
     const outcome = await memberships.remove(whoAsks(event.locals), form.data.member);
@@ -77,6 +80,7 @@ export const actions: Actions = {
   },
 
   handOver: async (event) => {
+    requireFresh(event);
     const form = await readForm(event.request, memberSchema);
     if (!form.data) return badForm('members', form.faults);
     await memberships.handOver(whoAsks(event.locals), form.data.member);

@@ -2,6 +2,7 @@ import { fail, redirect } from '@sveltejs/kit';
 import { joinSchema } from '$lib/domain/accounts';
 import { findPasswordFault } from '$lib/domain/passwords';
 import { faultOf, nothing, readForm } from '$lib/server/forms';
+import { findProvider } from '$lib/server/identity-provider';
 import * as invitations from '$lib/server/invitations';
 import { limitTries } from '$lib/server/letter-limits';
 import { rememberTeam, whoIsSignedIn } from '$lib/server/teams';
@@ -14,12 +15,14 @@ export const load: PageServerLoad = async (event) => {
   const token = event.url.searchParams.get('token') ?? '';
   const wait = await limitTries(event);
   const invitation = wait === null ? await invitations.find(token) : null;
-  if (!invitation) return { token, invitation: null, hasAccount: false };
+  const provider = findProvider()?.name ?? null;
+  if (!invitation) return { token, invitation: null, hasAccount: false, provider };
   const { teamName, email, role, invitedBy } = invitation;
   return {
     token,
     invitation: { teamName, email, role, invitedBy },
     hasAccount: await users.hasAccount(email),
+    provider,
   };
 };
 

@@ -1,6 +1,7 @@
 import { fail, redirect } from '@sveltejs/kit';
 import { addressFormSchema, signInSchema } from '$lib/domain/accounts';
 import { nothing, readForm } from '$lib/server/forms';
+import { findProvider } from '$lib/server/identity-provider';
 import { limitLetters } from '$lib/server/letter-limits';
 import { localPath } from '$lib/server/local-path';
 import * as users from '$lib/server/users';
@@ -8,8 +9,17 @@ import type { Actions, PageServerLoad } from './$types';
 import { tryToSignIn } from '../../../auth';
 
 export const load: PageServerLoad = ({ locals, url }) => {
-  if (locals.user) redirect(303, localPath(url.searchParams.get('next'), '/desk'));
-  return { isReset: url.searchParams.has('reset') };
+  const wentWrong = url.searchParams.get('fault') ?? url.searchParams.get('error');
+  if (locals.user) {
+    const next = localPath(url.searchParams.get('next'), '/desk');
+    redirect(303, wentWrong ? `/again?fault=${encodeURIComponent(wentWrong)}` : next);
+  }
+  return {
+    isReset: url.searchParams.has('reset'),
+    isLate: url.searchParams.has('late'),
+    provider: findProvider()?.name ?? null,
+    wentWrong,
+  };
 };
 
 export const actions: Actions = {
@@ -21,7 +31,8 @@ export const actions: Actions = {
       const status = 'wait' in refusal ? 429 : 400;
       return fail(status, { values: form.values, errors: nothing, refusal, isResent: false });
     }
-    redirect(303, localPath(event.url.searchParams.get('next'), '/desk'));
+    const next = localPath(event.url.searchParams.get('next'), '/desk');
+    redirect(303, event.locals.stepId ? `/sign-in/code?next=${encodeURIComponent(next)}` : next);
   },
 
   resend: async (event) => {
