@@ -23,6 +23,7 @@
  *
  * Parts of a route in brackets are filled from the place: see `fill` in the test.
  */
+import type { ApiScope } from '$lib/domain/api';
 import type { Place } from '../support/place';
 
 export interface Row {
@@ -43,11 +44,14 @@ export interface Row {
   readonly fresh?: true;
   readonly query?: string | ((place: Place) => string);
   readonly body?: unknown;
-  readonly scope?: 'read' | 'submit';
+  readonly scope?: ApiScope;
 }
 
 const own = 'own' as const;
 const fresh = true as const;
+const webhook = ({ webhookId }: Place) => ({ webhook: webhookId });
+/** A public address, never written to: the place's webhook is off, and no worker runs. */
+const newWebhook = { name: 'Another', url: 'https://9.9.9.9/hook' };
 const note = ({ noteId }: Place) => ({ note: noteId });
 /** The form of a plan, as it is when nothing but conformers is ticked. */
 const plan = { conformers: 'on', effort: 'quick', window: '6', temperature: '298.15' };
@@ -153,6 +157,30 @@ export const rows: Record<string, Row> = {
   'GET /(app)/team/record/record.csv': { may: 'lead', foreign: own },
   'GET /(app)/team/signing-in': { may: 'lead', foreign: own },
   'POST /(app)/team/signing-in': { may: 'lead', foreign: own, fresh },
+  'GET /(app)/team/webhooks': { may: 'lead', foreign: own },
+  'POST /(app)/team/webhooks?/create': { may: 'lead', foreign: own, form: newWebhook },
+  'POST /(app)/team/webhooks?/renew': { may: 'lead', form: webhook },
+  'POST /(app)/team/webhooks?/switch': {
+    may: 'lead',
+    form: (place) => ({ ...webhook(place), on: 'no' }),
+  },
+  'POST /(app)/team/webhooks?/remove': { may: 'lead', form: webhook },
+  'GET /(app)/team/webhooks/[id]': { may: 'lead' },
+  'POST /(app)/team/webhooks/[id]?/test': { may: 'lead' },
+  'POST /(app)/team/webhooks/[id]?/again': {
+    may: 'lead',
+    form: ({ deliveryId }) => ({ delivery: deliveryId }),
+  },
+
+  // Who operates the product
+  'GET /(operator)/operator': { may: 'operator' },
+  'POST /(operator)/operator?/order': { may: 'operator', form: { worker: 'one', order: 'pause' } },
+  'POST /(operator)/operator?/requeueReason': { may: 'operator', form: { reason: 'internal' } },
+  'POST /(operator)/operator?/requeueTask': {
+    may: 'operator',
+    form: ({ batchId }) => ({ task: batchId }),
+  },
+  'GET /metrics': { may: 'elsewhere' },
 
   // Work
   'GET /(app)/queue': { may: 'reader', foreign: own },
@@ -248,4 +276,9 @@ export const rows: Record<string, Row> = {
   'GET /api/v1/molecules/[id]': { may: 'reader', scope: 'read' },
   'GET /api/v1/molecules/[id]/bundle': { may: 'reader', scope: 'read' },
   'GET /api/v1/molecules/[id]/results/[result]': { may: 'reader', scope: 'read' },
+  'GET /api/v1/webhooks': { may: 'lead', foreign: own, scope: 'webhooks' },
+  'POST /api/v1/webhooks': { may: 'lead', foreign: own, scope: 'webhooks', body: newWebhook },
+  'DELETE /api/v1/webhooks/[id]': { may: 'lead', scope: 'webhooks' },
+  'POST /api/v1/webhooks/[id]/test': { may: 'lead', scope: 'webhooks' },
+  'GET /api/v1/webhooks/[id]/deliveries': { may: 'lead', scope: 'webhooks' },
 };

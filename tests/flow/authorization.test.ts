@@ -5,6 +5,7 @@
 import { eq } from 'drizzle-orm';
 import { randomUUID } from 'node:crypto';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import type { ApiScope } from '$lib/domain/api';
 import { roles, type Role } from '$lib/domain/roles';
 import * as apiTokens from '$lib/server/api-tokens';
 import { db } from '$lib/server/db';
@@ -54,9 +55,15 @@ const isPost = (way: string) => !way.startsWith('GET ');
 /** The address of a way: groups have none, and brackets are filled with what the place has. */
 function addressOf(way: string, row: Row, { batchId, moleculeId, draftId, ...at }: Place): string {
   const [route, action] = way.slice(way.indexOf(' ') + 1).split('?') as [string, string?];
-  const isDraft = route.includes('/preview');
+  const subjectId = route.includes('/preview')
+    ? draftId
+    : route.includes('/molecules/')
+      ? moleculeId
+      : route.includes('/webhooks/')
+        ? at.webhookId
+        : batchId;
   const fill: Record<string, string> = {
-    '[id]': isDraft ? draftId : route.includes('/molecules/') ? moleculeId : batchId,
+    '[id]': subjectId,
     '[result]': route.endsWith('/packed') ? at.scanId : at.resultId,
     '[token]': at.linkSecret,
   };
@@ -214,7 +221,7 @@ describe('for people of another team', () => {
 });
 
 describe('for people whose sign-in lacks what the team requires', () => {
-  it.each(guarded)('$way', async ({ way, row }) => {
+  it.each(guarded.filter(({ row }) => row.may !== 'operator'))('$way', async ({ way, row }) => {
     const { people, teamId } = place;
     await db.update(teams).set({ requiresSecondFactor: true }).where(eq(teams.id, teamId));
     try {
@@ -248,7 +255,7 @@ describe('for people whose sign-in is stale', () => {
 describe('for programs', () => {
   const operations = ways.filter((one) => isApi(one) && one.row.scope !== undefined);
 
-  const bearer = async (member: Member, scope: 'read' | 'submit') => ({
+  const bearer = async (member: Member, scope: ApiScope) => ({
     authorization: `Bearer ${await apiTokens.create(member, { name: 'one', scope, days: 7 })}`,
   });
 
@@ -268,7 +275,7 @@ describe('for programs', () => {
       const { outcome } = await send(at, await bearer(at.people[role], row.scope!));
       expect(expected, `for a ${role}: ${outcome}`).toContain(outcome);
     }
-    if (row.scope === 'submit') {
+    if (row.scope !== 'read') {
       const reading = await send(place, await bearer(place.people.lead, 'read'));
       expect(reading.outcome).toBe('forbidden');
     }

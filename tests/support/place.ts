@@ -15,6 +15,7 @@ import { board } from '$lib/server/note-board';
 import * as notes from '$lib/server/notes';
 import * as partnerLinks from '$lib/server/partner-links';
 import * as sessions from '$lib/server/sessions';
+import * as webhooks from '$lib/server/webhooks';
 import { client } from './accounts';
 import { bytesOf } from './batches';
 import { newTeam } from './people';
@@ -33,6 +34,9 @@ export interface Place {
   readonly tokenId: string;
   readonly sessionId: string;
   readonly invitationId: string;
+  /** A webhook that is off, and a delivery of it. */
+  readonly webhookId: string;
+  readonly deliveryId: string;
   readonly linkId: string;
   readonly linkSecret: string;
   /** Answers, where they were computed; else ids that nothing has. */
@@ -54,6 +58,12 @@ async function share(modeler: Member, batchId: string) {
   const linkSecret = await partnerLinks.create(modeler, form);
   const [link] = await partnerLinks.listOpen(modeler);
   return { linkSecret, linkId: link!.id };
+}
+
+async function addWebhook(lead: Member, name: string) {
+  const { id: webhookId } = await webhooks.create(lead, { name, url: 'https://9.9.9.9/hook' });
+  await webhooks.switchTo(lead, webhookId, false);
+  return { webhookId, deliveryId: await webhooks.sendTest(lead, webhookId) };
 }
 
 async function writeNote(chemist: Member, moleculeId: string, text: string): Promise<string> {
@@ -97,6 +107,7 @@ export async function newPlace(): Promise<Place> {
     tokenId: token!.id,
     sessionId: await sessions.begin(chemist.userId, client),
     invitationId: invitation!.id,
+    ...(await addWebhook(lead, marker)),
     ...(await share(modeler, batchId)),
     resultId: randomUUID(),
     scanId: randomUUID(),
