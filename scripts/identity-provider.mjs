@@ -4,7 +4,6 @@
  */
 import { randomBytes } from 'node:crypto';
 import { createServer } from 'node:http';
-import { Provider, interactionPolicy } from 'oidc-provider';
 
 /** Addresses end in .example, which no mail can ever reach (RFC 2606). Malik Osei also has a password in the demo. */
 const people = new Map([
@@ -34,7 +33,19 @@ async function readBody(request) {
   return Buffer.concat(chunks).toString();
 }
 
-function makeProvider({ issuer, clientId, clientSecret, returnTo, signedOutTo }) {
+/** The library warns of an old Node.js, and that keys and sign-ins are gone after a restart, which is as it shall be here. */
+async function quietly(task) {
+  const { warn } = console;
+  console.warn = () => undefined;
+  try {
+    return await task();
+  } finally {
+    console.warn = warn;
+  }
+}
+
+async function makeProvider({ issuer, clientId, clientSecret, returnTo, signedOutTo }) {
+  const { Provider, interactionPolicy } = await import('oidc-provider');
   const policy = interactionPolicy.base();
   // The one client is the product itself: nobody has to agree to anything.
   policy.remove('consent');
@@ -100,13 +111,15 @@ export async function startIdentityProvider({ port, origin }) {
   const issuer = `http://127.0.0.1:${port}`;
   const clientId = 'windlass';
   const clientSecret = randomBytes(24).toString('base64url');
-  const provider = makeProvider({
-    issuer,
-    clientId,
-    clientSecret,
-    returnTo: `${origin}/auth/callback/sso`,
-    signedOutTo: `${origin}/signed-out`,
-  });
+  const provider = await quietly(() =>
+    makeProvider({
+      issuer,
+      clientId,
+      clientSecret,
+      returnTo: `${origin}/auth/callback/sso`,
+      signedOutTo: `${origin}/signed-out`,
+    }),
+  );
   const answer = provider.callback();
   const server = createServer((request, response) => {
     const isOurs = request.headers.host === `127.0.0.1:${port}`;
