@@ -1,6 +1,8 @@
 /** The only reader of process.env: every setting of the web and the worker, checked once when the process starts. */
 import { z } from 'zod';
 
+const limit = (standard: number) => z.coerce.number().int().min(1).max(1e9).default(standard);
+
 const schema = z.object({
   DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/ }),
   /** Signs the session cookie. */
@@ -21,6 +23,15 @@ const schema = z.object({
   WINDLASS_WORKER_CONCURRENCY: z.coerce.number().int().min(0).max(256).default(0),
   /** Longest time one task may take, seconds. */
   WINDLASS_TASK_SECONDS: z.coerce.number().int().min(10).max(86_400).default(1_800),
+  /** What a team may use up until its leads set something else, and the most that they may set. */
+  WINDLASS_TEAM_QUEUED_TASKS: limit(100_000),
+  WINDLASS_TEAM_QUEUED_TASKS_CEILING: limit(1_000_000),
+  WINDLASS_TEAM_ATOMS: limit(200),
+  WINDLASS_TEAM_ATOMS_CEILING: limit(200),
+  WINDLASS_TEAM_MEGABYTES: limit(10_000),
+  WINDLASS_TEAM_MEGABYTES_CEILING: limit(100_000),
+  WINDLASS_TEAM_MONTHS: limit(36),
+  WINDLASS_TEAM_MONTHS_CEILING: limit(240),
   WINDLASS_LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 
