@@ -3,8 +3,11 @@ import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
 import { closeDatabase } from '../src/lib/server/db';
 import { log } from '../src/lib/server/log';
-import { stopQueue, workOnTasks } from '../src/lib/server/queue';
+import { keepHouse } from '../src/lib/server/housekeeping';
+import { closeDelivery, deliver } from '../src/lib/server/letter-delivery';
+import { stopQueue, workOnLetters, workOnTasks } from '../src/lib/server/queue';
 import { failAbandoned } from '../src/lib/server/tasks';
+import { keepLetters } from './letters';
 import { keepFingerprints } from './fingerprints';
 import { hearCancels, performTask } from './perform';
 import { closePool, concurrency } from './pool';
@@ -16,6 +19,8 @@ const name = `${hostname()} ${process.pid} ${randomUUID().slice(0, 4)}`;
 
 await hearCancels();
 await workOnTasks(concurrency, (taskId, lastTry) => performTask(taskId, name, lastTry));
+await workOnLetters(deliver);
+keepHouse();
 const check = setInterval(() => {
   failAbandoned().catch((error: unknown) =>
     log.warn({ error }, 'Looking for abandoned tasks failed; it is tried again'),
@@ -23,13 +28,14 @@ const check = setInterval(() => {
 }, ABANDONED_CHECK_MS);
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
+void keepLetters(ending.signal);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
 /** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
 async function stop(): Promise<void> {
   clearInterval(check);
   ending.abort();
-  await closePool();
+  await Promise.all([closePool(), closeDelivery()]);
   await stopQueue();
   await closeDatabase();
 }

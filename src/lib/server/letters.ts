@@ -13,6 +13,8 @@ interface Content {
   readonly lines: readonly string[];
   readonly link?: { readonly label: string; readonly path: string };
   readonly closing: string;
+  /** How long the letter is worth reading. */
+  readonly hours?: number;
 }
 
 const escapeHtml = (text: string) =>
@@ -26,7 +28,7 @@ function button(label: string, url: string): string {
   return `<p style="margin:24px 0"><a href="${escapeHtml(url)}" style="${style}">${escapeHtml(label)}</a></p>`;
 }
 
-function compose({ subject, greeting, lines, link, closing }: Content): Letter {
+function compose({ subject, greeting, lines, link, closing, hours: worth }: Content): Letter {
   const url = link ? new URL(link.path, environment.WINDLASS_ORIGIN).href : null;
   const text = [greeting, ...lines, ...(url ? [url] : []), closing, 'Windlass'].join('\n\n');
   const html = `<!doctype html>
@@ -37,7 +39,7 @@ ${[greeting, ...lines].map(paragraph).join('\n')}
 ${link && url ? button(link.label, url) : ''}
 <p style="margin:0;color:#51616a;font-size:14px">${escapeHtml(closing)}</p>
 </div></body></html>`;
-  return { subject, text, html };
+  return { subject, text, html, hours: worth };
 }
 
 const hours = (count: number) => (count === 1 ? 'one hour' : `${count} hours`);
@@ -51,6 +53,7 @@ export function confirmAddressLetter(name: string, token: string): Letter {
     ],
     link: { label: 'Confirm my address', path: `/confirm?token=${token}` },
     closing: `The link works once, within ${hours(LETTER_HOURS['confirm-address'])}. If you did not sign up, leave this letter alone: without it the account stays closed.`,
+    hours: LETTER_HOURS['confirm-address'],
   });
 }
 
@@ -73,6 +76,7 @@ export function resetPasswordLetter(name: string, token: string): Letter {
     lines: ['A new password was asked for your account on Windlass. Choose it here.'],
     link: { label: 'Choose a new password', path: `/reset?token=${token}` },
     closing: `The link works once, within ${hours(LETTER_HOURS['reset-password'])}. If you did not ask, leave this letter alone: your password stays as it is.`,
+    hours: LETTER_HOURS['reset-password'],
   });
 }
 

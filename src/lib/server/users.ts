@@ -14,7 +14,7 @@ import {
   resetPasswordLetter,
 } from './letters';
 import { log } from './log';
-import { post, type Letter } from './mail';
+import { postWithin, type Letter } from './mail';
 import { openTeamWithin } from './memberships';
 import { hashPassword, verifyPassword } from './passwords';
 import * as sessions from './sessions';
@@ -43,7 +43,8 @@ async function recordAccountEvent(
  */
 export async function signUp({ name, email, password }: SignUp): Promise<void> {
   const passwordHash = await hashPassword(password);
-  const letter = await db.transaction(async (tx): Promise<Letter> => {
+  await db.transaction(async (tx) => {
+    const send = (letter: Letter) => postWithin(tx, email, letter);
     const [opened] = await tx
       .insert(users)
       .values({ name, email, passwordHash })
@@ -53,12 +54,12 @@ export async function signUp({ name, email, password }: SignUp): Promise<void> {
         setWhere: sql`${users.confirmedAt} is null`,
       })
       .returning({ id: users.id });
-    if (!opened) return alreadyMemberLetter((await findByEmail(email))!.name);
+    if (!opened) return send(alreadyMemberLetter((await findByEmail(email))!.name));
     await openOwnTeam(tx, opened.id, name);
     await recordAccountEvent(tx, opened.id, 'signed up');
-    return confirmAddressLetter(name, await letterTokens.issue(tx, opened.id, 'confirm-address'));
+    const token = await letterTokens.issue(tx, opened.id, 'confirm-address');
+    return send(confirmAddressLetter(name, token));
   });
-  post(email, letter);
 }
 
 /** Gives a person without a team one of their own, which they lead. */
@@ -153,8 +154,10 @@ export function resendConfirmation(email: string): void {
   later(async () => {
     const user = await findByEmail(email);
     if (!user || user.confirmedAt) return;
-    const token = await letterTokens.issue(db, user.id, 'confirm-address');
-    post(email, confirmAddressLetter(user.name, token));
+    await db.transaction(async (tx) => {
+      const token = await letterTokens.issue(tx, user.id, 'confirm-address');
+      await postWithin(tx, email, confirmAddressLetter(user.name, token));
+    });
   });
 }
 
@@ -163,8 +166,10 @@ export function forgotPassword(email: string): void {
   later(async () => {
     const user = await findByEmail(email);
     if (!user) return;
-    const token = await letterTokens.issue(db, user.id, 'reset-password');
-    post(email, resetPasswordLetter(user.name, token));
+    await db.transaction(async (tx) => {
+      const token = await letterTokens.issue(tx, user.id, 'reset-password');
+      await postWithin(tx, email, resetPasswordLetter(user.name, token));
+    });
   });
 }
 
@@ -191,11 +196,10 @@ export async function resetPassword(
     await sessions.revokeAll(tx, owner.id);
     await letterTokens.revoke(tx, owner.id, 'confirm-address');
     await recordAccountEvent(tx, owner.id, 'reset password');
+    await postWithin(tx, owner.email, passwordChangedLetter(owner.name));
     return true;
   });
-  if (!isDone) return 'letter';
-  post(owner.email, passwordChangedLetter(owner.name));
-  return 'done';
+  return isDone ? 'done' : 'letter';
 }
 
 export type PasswordChangeFault = {
@@ -220,8 +224,8 @@ export async function changePassword(
     await sessions.revokeAll(tx, user.id, who.sessionId);
     await letterTokens.revoke(tx, user.id, 'reset-password');
     await recordAccountEvent(tx, user.id, 'changed password');
+    await postWithin(tx, user.email, passwordChangedLetter(user.name));
   });
-  post(user.email, passwordChangedLetter(user.name));
   return null;
 }
 
