@@ -115,11 +115,7 @@ async function end(letter: Claimed, state: 'sent' | 'given-up' | 'unsure', reaso
     .update(letters)
     .set(ended(state, reason))
     .where(
-      and(
-        eq(letters.id, letter.id),
-        eq(letters.attempt, letter.attempt),
-        isNull(letters.endedAt),
-      ),
+      and(eq(letters.id, letter.id), eq(letters.attempt, letter.attempt), isNull(letters.endedAt)),
     );
   if (state !== 'sent') log.error({ letter: letter.id, state, reason }, 'A letter did not arrive');
 }

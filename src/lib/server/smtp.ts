@@ -56,11 +56,15 @@ export async function handIn(message: Message, begin: () => Promise<void>): Prom
     await converse(async (connection, fail) => {
       await new Promise<void>((resolve, reject) => {
         fail(reject);
-        connection.send({ ...envelope, from: envelope.from || '' }, Readable.from(body()), (error) => {
-          isOver = true;
-          if (error) reject(error);
-          else resolve();
-        });
+        connection.send(
+          { ...envelope, from: envelope.from || '' },
+          Readable.from(body()),
+          (error) => {
+            isOver = true;
+            if (error) reject(error);
+            else resolve();
+          },
+        );
       });
     });
     return { outcome: 'sent' };
@@ -87,7 +91,10 @@ function judge(error: SMTPConnection.SMTPError, isBegun: boolean): HandedIn {
 
 /** Connects, signs in where the settings say so, and closes again, whatever happens. */
 async function converse(
-  talk: (connection: SMTPConnection, fail: (reject: (error: Error) => void) => void) => Promise<void>,
+  talk: (
+    connection: SMTPConnection,
+    fail: (reject: (error: Error) => void) => void,
+  ) => Promise<void>,
 ): Promise<void> {
   const { auth, ...options } = parseConnectionUrl(environment.WINDLASS_SMTP_URL) as ReturnType<
     typeof parseConnectionUrl

@@ -2,6 +2,7 @@
 import { asc, eq, sql } from 'drizzle-orm';
 import { CHEMIST_BATCH_LIMIT, may } from '../domain/roles';
 import type { Plan } from '../domain/submission';
+import { finishQuietly } from './batch-finish';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks } from './db/schema';
 import { ownDraft } from './drafts';
@@ -61,6 +62,8 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
     if (queued + reused === 0) {
       throw new SubmissionError('Nothing in this batch can be computed with what was chosen.');
     }
+    // Who submits what is answered already sees so at once.
+    if (queued === 0) await finishQuietly(transaction, batchId);
     await recordEvent(transaction, member, 'submit batch', `batch:${batchId}`, {
       name: draft.name,
       queued,

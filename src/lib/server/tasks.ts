@@ -1,5 +1,6 @@
 /** Tasks: claimed, kept alive, finished, cancelled and run again. The row is the only truth shown to people. */
 import { and, asc, count, eq, inArray, lt, min, or, sql } from 'drizzle-orm';
+import { finishQuietly, noteFinish, reopen } from './batch-finish';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { recordEvent } from './events';
@@ -124,6 +125,7 @@ export async function fail(task: ClaimedTask, error: TaskError): Promise<void> {
     .update(tasks)
     .set({ state: 'failed', error, stage: '', finishedAt: sql`now()` })
     .where(held(task));
+  await noteFinish(task.batchId);
   await tell(db, 'batch-changed', [task.batchId]);
 }
 
@@ -150,7 +152,9 @@ export async function failAbandoned(): Promise<number> {
     .set({ state: 'failed', error: workerLost, finishedAt: sql`now()` })
     .where(and(eq(tasks.state, 'running'), lt(tasks.beatAt, ABANDONED)))
     .returning({ batchId: tasks.batchId });
-  await tell(db, 'batch-changed', [...new Set(rows.map((row) => row.batchId))]);
+  const batchIds = [...new Set(rows.map((row) => row.batchId))];
+  for (const id of batchIds) await noteFinish(id);
+  await tell(db, 'batch-changed', batchIds);
   return rows.length;
 }
 
@@ -161,7 +165,12 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
   );
   return executor
-    .select({ id: tasks.id, state: tasks.state, batchId: tasks.batchId })
+    .select({
+      id: tasks.id,
+      state: tasks.state,
+      resultId: tasks.resultId,
+      batchId: tasks.batchId,
+    })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .where(and(chosen, eq(batches.teamId, member.teamId)))
@@ -178,7 +187,7 @@ export interface TaskChoice {
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
 export async function cancel(member: Member, choice: TaskChoice): Promise<number> {
   require(member, 'cancel tasks');
-  return db.transaction(async (transaction) => {
+  const cancelled = await db.transaction(async (transaction) => {
     const rows = await lockOwn(transaction, member, choice);
     if (rows.length === 0) notFound('task');
     const open = rows.filter((row) => row.state === 'queued' || row.state === 'running');
@@ -196,17 +205,26 @@ export async function cancel(member: Member, choice: TaskChoice): Promise<number
     const running = open.filter((row) => row.state === 'running').map((row) => row.id);
     await tell(transaction, 'task-cancelled', running);
     await tell(transaction, 'batch-changed', [...new Set(open.map((row) => row.batchId))]);
+    if (!choice.rows) await finishQuietly(transaction, choice.batchId);
     return ids.length;
   });
+  if (choice.rows && cancelled > 0) await noteFinish(choice.batchId);
+  return cancelled;
 }
 
-/** Queues the failed and cancelled ones among the chosen tasks again, as a new attempt. Returns how many. */
+/**
+ * Queues those among the chosen tasks again, as a new attempt, that failed, were cancelled, or lost their result for its
+ * age. Returns how many.
+ */
 export async function rerun(member: Member, choice: TaskChoice): Promise<number> {
   require(member, 'rerun tasks');
   return db.transaction(async (transaction) => {
     const rows = await lockOwn(transaction, member, choice);
     if (rows.length === 0) notFound('task');
-    const ended = rows.filter((row) => row.state === 'failed' || row.state === 'cancelled');
+    const ended = rows.filter(
+      ({ state, resultId }) =>
+        state === 'failed' || state === 'cancelled' || (state === 'done' && resultId === null),
+    );
     const ids = ended.map((row) => row.id);
     if (ids.length === 0) return 0;
     await transaction
@@ -214,6 +232,7 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
       .set({
         state: 'queued',
         error: null,
+        reused: false,
         progress: 0,
         worker: null,
         startedAt: null,
@@ -223,6 +242,7 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
       .where(inArray(tasks.id, ids));
     // The job of the attempt before has the same id and would stand in the way.
     await dequeue(transaction, ids);
+    await reopen(transaction, choice.batchId);
     const ahead = await waitingOf(transaction, member);
     await enqueue(
       transaction,
