@@ -7,7 +7,9 @@ import * as letterTokens from './letter-tokens';
 import { log } from './log';
 import * as molecules from './molecules';
 import { forgetFullBuckets } from './rate-limits';
+import { keepRetention } from './retention';
 import * as sessions from './sessions';
+import { warnOfStorage } from './storage-letters';
 
 const INTERVAL_MS = 3_600_000;
 
@@ -21,6 +23,8 @@ export async function tidy(): Promise<void> {
   await idempotency.forgetOld();
   await sessions.forgetEnded();
   await forgetFullBuckets();
+  await warnOfStorage();
+  await keepRetention();
 }
 
 /** Tidies once an hour, as long as the process runs. */
