@@ -6,8 +6,26 @@ export type LimitName = (typeof limitNames)[number];
 
 export type Limits = Record<LimitName, number>;
 /** What a lead set; what is missing is the operator's default for a team, the team's for a member. */
-export type TeamLimits = Limits;
-export type MemberLimits = Partial<Limits>;
+export type LimitSettings = { readonly [Name in LimitName]?: number | undefined };
+
+/** What a member can still use up. */
+export interface Room {
+  /** The limits in force for the member: the stricter of the team's and their own. */
+  readonly limits: Limits;
+  readonly left: { readonly queuedTasks: number; readonly megabytes: number };
+}
+
+/** A number with its thousands parted: "100,000". */
+export function grouped(value: number): string {
+  return new Intl.NumberFormat('en-US', { maximumFractionDigits: 0 }).format(value);
+}
+
+/** What a member can still use up, in a sentence. */
+export function roomText({ limits, left }: Room): string {
+  const tasks = `${grouped(left.queuedTasks)} of ${grouped(limits.queuedTasks)} tasks at once`;
+  const storage = `${grouped(Math.floor(left.megabytes))} of ${grouped(limits.megabytes)} MB`;
+  return `Left for you: ${tasks}, ${storage}; at most ${limits.atoms} atoms in a molecule.`;
+}
 
 /** What each limit is, as pages and letters call it, with its unit. */
 export const limitWords: Record<LimitName, { readonly label: string; readonly unit: string }> = {
@@ -44,7 +62,7 @@ export function limitsFormSchema(ceilings: Limits) {
 }
 
 /** The limits in force: each the one that was set, else the one above, and never above that. */
-export function limitsWithin(above: Limits, set: Partial<Limits>): Limits {
+export function limitsWithin(above: Limits, set: LimitSettings): Limits {
   const pick = (name: LimitName): number => Math.min(set[name] ?? above[name], above[name]);
   return {
     queuedTasks: pick('queuedTasks'),

@@ -3,7 +3,7 @@ import { and, asc, count, desc, eq, isNotNull, isNull, lt, sql } from 'drizzle-o
 import { DAILY_LETTER_HOUR, type BatchLetterChoice } from '../domain/batch-letters';
 import { noTasks, statesOf } from './batches';
 import { db, type Executor } from './db';
-import { batches, entries, memberships, tasks, teams, users } from './db/schema';
+import { batches, entries, tasks, teams, users } from './db/schema';
 import { batchFinishedLetter, dailyLetter, type FinishedBatch } from './finish-letters';
 import { headlinesOf } from './headlines';
 import { postWithin } from './mail';

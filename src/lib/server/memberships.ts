@@ -30,6 +30,16 @@ export function listMembers(member: Member) {
     .orderBy(desc(memberships.role), asc(users.name));
 }
 
+/** Whom letters about a team go to. */
+export function leadsOf(executor: Executor, teamId: string) {
+  return executor
+    .select({ id: users.id, name: users.name, email: users.email })
+    .from(memberships)
+    .innerJoin(users, eq(users.id, memberships.userId))
+    .where(and(eq(memberships.teamId, teamId), eq(memberships.role, 'lead')))
+    .orderBy(asc(users.name));
+}
+
 /** The team's memberships, locked so that two changes at once cannot take the last two leads. */
 function lockMemberships(executor: Executor, teamId: string) {
   return executor

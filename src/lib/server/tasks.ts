@@ -4,6 +4,7 @@ import { finishQuietly, noteFinish, reopen } from './batch-finish';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { recordEvent } from './events';
+import { checkRoom, lockTeam } from './limits';
 import { tell } from './live';
 import { notFound, require, type Member } from './member';
 import { dequeue, enqueue } from './queue';
@@ -219,6 +220,7 @@ export async function cancel(member: Member, choice: TaskChoice): Promise<number
 export async function rerun(member: Member, choice: TaskChoice): Promise<number> {
   require(member, 'rerun tasks');
   return db.transaction(async (transaction) => {
+    await lockTeam(transaction, member.teamId);
     const rows = await lockOwn(transaction, member, choice);
     if (rows.length === 0) notFound('task');
     const ended = rows.filter(
@@ -243,6 +245,7 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
     // The job of the attempt before has the same id and would stand in the way.
     await dequeue(transaction, ids);
     await reopen(transaction, choice.batchId);
+    await checkRoom(transaction, member, ids.length);
     const ahead = await waitingOf(transaction, member);
     await enqueue(
       transaction,

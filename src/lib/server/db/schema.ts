@@ -28,7 +28,7 @@ import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
 import { batchLetterChoices } from '../../domain/batch-letters';
 import type { ApiScope } from '../../domain/api';
-import type { MemberLimits, TeamLimits } from '../../domain/limits';
+import type { LimitSettings } from '../../domain/limits';
 import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
@@ -174,7 +174,7 @@ export const teams = pgTable(
     id: uuid('id').primaryKey().defaultRandom(),
     name: text('name').notNull(),
     /** What a lead set; what is missing is the operator's default. */
-    limits: jsonb('limits').$type<Partial<TeamLimits>>().notNull().default({}),
+    limits: jsonb('limits').$type<LimitSettings>().notNull().default({}),
     /** When its leads were told that the storage is nearly full; null while it is not. */
     storageWarnedAt: moment('storage_warned_at'),
     /** From when on the team may be deleted for good; null while nobody asked for it. */
@@ -199,7 +199,7 @@ export const memberships = pgTable(
       .references(() => users.id, { onDelete: 'cascade' }),
     role: roleEnum('role').notNull(),
     /** What a lead set for this member; what is missing is the team's. */
-    limits: jsonb('limits').$type<MemberLimits>().notNull().default({}),
+    limits: jsonb('limits').$type<LimitSettings>().notNull().default({}),
     createdAt: created(),
   },
   (table) => [
