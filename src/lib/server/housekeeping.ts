@@ -9,6 +9,7 @@ import * as molecules from './molecules';
 import { forgetFullBuckets } from './rate-limits';
 import { keepRetention } from './retention';
 import * as sessions from './sessions';
+import { deleteDueTeams } from './team-deletion';
 import { warnOfStorage } from './storage-letters';
 
 const INTERVAL_MS = 3_600_000;
@@ -25,6 +26,7 @@ export async function tidy(): Promise<void> {
   await forgetFullBuckets();
   await warnOfStorage();
   await keepRetention();
+  await deleteDueTeams();
 }
 
 /** Tidies once an hour, as long as the process runs. */

@@ -54,6 +54,7 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
       teamId: memberships.teamId,
       role: memberships.role,
       teamName: teams.name,
+      deletionAt: teams.deletionAt,
     })
     .from(sessions)
     .innerJoin(users, eq(users.id, sessions.userId))
@@ -67,9 +68,9 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
   return {
     sessionId,
     user: first.user,
-    memberships: rows.flatMap(({ teamId, role, teamName }) =>
+    memberships: rows.flatMap(({ teamId, role, teamName, deletionAt }) =>
       teamId !== null && role !== null && teamName !== null
-        ? [{ userId: first.user.id, teamId, role, teamName }]
+        ? [{ userId: first.user.id, teamId, role, teamName, deletionAt }]
         : [],
     ),
   };

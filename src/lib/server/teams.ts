@@ -9,6 +9,8 @@ const ONE_YEAR_SECONDS = 31_536_000;
 /** A person in one of their teams, with the team's name: it can be handed in wherever a Member asks. */
 export interface Membership extends Member {
   readonly teamName: string;
+  /** When the team will be deleted, where a lead asked for it. */
+  readonly deletionAt?: Date | null;
 }
 
 /** The chosen team where the person belongs to it (any more), else their first; null without a team. */
