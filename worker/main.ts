@@ -2,6 +2,7 @@
 import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
 import { closeDatabase } from '../src/lib/server/db';
+import { environment } from '../src/lib/server/environment';
 import { log } from '../src/lib/server/log';
 import { keepHouse } from '../src/lib/server/housekeeping';
 import { closeDelivery, deliver } from '../src/lib/server/letter-delivery';
@@ -19,8 +20,11 @@ const name = `${hostname()} ${process.pid} ${randomUUID().slice(0, 4)}`;
 
 await hearCancels();
 await workOnTasks(concurrency, (taskId, lastTry) => performTask(taskId, name, lastTry));
-await workOnLetters(deliver);
-keepHouse();
+const doesChores = environment.WINDLASS_WORKER_CHORES === 'on';
+if (doesChores) {
+  await workOnLetters(deliver);
+  keepHouse();
+}
 const check = setInterval(() => {
   failAbandoned().catch((error: unknown) =>
     log.warn({ error }, 'Looking for abandoned tasks failed; it is tried again'),
@@ -28,7 +32,7 @@ const check = setInterval(() => {
 }, ABANDONED_CHECK_MS);
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
-void keepLetters(ending.signal);
+if (doesChores) void keepLetters(ending.signal);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
 /** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
