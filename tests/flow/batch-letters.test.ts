@@ -62,7 +62,7 @@ describe('the end of a batch', () => {
     await tellOfFinished();
     const [letter, ...more] = await lettersTo(chemist);
     expect(more).toEqual([]);
-    expect(letter.subject).toBe(`${name} has ended`);
+    expect(letter.subject).toBe(`“${name}” has ended`);
     expect(letter.text).toContain('1 task done');
     expect(letter.text).toContain('1 row could not be read');
     expect(letter.text).toMatch(
@@ -80,7 +80,7 @@ describe('the end of a batch', () => {
     await Promise.all([finishEnded(), tellOfFinished(), tellOfFinished(), tellOfFinished()]);
     const [letter, ...more] = await lettersTo(chemist);
     expect(more).toEqual([]);
-    expect(letter.subject).toBe(`${name} has ended, 5 failed`);
+    expect(letter.subject).toBe(`“${name}” has ended, 5 failed`);
     expect(letter.text).toContain('5 tasks (a, b, c …): No parameters for <boron>.');
     expect(letter.html).not.toContain('<boron>');
   });

@@ -20,6 +20,18 @@ export function grouped(value: number): string {
   return new Intl.NumberFormat('en-US', { maximumFractionDigits: 0 }).format(value);
 }
 
+/** A number of megabytes, small ones to a tenth. */
+export function amount(megabytes: number): string {
+  return megabytes > 0 && megabytes < 10 ? megabytes.toFixed(1) : grouped(megabytes);
+}
+
+/** A limit, or what is used of it, with its unit: "1 month", "0.4 MB". */
+export function limitText(name: LimitName, value: number): string {
+  const { unit } = limitWords[name];
+  const shown = name === 'megabytes' ? amount(value) : grouped(value);
+  return `${shown} ${value === 1 ? unit.replace(/s$/, '') : unit}`;
+}
+
 /** What a member can still use up, in a sentence. */
 export function roomText({ limits, left }: Room): string {
   const tasks = `${grouped(left.queuedTasks)} of ${grouped(limits.queuedTasks)} tasks at once`;

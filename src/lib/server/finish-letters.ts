@@ -43,7 +43,7 @@ export function batchFinishedLetter(person: { name: string }, batch: FinishedBat
       ? ` ${counted(unreadable, 'row')} could not be read and ${unreadable === 1 ? 'was' : 'were'} left out.`
       : '';
   return compose({
-    subject: counts.failed > 0 ? `${name} has ended, ${counts.failed} failed` : `${name} has ended`,
+    subject: `“${name}” has ended${counts.failed > 0 ? `, ${counts.failed} failed` : ''}`,
     greeting: `Hello ${person.name},`,
     lines: [`Your batch “${name}” in ${team} has ended: ${countsText(counts)}.${unread}`],
     lists: [
