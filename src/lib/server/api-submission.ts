@@ -37,9 +37,7 @@ export async function submitRequest(member: Member, request: NewBatch) {
     return { id, ...(await submit(member, id, request.plan)), ...read };
   } catch (cause) {
     await discardDraft(member, id);
-    // Tasks end by themselves, so waiting helps there; other limits only a person can raise.
-    if (cause instanceof LimitError)
-      error(cause.limit === 'queuedTasks' ? 429 : 403, cause.message);
+    if (cause instanceof LimitError) error(cause.status, cause.message);
     if (cause instanceof SubmissionError) error(422, cause.message);
     throw cause;
   }

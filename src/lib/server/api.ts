@@ -8,6 +8,7 @@ import { findBearer, type Bearer } from './api-tokens';
 import { log } from './log';
 import type { Membership } from './teams';
 import { clientNetwork, limitRate, takeFrom } from './rate-limits';
+import { LimitError } from './refusals';
 
 const titles: Record<number, string> = {
   400: 'The request is wrong',
@@ -144,6 +145,9 @@ export function serve<const O extends Operation>(
 function asProblem(cause: unknown, event: RequestEvent, headers: Record<string, string>): Response {
   if (cause instanceof BadRequest) {
     return problemResponse(400, cause.message, { errors: cause.errors, headers });
+  }
+  if (cause instanceof LimitError) {
+    return problemResponse(cause.status, cause.message, { headers });
   }
   if (isHttpError(cause)) {
     const wait = /Wait (\d+) seconds/.exec(cause.body.message)?.[1];

@@ -156,6 +156,7 @@ function failuresOf(batchId: string) {
     .select({
       reason,
       tasks: count(),
+      names: sql<number>`count(distinct ${entries.name})::int`,
       molecules: sql<string[]>`(array_agg(distinct ${entries.name} order by ${entries.name}))[1:3]`,
     })
     .from(tasks)

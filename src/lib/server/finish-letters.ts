@@ -13,7 +13,9 @@ export interface FinishedBatch {
   readonly failures: readonly {
     readonly reason: string;
     readonly tasks: number;
+    /** Some of the molecules, and how many there are. */
     readonly molecules: readonly string[];
+    readonly names: number;
   }[];
   readonly answers: readonly { readonly name: string; readonly sentence: string }[];
   /** Molecules with an answer beyond those told. */
@@ -57,8 +59,8 @@ export function batchFinishedLetter(person: { name: string }, batch: FinishedBat
       {
         title: 'What failed, and why',
         items: failures.map(
-          ({ reason, tasks, molecules }) =>
-            `${counted(tasks, 'task')} (${molecules.join(', ')}${tasks > molecules.length ? ' …' : ''}): ${reason}`,
+          ({ reason, tasks, molecules, names }) =>
+            `${counted(tasks, 'task')} (${molecules.join(', ')}${names > molecules.length ? ' …' : ''}): ${reason}`,
         ),
       },
     ],

@@ -12,4 +12,9 @@ export class LimitError extends SubmissionError {
   ) {
     super(message);
   }
+
+  /** What the REST interface answers: tasks end by themselves, so waiting helps there; the rest only people raise. */
+  get status(): 403 | 429 {
+    return this.limit === 'queuedTasks' ? 429 : 403;
+  }
 }
