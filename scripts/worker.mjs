@@ -15,7 +15,9 @@ await installPackages();
 const folder = await buildProduct();
 const { superviseProgram } = await import('./processes.mjs');
 const { printLine } = await import('./log-lines.mjs');
-const env = { NODE_ENV: 'production', ...process.env };
+// Without the web's settings it would hand letters in nowhere and keep results for the wrong time.
+const WINDLASS_WORKER_CHORES = process.env.WINDLASS_SMTP_URL ? 'on' : 'off';
+const env = { NODE_ENV: 'production', WINDLASS_WORKER_CHORES, ...process.env };
 const args = [join(folder, 'worker', 'main.js')];
 const options = { name: 'worker', print: printLine, mayEnd: true };
 const worker = superviseProgram({ args, env }, options);

@@ -38,7 +38,8 @@ export const init: ServerInit = () => {
   keepHouse();
   // Open sockets would keep the process from ending.
   process.once('sveltekit:shutdown', () => {
-    void Promise.allSettled([stopQueue(), closeMail()]).then(closeDatabase);
+    // Letters go into the queue, so it stays open for them.
+    void closeMail().then(stopQueue).finally(closeDatabase);
   });
 };
 

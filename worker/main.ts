@@ -3,13 +3,17 @@ import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
 import { ENGINE_VERSION } from '../src/lib/engine';
 import { closeDatabase } from '../src/lib/server/db';
+import { environment } from '../src/lib/server/environment';
 import { log } from '../src/lib/server/log';
+import { keepHouse } from '../src/lib/server/housekeeping';
+import { closeDelivery, deliver } from '../src/lib/server/letter-delivery';
 import { closeMail } from '../src/lib/server/mail';
 import { watchProcess } from '../src/lib/server/metrics';
-import { stopQueue, workOnTasks } from '../src/lib/server/queue';
+import { stopQueue, workOnLetters, workOnTasks } from '../src/lib/server/queue';
 import { failAbandoned } from '../src/lib/server/tasks';
 import { requeueStranded } from '../src/lib/server/webhook-log';
 import { deliverWebhooks } from './deliveries';
+import { keepLetters } from './letters';
 import { keepFingerprints } from './fingerprints';
 import { showLife } from './life';
 import { hearCancels, performTask } from './perform';
@@ -26,6 +30,11 @@ const slots = await workOnTasks(concurrency, (taskId, lastTry) =>
   performTask(taskId, name, lastTry),
 );
 const stopDelivering = await deliverWebhooks();
+const doesChores = environment.WINDLASS_WORKER_CHORES === 'on';
+if (doesChores) {
+  await workOnLetters(deliver);
+  keepHouse();
+}
 const check = setInterval(() => {
   Promise.all([failAbandoned(), requeueStranded()]).catch((error: unknown) =>
     log.warn({ error }, 'Looking for what was abandoned failed; it is tried again'),
@@ -33,6 +42,7 @@ const check = setInterval(() => {
 }, ABANDONED_CHECK_MS);
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
+if (doesChores) void keepLetters(ending.signal);
 const leave = await showLife({ name, version: ENGINE_VERSION, concurrency }, slots, endDrained);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
@@ -40,7 +50,7 @@ log.info({ worker: name, concurrency }, 'The worker takes tasks');
 async function stop(): Promise<void> {
   clearInterval(check);
   ending.abort();
-  await closePool();
+  await Promise.all([closePool(), closeDelivery()]);
   await leave();
   await stopQueue();
   await closeMail();

@@ -12,6 +12,7 @@ export const load: LayoutServerLoad = ({ locals }) => {
           id: membership.teamId,
           name: membership.teamName,
           role: membership.role,
+          deletionAt: membership.deletionAt ?? null,
         }
       : null,
     teams: memberships.map(({ teamId, teamName }) => ({ id: teamId, name: teamName })),

@@ -9,7 +9,8 @@ import { discardDraft, readUpload } from '$lib/server/drafts';
 import type { Member } from '$lib/server/member';
 import { stopQueue } from '$lib/server/queue';
 import { UploadError } from '$lib/server/rows';
-import { submit, SubmissionError } from '$lib/server/submission';
+import { SubmissionError } from '$lib/server/refusals';
+import { submit } from '$lib/server/submission';
 import * as queue from '$lib/server/tasks';
 import { newTeam } from '../support/people';
 

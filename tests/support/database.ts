@@ -2,6 +2,7 @@
 import { randomBytes } from 'node:crypto';
 import postgres from 'postgres';
 import { afterAll, inject } from 'vitest';
+import { deliverBy } from './letters';
 
 const { adminUrl, url } = inject('cluster');
 const template = new URL(url).pathname.slice(1);
@@ -33,8 +34,17 @@ Object.assign(process.env, {
   WINDLASS_LOG_LEVEL: process.env['WINDLASS_LOG_LEVEL'] ?? 'silent',
 });
 
+deliverBy(async () => {
+  const { deliverWaiting } = await import('../../src/lib/server/letter-delivery');
+  const { closeMail } = await import('../../src/lib/server/mail');
+  await closeMail();
+  await deliverWaiting();
+});
+
 afterAll(async () => {
   const { closeDatabase } = await import('../../src/lib/server/db');
+  const { stopQueue } = await import('../../src/lib/server/queue');
+  await stopQueue();
   await closeDatabase();
   await asAdmin(`drop database ${name} with (force)`);
 });

@@ -10,7 +10,15 @@ export interface Letter {
 
 const PATIENCE_MS = 10_000;
 
+/** Delivers what waits, where no worker does: set by flow tests, which mostly run without one. */
+let deliver: () => Promise<unknown> = () => Promise.resolve();
+
+export function deliverBy(given: () => Promise<unknown>): void {
+  deliver = given;
+}
+
 async function readLetters(lettersUrl: string): Promise<Letter[]> {
+  await deliver();
   const response = await fetch(lettersUrl);
   return (await response.json()) as Letter[];
 }

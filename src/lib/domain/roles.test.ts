@@ -14,6 +14,7 @@ const expected: Record<Role, Permission[]> = {
     'cancel tasks',
     'rerun tasks',
     'share with partners',
+    'pin batches',
   ],
   lead: [
     'read results',
@@ -24,11 +25,14 @@ const expected: Record<Role, Permission[]> = {
     'cancel tasks',
     'rerun tasks',
     'share with partners',
+    'pin batches',
     'manage members',
     'manage limits',
     'manage webhooks',
     'read the record',
     'delete results',
+    'export the team',
+    'delete the team',
     'delete any comment',
   ],
 };

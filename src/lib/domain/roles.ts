@@ -14,11 +14,14 @@ export const lowestRole = {
   'cancel tasks': 'modeler',
   'rerun tasks': 'modeler',
   'share with partners': 'modeler',
+  'pin batches': 'modeler',
   'manage members': 'lead',
   'manage limits': 'lead',
   'manage webhooks': 'lead',
   'read the record': 'lead',
   'delete results': 'lead',
+  'export the team': 'lead',
+  'delete the team': 'lead',
   'delete any comment': 'lead',
 } as const satisfies Record<string, Role>;
 export type Permission = keyof typeof lowestRole;

@@ -14,3 +14,8 @@ export const memberSchema = z.object({ member: z.uuid() });
 export const invitationSchema = z.object({ invitation: z.uuid() });
 
 export const teamNameSchema = z.object({ name: nameSchema });
+
+/** The team's name, typed by who wants it deleted. */
+export const teamEndSchema = z.object({
+  name: z.string().trim().min(1, 'Type the name of the team.').max(200),
+});

@@ -5,8 +5,9 @@ import type { newBatchSchema } from '../domain/api';
 import { discardDraft, readIntoDraft, type ReadingProgress } from './drafts';
 import { require, type Member } from './member';
 import { limitRate } from './rate-limits';
+import { LimitError, SubmissionError } from './refusals';
 import type { RawRow } from './rows';
-import { submit, SubmissionError } from './submission';
+import { submit } from './submission';
 
 type NewBatch = z.output<typeof newBatchSchema>;
 
@@ -19,7 +20,10 @@ async function* rowsOf({ molecules }: NewBatch): AsyncGenerator<RawRow> {
   }
 }
 
-/** Reads and submits; what cannot be submitted leaves nothing behind and answers 422 with the reason. */
+/**
+ * Reads and submits; what cannot be submitted leaves nothing behind and answers 422 with the reason,
+ * above a limit 403 or 429.
+ */
 export async function submitRequest(member: Member, request: NewBatch) {
   require(member, 'submit molecules');
   const wait = await limitRate(['submit as a member', member.userId]);
@@ -33,6 +37,7 @@ export async function submitRequest(member: Member, request: NewBatch) {
     return { id, ...(await submit(member, id, request.plan)), ...read };
   } catch (cause) {
     await discardDraft(member, id);
+    if (cause instanceof LimitError) error(cause.status, cause.message);
     if (cause instanceof SubmissionError) error(422, cause.message);
     throw cause;
   }

@@ -9,6 +9,7 @@ import { log } from './log';
 import { sayWhatTokenMisses } from './team-requirements';
 import type { Membership } from './teams';
 import { clientNetwork, limitRate, takeFrom } from './rate-limits';
+import { LimitError } from './refusals';
 
 const titles: Record<number, string> = {
   400: 'The request is wrong',
@@ -146,6 +147,9 @@ export function serve<const O extends Operation>(
 function asProblem(cause: unknown, event: RequestEvent, headers: Record<string, string>): Response {
   if (cause instanceof BadRequest) {
     return problemResponse(400, cause.message, { errors: cause.errors, headers });
+  }
+  if (cause instanceof LimitError) {
+    return problemResponse(cause.status, cause.message, { headers });
   }
   if (isHttpError(cause)) {
     const wait = /Wait (\d+) seconds/.exec(cause.body.message)?.[1];

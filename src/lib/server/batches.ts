@@ -1,5 +1,5 @@
 /** Batches as their team sees them. */
-import { and, asc, count, desc, eq, inArray, isNotNull, sql, type SQL } from 'drizzle-orm';
+import { and, asc, count, desc, eq, inArray, isNotNull, isNull, sql, type SQL } from 'drizzle-orm';
 import { db } from './db';
 import { batches, entries, molecules, notes, tasks, users } from './db/schema';
 import { notFound, type InTeam, type Member } from './member';
@@ -135,7 +135,10 @@ export async function listEntries(member: Member, batchId: string, query: EntryQ
     .where(inArray(entries.id, ids));
   const states = await entryStates(ids);
   const rows = found
-    .map((row) => ({ ...row, ...(states.get(row.id) ?? { ...noTasks, failure: null }) }))
+    .map((row) => ({
+      ...row,
+      ...(states.get(row.id) ?? { ...noTasks, removed: 0, failure: null }),
+    }))
     .sort((a, b) => ids.indexOf(a.id) - ids.indexOf(b.id));
   return { batch, total, rows };
 }
@@ -177,6 +180,7 @@ async function entryStates(entryIds: readonly string[]) {
     .select({
       entryId: tasks.entryId,
       ...stateColumns,
+      removed: sql<number>`(count(*) filter (where ${tasks.state} = 'done' and ${tasks.resultId} is null))::int`,
       failure: sql<{
         message: string;
       } | null>`(array_agg(${tasks.error}) filter (where ${tasks.state} = 'failed'))[1]`,
@@ -196,6 +200,14 @@ function stateCondition(batchId: string, state: EntryQuery['state']) {
       .select({ id: tasks.entryId })
       .from(tasks)
       .where(and(eq(tasks.batchId, batchId), eq(tasks.state, state))),
+  );
+}
+
+/** How many tasks of a batch are done with a result that was removed since. */
+export function countRemoved(batchId: string): Promise<number> {
+  return db.$count(
+    tasks,
+    and(eq(tasks.batchId, batchId), eq(tasks.state, 'done'), isNull(tasks.resultId)),
   );
 }
 
@@ -253,6 +265,10 @@ export async function get(member: InTeam, batchId: string) {
       createdAt: batches.createdAt,
       submittedAt: batches.submittedAt,
       createdBy: batches.createdBy,
+      finishedAt: batches.finishedAt,
+      pinnedAt: batches.pinnedAt,
+      removalAt: batches.removalAt,
+      removedAt: batches.removedAt,
       maker: users.name,
     })
     .from(batches)

@@ -1,16 +1,14 @@
 /** Bundles: everything that was computed for a molecule or a batch, streamed as a zip that others can recompute from. */
-import { createHash } from 'node:crypto';
-import { once } from 'node:events';
-import { ZipArchive } from 'archiver';
+import type { ZipArchive } from 'archiver';
 import { and, asc, eq, gt, inArray, isNotNull } from 'drizzle-orm';
 import { bundleSchemaText } from '../domain/bundle-schema';
 import { createNamer } from '../domain/file-names';
 import { COMPUTE_AGAIN, methodsText } from '../domain/methods';
 import { ENGINE_VERSION } from '../engine';
 import { readAnswers, resultIdsOf, type Answer } from './answers';
+import { openArchive, type ArchiveWriter } from './archive-writer';
 import * as batches from './batches';
 import { filesOf } from './bundle-files';
-import type { BundleFile } from './bundle-parts';
 import { db } from './db';
 import { entries, molecules } from './db/schema';
 import { recordEvent } from './events';
@@ -103,16 +101,13 @@ function open(
   rows: AsyncGenerator<BundledRow>,
   batchId: string | null,
 ): Bundle {
-  const archive = new ZipArchive({ zlib: { level: 6 } });
   const nameFor = createNamer();
-  fill(archive, team, name, rows, batchId).catch((error: unknown) =>
-    archive.destroy(error instanceof Error ? error : new Error(String(error))),
-  );
+  const archive = openArchive((writer) => fill(writer, team, name, rows, batchId));
   return { fileName: `${nameFor(name)}.zip`, archive };
 }
 
 /** What the manifest says of one answer. */
-interface ManifestAnswer {
+export interface ManifestAnswer {
   readonly name: string;
   readonly smiles: string;
   readonly kind: string;
@@ -121,36 +116,42 @@ interface ManifestAnswer {
   readonly settings: unknown;
 }
 
-/** Writes file after file, each only when the one before it has gone out, and the manifest last. */
+/** Writes the rows' files, and the manifest last. */
 async function fill(
-  archive: ZipArchive,
+  writer: ArchiveWriter,
   team: InTeam,
   name: string,
   rows: AsyncGenerator<BundledRow>,
   batchId: string | null,
 ): Promise<void> {
-  const sums: Record<string, string> = {};
+  const answers = await addRows(writer, team, rows, batchId);
+  await addReadingHelp(writer, answers);
+  const manifest = { name, madeBy: `Windlass ${ENGINE_VERSION}`, answers, sha256: writer.sums };
+  await writer.add({ path: 'manifest.json', content: `${JSON.stringify(manifest, null, 2)}\n` });
+}
+
+/** Writes the files of every row that has an answer, below a folder; returns what the manifest says of them. */
+async function addRows(
+  writer: ArchiveWriter,
+  team: InTeam,
+  rows: AsyncGenerator<BundledRow>,
+  batchId: string | null,
+  below = '',
+): Promise<ManifestAnswer[]> {
   const answers: ManifestAnswer[] = [];
   const requests: string[] = [];
   const nameFor = createNamer();
-  const add = async ({ path, content }: BundleFile): Promise<void> => {
-    const bytes = Buffer.from(content, 'utf8');
-    sums[path] = createHash('sha256').update(bytes).digest('hex');
-    const written = once(archive, 'entry');
-    archive.append(bytes, { name: path });
-    await written;
-  };
   for await (const row of rows) {
     const found = await answersOf(team, row, batchId);
     if (found.length === 0) continue;
     const bundled = {
       name: row.name,
-      folder: nameFor(row.name),
+      folder: `${below}${nameFor(row.name)}`,
       smiles: row.molecule.smiles,
       molecule: readStored(row.molecule),
       answers: found,
     };
-    for (const file of filesOf(bundled)) await add(file);
+    for (const file of filesOf(bundled)) await writer.add(file);
     answers.push(
       ...found.map(({ kind, model, engineVersion, settings }) => ({
         name: row.name,
@@ -163,6 +164,25 @@ async function fill(
     );
     requests.push(...found.map((answer) => requestLine(row.molecule, answer)));
   }
+  await writer.add({ path: `${below}requests.jsonl`, content: requests.join('') });
+  return answers;
+}
+
+/** Writes the answers of one batch below a folder of a larger archive. */
+export function addBatch(
+  writer: ArchiveWriter,
+  team: InTeam,
+  batchId: string,
+  below: string,
+): Promise<ManifestAnswer[]> {
+  return addRows(writer, team, batchRows(batchId, []), batchId, below);
+}
+
+/** Writes how the answers were computed, and the schema of their JSON. */
+export async function addReadingHelp(
+  { add }: ArchiveWriter,
+  answers: readonly Pick<ManifestAnswer, 'engineVersion' | 'model' | 'kind'>[],
+): Promise<void> {
   const unique = (values: readonly string[]): string[] => [...new Set(values)].sort();
   await add({
     path: 'methods.md',
@@ -173,11 +193,7 @@ async function fill(
       kinds: unique(answers.map((answer) => answer.kind)),
     })}\n${COMPUTE_AGAIN}`,
   });
-  await add({ path: 'requests.jsonl', content: requests.join('') });
   await add({ path: 'answer.schema.json', content: bundleSchemaText() });
-  const manifest = { name, madeBy: `Windlass ${ENGINE_VERSION}`, answers, sha256: sums };
-  archive.append(`${JSON.stringify(manifest, null, 2)}\n`, { name: 'manifest.json' });
-  await archive.finalize();
 }
 
 /** What the command line is asked to compute an answer again: the very structure and settings it rests on. */

@@ -28,6 +28,8 @@ const issuerSchema = z
     'must begin with https://',
   );
 
+const limit = (standard: number) => z.coerce.number().int().min(1).max(1e9).default(standard);
+
 const schema = z
   .object({
     DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/ }),
@@ -47,6 +49,8 @@ const schema = z
     WINDLASS_DATABASE_POOL: z.coerce.number().int().min(1).max(100).default(10),
     /** Tasks a worker runs at once; 0 takes one for each core. */
     WINDLASS_WORKER_CONCURRENCY: z.coerce.number().int().min(0).max(256).default(0),
+    /** Whether a worker also hands letters in and keeps house; it needs all settings of the web for that. */
+    WINDLASS_WORKER_CHORES: z.enum(['on', 'off']).default('on'),
     /** Longest time one task may take, seconds. */
     WINDLASS_TASK_SECONDS: z.coerce.number().int().min(10).max(86_400).default(1_800),
     /** The OpenID Connect provider people may sign in through; all three, or none. */
@@ -64,6 +68,15 @@ const schema = z
       .transform((value) => value === 'on'),
     /** What collectors of metrics send as a bearer token; unset, only this machine may read them. */
     WINDLASS_METRICS_TOKEN: z.string().min(16).optional(),
+    /** What a team may use up until its leads set something else, and the most that they may set. */
+    WINDLASS_TEAM_QUEUED_TASKS: limit(100_000),
+    WINDLASS_TEAM_QUEUED_TASKS_CEILING: limit(1_000_000),
+    WINDLASS_TEAM_ATOMS: limit(200),
+    WINDLASS_TEAM_ATOMS_CEILING: limit(200),
+    WINDLASS_TEAM_MEGABYTES: limit(10_000),
+    WINDLASS_TEAM_MEGABYTES_CEILING: limit(100_000),
+    WINDLASS_TEAM_MONTHS: limit(36),
+    WINDLASS_TEAM_MONTHS_CEILING: limit(240),
     WINDLASS_LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
   })
   .superRefine((given, context) => {

@@ -5,7 +5,7 @@ import { db, type Executor } from './db';
 import { invitations, memberships, teams, users } from './db/schema';
 import { recordEvent } from './events';
 import { INVITATION_DAYS, invitationLetter } from './letters';
-import { post } from './mail';
+import { postWithin } from './mail';
 import { require, type Member } from './member';
 import { hashSecret, makeSecret } from './secrets';
 
@@ -41,7 +41,7 @@ export async function invite(
   require(member, 'manage members');
   if (await isMember(member.teamId, given.email)) return false;
   const secret = makeSecret();
-  const names = await db.transaction(async (tx) => {
+  await db.transaction(async (tx) => {
     await forgetOpen(tx, member.teamId, given.email);
     await tx.insert(invitations).values({
       ...given,
@@ -56,9 +56,9 @@ export async function invite(
       .from(teams)
       .innerJoin(users, eq(users.id, member.userId))
       .where(eq(teams.id, member.teamId));
-    return found!;
+    const letter = invitationLetter({ ...found!, role: given.role, token: secret });
+    await postWithin(tx, given.email, letter);
   });
-  post(given.email, invitationLetter({ ...names, role: given.role, token: secret }));
   return true;
 }
 

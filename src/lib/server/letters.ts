@@ -8,12 +8,22 @@ import type { Letter } from './mail';
 /** How long an invitation is good for. */
 export const INVITATION_DAYS = 7;
 
-interface Content {
+/** A list in a letter. */
+export interface LetterList {
+  readonly title: string;
+  readonly items: readonly string[];
+}
+
+export interface Content {
   readonly subject: string;
   readonly greeting: string;
   readonly lines: readonly string[];
+  /** Lists below the lines, each under a heading; one without items is left out. */
+  readonly lists?: readonly LetterList[];
   readonly link?: { readonly label: string; readonly path: string };
   readonly closing: string;
+  /** How long the letter is worth reading. */
+  readonly hours?: number;
 }
 
 const escapeHtml = (text: string) =>
@@ -21,24 +31,41 @@ const escapeHtml = (text: string) =>
 
 const paragraph = (text: string) => `<p style="margin:0 0 16px">${escapeHtml(text)}</p>`;
 
+function listing({ title, items }: LetterList): string {
+  const rows = items.map((item) => `<li style="margin:0 0 8px">${escapeHtml(item)}</li>`);
+  return `<p style="margin:24px 0 8px;font-weight:600">${escapeHtml(title)}</p>
+<ul style="margin:0 0 16px;padding-left:20px">${rows.join('')}</ul>`;
+}
+
 function button(label: string, url: string): string {
   const style =
     'display:inline-block;padding:12px 20px;border-radius:6px;background:#0b6e6e;color:#ffffff;text-decoration:none;font-weight:600';
   return `<p style="margin:24px 0"><a href="${escapeHtml(url)}" style="${style}">${escapeHtml(label)}</a></p>`;
 }
 
-function compose({ subject, greeting, lines, link, closing }: Content): Letter {
+/** A letter as plain text and as HTML. */
+export function compose(content: Content): Letter {
+  const { subject, greeting, lines, link, closing, hours: worth } = content;
+  const lists = (content.lists ?? []).filter(({ items }) => items.length > 0);
   const url = link ? new URL(link.path, environment.WINDLASS_ORIGIN).href : null;
-  const text = [greeting, ...lines, ...(url ? [url] : []), closing, 'Windlass'].join('\n\n');
+  const text = [
+    greeting,
+    ...lines,
+    ...lists.map(({ title, items }) => [title, ...items.map((item) => `- ${item}`)].join('\n')),
+    ...(url ? [url] : []),
+    closing,
+    'Windlass',
+  ].join('\n\n');
   const html = `<!doctype html>
 <html lang="en"><body style="margin:0;padding:32px 16px;background:#faf8f3;color:#16242b;font:16px/1.5 sans-serif">
 <div style="max-width:520px;margin:0 auto;padding:32px;background:#ffffff;border:1px solid #d9d5ca;border-radius:8px">
 <p style="margin:0 0 24px;color:#0b6e6e;font-weight:600">Windlass</p>
 ${[greeting, ...lines].map(paragraph).join('\n')}
+${lists.map(listing).join('\n')}
 ${link && url ? button(link.label, url) : ''}
 <p style="margin:0;color:#51616a;font-size:14px">${escapeHtml(closing)}</p>
 </div></body></html>`;
-  return { subject, text, html };
+  return { subject, text, html, hours: worth };
 }
 
 const hours = (count: number) => (count === 1 ? 'one hour' : `${count} hours`);
@@ -52,6 +79,7 @@ export function confirmAddressLetter(name: string, token: string): Letter {
     ],
     link: { label: 'Confirm my address', path: `/confirm?token=${token}` },
     closing: `The link works once, within ${hours(LETTER_HOURS['confirm-address'])}. If you did not sign up, leave this letter alone: without it the account stays closed.`,
+    hours: LETTER_HOURS['confirm-address'],
   });
 }
 
@@ -74,6 +102,7 @@ export function resetPasswordLetter(name: string, token: string): Letter {
     lines: ['A new password was asked for your account on Windlass. Choose it here.'],
     link: { label: 'Choose a new password', path: `/reset?token=${token}` },
     closing: `The link works once, within ${hours(LETTER_HOURS['reset-password'])}. If you did not ask, leave this letter alone: your password stays as it is.`,
+    hours: LETTER_HOURS['reset-password'],
   });
 }
 

@@ -5,7 +5,7 @@ import { db, type Executor } from './db';
 import { memberships, teams, users } from './db/schema';
 import { recordEvent } from './events';
 import { memberRemovedLetter } from './letters';
-import { post } from './mail';
+import { postWithin } from './mail';
 import { notFound, require, type Member } from './member';
 
 /** Who opens a team. */
@@ -30,6 +30,16 @@ export function listMembers(member: Member) {
     .orderBy(desc(memberships.role), asc(users.name));
 }
 
+/** Whom letters about a team go to. */
+export function leadsOf(executor: Executor, teamId: string) {
+  return executor
+    .select({ id: users.id, name: users.name, email: users.email })
+    .from(memberships)
+    .innerJoin(users, eq(users.id, memberships.userId))
+    .where(and(eq(memberships.teamId, teamId), eq(memberships.role, 'lead')))
+    .orderBy(asc(users.name));
+}
+
 /** The team's memberships, locked so that two changes at once cannot take the last two leads. */
 function lockMemberships(executor: Executor, teamId: string) {
   return executor
@@ -40,12 +50,16 @@ function lockMemberships(executor: Executor, teamId: string) {
     .for('update');
 }
 
-/** Carries out a change of one member's role, null for leaving, unless it takes the team's last lead. */
+/**
+ * Carries out a change of one member's role, null for leaving, unless it takes the team's last lead; `then` happens in
+ * the same transaction.
+ */
 async function change(
   member: Member,
   userId: string,
   role: Role | null,
   action: string,
+  then?: (executor: Executor) => Promise<void>,
 ): Promise<MembershipChange> {
   return db.transaction(async (tx) => {
     const all = await lockMemberships(tx, member.teamId);
@@ -57,6 +71,7 @@ async function change(
     if (role === null) await tx.delete(memberships).where(isTheirs);
     else await tx.update(memberships).set({ role }).where(isTheirs);
     await recordEvent(tx, member, action, `user:${userId}`, { from: present.role, to: role });
+    await then?.(tx);
     return 'done';
   });
 }
@@ -74,16 +89,14 @@ export async function changeRole(
 /** Takes a member out of the team and tells them by letter. */
 export async function remove(member: Member, userId: string): Promise<MembershipChange> {
   require(member, 'manage members');
-  const outcome = await change(member, userId, null, 'remove member');
-  if (outcome === 'done') {
-    const [found] = await db
+  return change(member, userId, null, 'remove member', async (tx) => {
+    const [found] = await tx
       .select({ name: users.name, email: users.email, team: teams.name })
       .from(users)
       .innerJoin(teams, eq(teams.id, member.teamId))
       .where(eq(users.id, userId));
-    post(found!.email, memberRemovedLetter(found!.name, found!.team));
-  }
-  return outcome;
+    await postWithin(tx, found!.email, memberRemovedLetter(found!.name, found!.team));
+  });
 }
 
 /** Ends the asking member's own membership. */

@@ -88,6 +88,6 @@ export function countDelivery(result: 'delivered' | 'failed'): void {
   deliveries.inc({ result });
 }
 
-export function countLetter(result: 'handed in' | 'given up'): void {
+export function countLetter(result: 'sent' | 'given-up' | 'unsure'): void {
   letters.inc({ result });
 }

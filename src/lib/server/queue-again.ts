@@ -1,5 +1,6 @@
 /** Putting tasks that ended back into the queue. */
 import { inArray, sql } from 'drizzle-orm';
+import { reopen } from './batch-finish';
 import type { Executor } from './db';
 import { tasks } from './db/schema';
 import { dequeue, enqueue } from './queue';
@@ -15,6 +16,7 @@ export async function queueAgain(
     .set({
       state: 'queued',
       error: null,
+      reused: false,
       progress: 0,
       worker: null,
       queuedAt: sql`now()`,
@@ -23,6 +25,7 @@ export async function queueAgain(
       finishedAt: null,
     })
     .where(inArray(tasks.id, [...ids]));
+  await reopen(executor, ids);
   // The job of the attempt before has the same id and would stand in the way.
   await dequeue(executor, ids);
   await enqueue(

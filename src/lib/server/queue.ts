@@ -1,15 +1,16 @@
 /**
- * The queue of tasks on pg-boss, in the same database as everything else. A job only names a task; what people are
- * shown is the task's own row.
+ * The queues of tasks and of letters on pg-boss, in the same database as everything else. A job only names a row; what
+ * people are shown is the row itself.
  */
 import { sql } from 'drizzle-orm';
-import { fromDrizzle, PgBoss, type JobWithMetadata } from 'pg-boss';
+import { fromDrizzle, PgBoss, type Job, type JobWithMetadata } from 'pg-boss';
 import type { Executor } from './db';
 import { environment } from './environment';
 import { log } from './log';
 import { keepSlots, type Slots } from './task-slots';
 
 const TASKS = 'tasks';
+const LETTERS = 'letters';
 
 /** Without a sign of life for this long a worker counts as dead, and pg-boss hands its job to another one. */
 const HEARTBEAT_SECONDS = 15;
@@ -17,9 +18,19 @@ const HEARTBEAT_SECONDS = 15;
 const SUPERVISE_SECONDS = 10;
 /** Machines fail, molecules do not: a job is only ever thrown back by a fault of the machine. */
 const RETRY_LIMIT = 5;
+/** A letter is tried until it expires, which its own row says; at this pace that is never reached before. */
+const LETTER_RETRY_LIMIT = 2_000;
+/** Longest wait between two tries of a letter: a mail server that is back is met again soon. */
+const LETTER_RETRY_SECONDS = 300;
+/** Letters that one worker hands in at once. */
+const LETTERS_AT_ONCE = 2;
 
 export interface TaskJob {
   readonly taskId: string;
+}
+
+export interface LetterJob {
+  readonly letterId: string;
 }
 
 /** A task's place in the order of the queue: jobs with a higher priority run first. */
@@ -61,6 +72,14 @@ async function start(isWorker: boolean): Promise<PgBoss> {
     retryDelay: 1,
     retryDelayMax: 30,
   });
+  await boss.createQueue(LETTERS, {
+    notify: true,
+    heartbeatSeconds: HEARTBEAT_SECONDS,
+    retryLimit: LETTER_RETRY_LIMIT,
+    retryBackoff: true,
+    retryDelay: 2,
+    retryDelayMax: LETTER_RETRY_SECONDS,
+  });
   return boss;
 }
 
@@ -81,11 +100,33 @@ export async function enqueue(executor: Executor, tasks: readonly QueuedTask[]):
   );
 }
 
+/** Puts a letter into the queue as a part of the caller's transaction. */
+export async function enqueueLetter(executor: Executor, letterId: string): Promise<void> {
+  const boss = await openQueue();
+  await boss.insert(LETTERS, [{ id: letterId, data: { letterId } satisfies LetterJob }], {
+    db: fromDrizzle(executor, sql),
+  });
+}
+
 /** Takes tasks out of the queue as a part of the caller's transaction. */
 export async function dequeue(executor: Executor, ids: readonly string[]): Promise<void> {
   if (ids.length === 0) return;
   const boss = await openQueue();
   await boss.deleteJob(TASKS, [...ids], { db: fromDrizzle(executor, sql) });
+}
+
+const ONE_BY_ONE = { batchSize: 1, pollingIntervalSeconds: 2, notifyPollingIntervalSeconds: 5 };
+
+/** Runs `handle` for every letter; a handler that throws has its letter tried again later. */
+export async function workOnLetters(handle: (letterId: string) => Promise<void>): Promise<void> {
+  const boss = await openQueue(true);
+  await boss.work(
+    LETTERS,
+    { ...ONE_BY_ONE, localConcurrency: LETTERS_AT_ONCE },
+    async (jobs: Job<LetterJob>[]) => {
+      for (const { data } of jobs) await handle(data.letterId);
+    },
+  );
 }
 
 /**
@@ -97,12 +138,11 @@ export async function workOnTasks(
   handle: (taskId: string, lastTry: boolean) => Promise<void>,
 ): Promise<Slots> {
   const boss = await openQueue(true);
-  const options = { batchSize: 1, pollingIntervalSeconds: 2, notifyPollingIntervalSeconds: 5 };
   return keepSlots(concurrency, {
     open: () =>
       boss.work(
         TASKS,
-        { ...options, includeMetadata: true },
+        { ...ONE_BY_ONE, includeMetadata: true },
         async (jobs: JobWithMetadata<TaskJob>[]) => {
           for (const { data, retryCount, retryLimit } of jobs) {
             await handle(data.taskId, retryCount >= retryLimit);

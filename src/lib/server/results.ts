@@ -1,12 +1,13 @@
 /** Stored answers: found again for the same molecule, settings and version, and written exactly once. */
 import { createHash } from 'node:crypto';
-import { and, eq, inArray } from 'drizzle-orm';
+import { and, eq, inArray, sql } from 'drizzle-orm';
 import { ENGINE_VERSION, type Request, type Result } from '../engine';
 import { taskSchema } from '../domain/compute';
 import { coordinatesOf } from '../domain/molfile-geometry';
 import { db, type Executor } from './db';
-import { conformers, maps, profileCurves, profiles, results } from './db/schema';
+import { batches, conformers, maps, profileCurves, profiles, results } from './db/schema';
 import { pack } from './packing';
+import { measure } from './storage';
 import { finish, type ClaimedTask } from './tasks';
 
 /** What an answer belongs to; together with the engine's version it is unique. */
@@ -121,11 +122,13 @@ async function insertResult(
       details,
       warnings: result.warnings,
       seconds: result.provenance.seconds,
+      madeFor: sql`(select ${batches.createdBy} from ${batches} where ${batches.id} = ${task.batchId})`,
     })
     .onConflictDoNothing()
     .returning({ id: results.id });
   if (inserted) {
     await rows(executor, inserted.id);
+    await measure(executor, inserted.id);
     return inserted.id;
   }
   const [{ id }] = await executor

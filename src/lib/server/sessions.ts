@@ -88,6 +88,7 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
       teamId: memberships.teamId,
       role: memberships.role,
       teamName: teams.name,
+      deletionAt: teams.deletionAt,
       secondFactor: teams.requiresSecondFactor,
       singleSignOn: teams.requiresSingleSignOn,
       method: sessions.method,
@@ -108,18 +109,20 @@ export async function find(sessionId: string): Promise<SignedIn | null> {
     sessionId,
     user,
     proof: { method, withSecondFactor, provedAt },
-    memberships: rows.flatMap(({ teamId, role, teamName, secondFactor, singleSignOn }) =>
-      teamId !== null && role !== null && teamName !== null
-        ? [
-            {
-              userId: user.id,
-              teamId,
-              role,
-              teamName,
-              requires: { secondFactor: secondFactor!, singleSignOn: singleSignOn! },
-            },
-          ]
-        : [],
+    memberships: rows.flatMap(
+      ({ teamId, role, teamName, deletionAt, secondFactor, singleSignOn }) =>
+        teamId !== null && role !== null && teamName !== null
+          ? [
+              {
+                userId: user.id,
+                teamId,
+                role,
+                teamName,
+                deletionAt,
+                requires: { secondFactor: secondFactor!, singleSignOn: singleSignOn! },
+              },
+            ]
+          : [],
     ),
   };
 }

@@ -2,23 +2,22 @@
 import { asc, eq, sql } from 'drizzle-orm';
 import { CHEMIST_BATCH_LIMIT, may } from '../domain/roles';
 import type { Plan } from '../domain/submission';
+import { batchFinished } from './batch-finish';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks } from './db/schema';
 import { ownDraft } from './drafts';
 import { recordEvent } from './events';
-import { batchFinished } from './finished-batches';
 import { tell } from './live';
 import { require, type Member } from './member';
+import { checkAtoms, checkRoom, lockTeam } from './limits';
 import { planTasks, type PlannedTask } from './plans';
 import { enqueue } from './queue';
+import { SubmissionError } from './refusals';
 import { findStored, identityOf } from './results';
 import { waitingOf } from './tasks';
 
 /** Rows and tasks are written in chunks of this size, so that no statement grows without bound. */
 const CHUNK = 500;
-
-/** A person's mistake in what they submit, in a sentence for them. */
-export class SubmissionError extends Error {}
 
 /**
  * Submits a draft: the batch, its tasks and their jobs in one transaction, so that nothing is half there. Tasks whose
@@ -27,6 +26,8 @@ export class SubmissionError extends Error {}
 export async function submit(member: Member, batchId: string, plan: Plan) {
   require(member, 'submit molecules');
   return db.transaction(async (transaction) => {
+    // Two submissions at once see each other's tasks, and neither passes a limit that both together break.
+    await lockTeam(transaction, member.teamId);
     const draft = await ownDraft(transaction, member, batchId);
     const rows = await transaction
       .select({
@@ -36,12 +37,15 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
         moleculeId: molecules.id,
         rotors: molecules.rotors,
         hasGeometry: molecules.hasGeometry,
+        name: entries.name,
+        atomCount: molecules.atomCount,
       })
       .from(entries)
       .innerJoin(molecules, eq(molecules.id, entries.moleculeId))
       .where(eq(entries.batchId, batchId))
       .orderBy(asc(entries.position));
     checkSize(member, rows.length);
+    await checkAtoms(transaction, member, rows);
     await transaction
       .update(batches)
       .set({ plan, submittedAt: sql`now()` })
@@ -62,12 +66,14 @@ export async function submit(member: Member, batchId: string, plan: Plan) {
     if (queued + reused === 0) {
       throw new SubmissionError('Nothing in this batch can be computed with what was chosen.');
     }
+    if (queued > 0) await checkRoom(transaction, member, queued);
     await recordEvent(transaction, member, 'submit batch', `batch:${batchId}`, {
       name: draft.name,
       queued,
       reused,
     });
-    await batchFinished(transaction, batchId);
+    // Who submits what is answered already sees so at once, and needs no letter.
+    await batchFinished(transaction, batchId, { isQuiet: true });
     await tell(transaction, 'batch-changed', [batchId]);
     return { queued, reused };
   });

@@ -1,9 +1,10 @@
 /** Tasks: claimed, kept alive, finished, cancelled and run again. The row is the only truth shown to people. */
 import { and, asc, count, eq, inArray, lt, min, or, sql } from 'drizzle-orm';
+import { batchFinished } from './batch-finish';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { recordEvent } from './events';
-import { batchFinished } from './finished-batches';
+import { checkRoom, lockTeam } from './limits';
 import { tell } from './live';
 import { notFound, require, type Member } from './member';
 import { countTask } from './metrics';
@@ -179,7 +180,13 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
   );
   return executor
-    .select({ id: tasks.id, kind: tasks.kind, state: tasks.state, batchId: tasks.batchId })
+    .select({
+      id: tasks.id,
+      kind: tasks.kind,
+      state: tasks.state,
+      resultId: tasks.resultId,
+      batchId: tasks.batchId,
+    })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .where(and(chosen, eq(batches.teamId, member.teamId)))
@@ -208,7 +215,8 @@ export async function cancel(member: Member, choice: TaskChoice): Promise<number
       .where(inArray(tasks.id, ids));
     const queued = open.filter((row) => row.state === 'queued').map((row) => row.id);
     await dequeue(transaction, queued);
-    await batchFinished(transaction, open[0].batchId);
+    // Nobody has to be told by letter of what the team stopped as a whole.
+    await batchFinished(transaction, choice.batchId, { isQuiet: !choice.rows });
     await recordEvent(transaction, member, 'cancel tasks', `batch:${open[0].batchId}`, {
       tasks: ids.length,
     });
@@ -221,15 +229,23 @@ export async function cancel(member: Member, choice: TaskChoice): Promise<number
   return cancelled.length;
 }
 
-/** Queues the failed and cancelled ones among the chosen tasks again, as a new attempt. Returns how many. */
+/**
+ * Queues those among the chosen tasks again, as a new attempt, that failed, were cancelled, or lost their result for its
+ * age. Returns how many.
+ */
 export async function rerun(member: Member, choice: TaskChoice): Promise<number> {
   require(member, 'rerun tasks');
   return db.transaction(async (transaction) => {
+    await lockTeam(transaction, member.teamId);
     const rows = await lockOwn(transaction, member, choice);
     if (rows.length === 0) notFound('task');
-    const ended = rows.filter((row) => row.state === 'failed' || row.state === 'cancelled');
+    const ended = rows.filter(
+      ({ state, resultId }) =>
+        state === 'failed' || state === 'cancelled' || (state === 'done' && resultId === null),
+    );
     const ids = ended.map((row) => row.id);
     if (ids.length === 0) return 0;
+    await checkRoom(transaction, member, ids.length);
     await queueAgain(transaction, ids, await waitingOf(transaction, member));
     await recordEvent(transaction, member, 'rerun tasks', `batch:${ended[0].batchId}`, {
       tasks: ids.length,

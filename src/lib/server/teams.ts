@@ -14,6 +14,8 @@ export interface Membership extends Member {
   readonly teamName: string;
   /** How its members must have signed in. */
   readonly requires: TeamRequirements;
+  /** When the team will be deleted, where a lead asked for it. */
+  readonly deletionAt?: Date | null;
 }
 
 /** The chosen team where the person belongs to it (any more), else their first; null without a team. */

@@ -17,7 +17,7 @@ import {
   resetPasswordLetter,
 } from './letters';
 import { log } from './log';
-import { post, type Letter } from './mail';
+import { post, postWithin, type Letter } from './mail';
 import { openTeamWithin } from './memberships';
 import { hashPassword, verifyPassword } from './passwords';
 import * as sessions from './sessions';
@@ -39,7 +39,8 @@ async function findByEmail(email: string) {
  */
 export async function signUp({ name, email, password }: SignUp): Promise<void> {
   const passwordHash = await hashPassword(password);
-  const letter = await db.transaction(async (tx): Promise<Letter> => {
+  await db.transaction(async (tx) => {
+    const send = (letter: Letter) => postWithin(tx, email, letter);
     const [opened] = await tx
       .insert(users)
       .values({ name, email, passwordHash })
@@ -49,12 +50,12 @@ export async function signUp({ name, email, password }: SignUp): Promise<void> {
         setWhere: sql`${users.confirmedAt} is null`,
       })
       .returning({ id: users.id });
-    if (!opened) return letterToOwner((await findByEmail(email))!);
+    if (!opened) return send(letterToOwner((await findByEmail(email))!));
     await openOwnTeam(tx, opened.id, name);
     await recordAccountEvent(tx, opened.id, 'signed up');
-    return confirmAddressLetter(name, await letterTokens.issue(tx, opened.id, 'confirm-address'));
+    const token = await letterTokens.issue(tx, opened.id, 'confirm-address');
+    return send(confirmAddressLetter(name, token));
   });
-  post(email, letter);
 }
 
 /** True when the account is opened through the identity provider, which is there, and in no other way. */
@@ -159,8 +160,10 @@ export function resendConfirmation(email: string): void {
   later(async () => {
     const user = await findByEmail(email);
     if (!user || user.confirmedAt) return;
-    const token = await letterTokens.issue(db, user.id, 'confirm-address');
-    post(email, confirmAddressLetter(user.name, token));
+    await db.transaction(async (tx) => {
+      const token = await letterTokens.issue(tx, user.id, 'confirm-address');
+      await postWithin(tx, email, confirmAddressLetter(user.name, token));
+    });
   });
 }
 
@@ -174,8 +177,10 @@ export function forgotPassword(email: string): void {
     const user = await findByEmail(email);
     if (!user) return;
     if (signsInElsewhere(user)) return post(email, letterToOwner(user));
-    const token = await letterTokens.issue(db, user.id, 'reset-password');
-    post(email, resetPasswordLetter(user.name, token));
+    await db.transaction(async (tx) => {
+      const token = await letterTokens.issue(tx, user.id, 'reset-password');
+      await postWithin(tx, email, resetPasswordLetter(user.name, token));
+    });
   });
 }
 
@@ -203,11 +208,10 @@ export async function resetPassword(
     await signInSteps.endAll(tx, owner.id);
     await letterTokens.revoke(tx, owner.id, 'confirm-address');
     await recordAccountEvent(tx, owner.id, 'reset password');
+    await postWithin(tx, owner.email, passwordChangedLetter(owner.name));
     return true;
   });
-  if (!isDone) return 'letter';
-  post(owner.email, passwordChangedLetter(owner.name));
-  return 'done';
+  return isDone ? 'done' : 'letter';
 }
 
 export type PasswordChangeFault = {
@@ -233,8 +237,8 @@ export async function changePassword(
     await signInSteps.endAll(tx, user.id);
     await letterTokens.revoke(tx, user.id, 'reset-password');
     await recordAccountEvent(tx, user.id, 'changed password');
+    await postWithin(tx, user.email, passwordChangedLetter(user.name));
   });
-  post(user.email, passwordChangedLetter(user.name));
   return null;
 }
 

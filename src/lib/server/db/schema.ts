@@ -27,7 +27,9 @@ import {
 import { energyUnits } from '../../domain/energy-units';
 import { roles } from '../../domain/roles';
 import { signInMethods } from '../../domain/sign-in-strength';
+import { batchLetterChoices } from '../../domain/batch-letters';
 import type { ApiScope } from '../../domain/api';
+import type { LimitSettings } from '../../domain/limits';
 import type { Rotor } from '../../domain/submission';
 
 const bytes = customType<{ data: Uint8Array; driverData: Uint8Array }>({ dataType: () => 'bytea' });
@@ -57,6 +59,16 @@ export const sourceEnum = pgEnum('batch_source', ['paste', 'draw', 'upload', 'pr
 export const structureFormatEnum = pgEnum('structure_format', ['smiles', 'molfile']);
 export const signInMethodEnum = pgEnum('sign_in_method', signInMethods);
 export const letterPurposeEnum = pgEnum('letter_purpose', ['confirm-address', 'reset-password']);
+export const letterStateEnum = pgEnum('letter_state', [
+  'waiting',
+  'claimed',
+  'handing-in',
+  'sent',
+  'unsure',
+  'given-up',
+  'expired',
+]);
+export const batchLettersEnum = pgEnum('batch_letters', batchLetterChoices);
 
 /** People. The address is stored in lower case. */
 export const users = pgTable(
@@ -72,6 +84,8 @@ export const users = pgTable(
     energyUnit: energyUnitEnum('energy_unit').notNull().default('kcal/mol'),
     /** Looks after the machines; set by `npm run operator` only. */
     isOperator: boolean('is_operator').notNull().default(false),
+    /** When the person hears by letter that a batch of theirs has ended. */
+    batchLetters: batchLettersEnum('batch_letters').notNull().default('each'),
     createdAt: created(),
   },
   (table) => [check('users_email_lower_case', sql`${table.email} = lower(${table.email})`)],
@@ -177,6 +191,47 @@ export const letterTokens = pgTable(
   (table) => [index('letter_tokens_user').on(table.userId, table.purpose)],
 );
 
+/**
+ * Letters on their way. A worker claims one, and marks it as being handed in just before its body goes to the mail
+ * server: what stays in that state was perhaps delivered and is never sent again. The body is erased at the end.
+ */
+export const letters = pgTable(
+  'letters',
+  {
+    /** Also the letter's Message-ID, so that a mail server knows a repeated one. */
+    id: uuid('id').primaryKey().defaultRandom(),
+    address: text('address').notNull(),
+    subject: text('subject').notNull(),
+    /** Null once the letter has ended: it may hold a secret. */
+    text: text('text'),
+    html: text('html'),
+    state: letterStateEnum('state').notNull().default('waiting'),
+    attempt: smallint('attempt').notNull().default(0),
+    /** What stood in the way last. */
+    reason: text('reason'),
+    /** What it announces, where something waits for its delivery. */
+    about: text('about'),
+    createdAt: created(),
+    /** After this moment it would say nothing true any more. */
+    expiresAt: moment('expires_at').notNull(),
+    claimedAt: moment('claimed_at'),
+    endedAt: moment('ended_at'),
+  },
+  (table) => [
+    index('letters_open')
+      .on(table.createdAt)
+      .where(sql`${table.endedAt} is null`),
+    index('letters_state_ended').on(table.state, table.endedAt),
+    index('letters_about')
+      .on(table.about)
+      .where(sql`${table.about} is not null`),
+    check(
+      'letters_ended_has_no_body',
+      sql`(${table.endedAt} is null) = (${table.text} is not null) and (${table.text} is null) = (${table.html} is null)`,
+    ),
+  ],
+);
+
 /** Token buckets for sign-in and submission, shared by all web processes. */
 export const rateBuckets = pgTable('rate_buckets', {
   key: text('key').primaryKey(),
@@ -184,14 +239,28 @@ export const rateBuckets = pgTable('rate_buckets', {
   refilledAt: moment('refilled_at').notNull().defaultNow(),
 });
 
-export const teams = pgTable('teams', {
-  id: uuid('id').primaryKey().defaultRandom(),
-  name: text('name').notNull(),
-  /** How members must have signed in to see the team's data. */
-  requiresSecondFactor: boolean('requires_second_factor').notNull().default(false),
-  requiresSingleSignOn: boolean('requires_single_sign_on').notNull().default(false),
-  createdAt: created(),
-});
+export const teams = pgTable(
+  'teams',
+  {
+    id: uuid('id').primaryKey().defaultRandom(),
+    name: text('name').notNull(),
+    /** How members must have signed in to see the team's data. */
+    requiresSecondFactor: boolean('requires_second_factor').notNull().default(false),
+    requiresSingleSignOn: boolean('requires_single_sign_on').notNull().default(false),
+    /** What a lead set; what is missing is the operator's default. */
+    limits: jsonb('limits').$type<LimitSettings>().notNull().default({}),
+    /** When its leads were told that the storage is nearly full; null while it is not. */
+    storageWarnedAt: moment('storage_warned_at'),
+    /** From when on the team may be deleted for good; null while nobody asked for it. */
+    deletionAt: moment('deletion_at'),
+    createdAt: created(),
+  },
+  (table) => [
+    index('teams_deletion')
+      .on(table.deletionAt)
+      .where(sql`${table.deletionAt} is not null`),
+  ],
+);
 
 export const memberships = pgTable(
   'memberships',
@@ -203,6 +272,8 @@ export const memberships = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'cascade' }),
     role: roleEnum('role').notNull(),
+    /** What a lead set for this member; what is missing is the team's. */
+    limits: jsonb('limits').$type<LimitSettings>().notNull().default({}),
     createdAt: created(),
   },
   (table) => [
@@ -286,9 +357,26 @@ export const batches = pgTable(
     createdAt: created(),
     /** Null while its maker still looks at the preview. */
     submittedAt: moment('submitted_at'),
+    /** When the last of its tasks ended; null while one is open, also after some were run again. */
+    finishedAt: moment('finished_at'),
+    /** When its maker was told so, or did not want to be. */
+    toldAt: moment('told_at'),
+    /** While set, its results stay whatever their age. */
+    pinnedAt: moment('pinned_at'),
+    pinnedBy: uuid('pinned_by').references(() => users.id, { onDelete: 'set null' }),
+    /** From when on its results may be removed, as letters announced; null while nothing is announced. */
+    removalAt: moment('removal_at'),
+    /** When its results were removed for their age. */
+    removedAt: moment('removed_at'),
   },
   (table) => [
     index('batches_team_submitted').on(table.teamId, table.submittedAt),
+    index('batches_untold')
+      .on(table.finishedAt)
+      .where(sql`${table.finishedAt} is not null and ${table.toldAt} is null`),
+    index('batches_kept')
+      .on(table.teamId, table.finishedAt)
+      .where(sql`${table.removedAt} is null and ${table.pinnedAt} is null`),
     index('batches_drafts')
       .on(table.createdAt)
       .where(sql`${table.submittedAt} is null`),
@@ -390,9 +478,14 @@ export const results = pgTable(
     details: jsonb('details').notNull(),
     warnings: jsonb('warnings').notNull().default([]),
     seconds: doublePrecision('seconds').notNull(),
+    /** For whom it was computed first: it counts against their limit. */
+    madeFor: uuid('made_for').references(() => users.id, { onDelete: 'set null' }),
+    /** What it takes in the database with all that hangs on it. */
+    bytes: integer('bytes').notNull().default(0),
     createdAt: created(),
   },
   (table) => [
+    index('results_stored').on(table.teamId, table.madeFor, table.bytes),
     unique('results_identity').on(
       table.moleculeId,
       table.kind,

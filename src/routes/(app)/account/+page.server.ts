@@ -1,6 +1,8 @@
 import { fail } from '@sveltejs/kit';
 import { changePasswordSchema, renameSchema, sessionSchema } from '$lib/domain/accounts';
+import { batchLettersSchema } from '$lib/domain/batch-letters';
 import { describeUserAgent } from '$lib/domain/user-agents';
+import { batchLettersOf, chooseBatchLetters } from '$lib/server/batch-letters';
 import { readForm } from '$lib/server/forms';
 import { requireFresh } from '$lib/server/freshness';
 import * as identities from '$lib/server/identities';
@@ -14,7 +16,10 @@ import * as users from '$lib/server/users';
 import type { Actions, PageServerLoad } from './$types';
 
 /** What a form on this page answers: which form it was, what was wrong, or that it is done. */
-const answer = (form: 'name' | 'password' | 'sessions', errors: Record<string, string> = {}) => ({
+const answer = (
+  form: 'name' | 'password' | 'letters' | 'sessions',
+  errors: Record<string, string> = {},
+) => ({
   form,
   errors,
 });
@@ -27,6 +32,7 @@ export const load: PageServerLoad = async ({ locals }) => {
     hasSecondFactor: await secondFactor.isOn(user.id),
     provider: findProvider()?.name ?? null,
     isBound: await identities.isBoundToProvider(user.id),
+    batchLetters: await batchLettersOf(user.id),
     sessions: list.map(({ userAgent, ...session }) => ({
       ...session,
       program: describeUserAgent(userAgent),
@@ -57,6 +63,14 @@ export const actions: Actions = {
     const fault = await users.changePassword({ userId: user.id, sessionId }, form.data);
     if (fault) return fail(400, answer('password', { [fault.field]: fault.message }));
     return answer('password');
+  },
+
+  chooseLetters: async ({ request, locals }) => {
+    const { user } = whoIsSignedIn(locals);
+    const form = await readForm(request, batchLettersSchema);
+    if (!form.data) return fail(400, answer('letters', form.faults.errors));
+    await chooseBatchLetters(user.id, form.data.choice);
+    return answer('letters');
   },
 
   revoke: async ({ request, locals }) => {

@@ -2,6 +2,8 @@ import { fail, redirect } from '@sveltejs/kit';
 import { z } from 'zod';
 import { uuidParam } from '$lib/domain/identifiers';
 import * as batches from '$lib/server/batches';
+import { pin, unpin } from '$lib/server/pins';
+import { LimitError } from '$lib/server/refusals';
 import * as tasks from '$lib/server/tasks';
 import { whoAsks } from '$lib/server/teams';
 import type { Actions, PageServerLoad } from './$types';
@@ -30,7 +32,13 @@ export const load: PageServerLoad = async ({ locals, params, url, depends }) => 
   );
   const listed = await batches.listEntries(member, id, { ...query, pageSize: PAGE_SIZE });
   if (!listed.batch.submittedAt) redirect(303, `/batches/${id}/preview`);
-  return { ...listed, query, pageSize: PAGE_SIZE, progress: await batches.progress(member, id) };
+  return {
+    ...listed,
+    query,
+    pageSize: PAGE_SIZE,
+    progress: await batches.progress(member, id),
+    removed: await batches.countRemoved(id),
+  };
 };
 
 /** The tasks that a form means: those of the named rows, or all of the batch. */
@@ -41,6 +49,9 @@ async function choiceOf(batchId: string, request: Request): Promise<tasks.TaskCh
 }
 
 export const actions: Actions = {
+  pin: ({ locals, params }) => pin(whoAsks(locals), uuidParam(params.id)),
+  unpin: ({ locals, params }) => unpin(whoAsks(locals), uuidParam(params.id)),
+
   cancel: async ({ locals, params, request }) => {
     const member = whoAsks(locals);
     const choice = await choiceOf(params.id, request);
@@ -52,8 +63,13 @@ export const actions: Actions = {
   rerun: async ({ locals, params, request }) => {
     const member = whoAsks(locals);
     const choice = await choiceOf(params.id, request);
-    if ((await tasks.rerun(member, choice)) === 0) {
-      return fail(409, { fault: 'Nothing here has failed or was cancelled.' });
+    try {
+      if ((await tasks.rerun(member, choice)) === 0) {
+        return fail(409, { fault: 'Nothing here has failed, was cancelled or was removed.' });
+      }
+    } catch (cause) {
+      if (!(cause instanceof LimitError)) throw cause;
+      return fail(403, { fault: cause.message });
     }
   },
 };

@@ -1,14 +1,17 @@
 import { fail, redirect } from '@sveltejs/kit';
 import { draftQuerySchema } from '$lib/domain/submission';
 import { readUpload } from '$lib/server/drafts';
+import { roomOf } from '$lib/server/limits';
 import { require } from '$lib/server/member';
 import { limitRate } from '$lib/server/rate-limits';
 import { UploadError } from '$lib/server/rows';
 import { whoAsks } from '$lib/server/teams';
 import type { Actions, PageServerLoad } from './$types';
 
-export const load: PageServerLoad = ({ locals }) => {
-  require(whoAsks(locals), 'submit molecules');
+export const load: PageServerLoad = async ({ locals }) => {
+  const member = whoAsks(locals);
+  require(member, 'submit molecules');
+  return { room: await roomOf(member) };
 };
 
 /** Without script a pasted list is sent as a form; with it the page streams and shows progress. */

@@ -4,7 +4,9 @@ import { readPlan } from '$lib/domain/plan-form';
 import { bondChoiceSchema } from '$lib/domain/submission';
 import * as batches from '$lib/server/batches';
 import { chooseBonds, discardDraft } from '$lib/server/drafts';
-import { submit, SubmissionError } from '$lib/server/submission';
+import { roomOf } from '$lib/server/limits';
+import { SubmissionError } from '$lib/server/refusals';
+import { submit } from '$lib/server/submission';
 import { whoAsks } from '$lib/server/teams';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -13,9 +15,10 @@ const PAGE_SIZE = 25;
 export const load: PageServerLoad = async ({ locals, params, url }) => {
   const page = Math.max(1, Math.floor(Number(url.searchParams.get('page'))) || 1);
   const id = uuidParam(params.id);
-  const listed = await batches.listRows(whoAsks(locals), id, page, PAGE_SIZE);
+  const member = whoAsks(locals);
+  const listed = await batches.listRows(member, id, page, PAGE_SIZE);
   if (listed.batch.submittedAt) redirect(303, `/batches/${id}`);
-  return { ...listed, page, pageSize: PAGE_SIZE };
+  return { ...listed, page, pageSize: PAGE_SIZE, room: await roomOf(member) };
 };
 
 export const actions: Actions = {

@@ -1,36 +1,12 @@
-/** The moment a batch finishes: its last open task ends, in whatever way. */
-import { and, count, eq, inArray, isNotNull } from 'drizzle-orm';
+/** What a team's own programs are told when a batch ends. */
+import { and, count, eq } from 'drizzle-orm';
 import type { Executor } from './db';
 import { batches, tasks, teams, webhooks } from './db/schema';
 import { environment } from './environment';
 import { queueDelivery, type Message } from './webhook-messages';
 
-/**
- * To be called in the transaction that stores the end of tasks, after it was stored. Where nothing of the batch is open
- * any more, the finish is told in the same transaction: once for each finish, also when two workers end the last two
- * tasks at the same time, because they pass here one after the other.
- */
-export async function batchFinished(executor: Executor, batchId: string): Promise<void> {
-  const [batch] = await executor
-    .select({ id: batches.id })
-    .from(batches)
-    .where(and(eq(batches.id, batchId), isNotNull(batches.submittedAt)))
-    .for('no key update');
-  if (!batch || (await hasOpenTasks(executor, batchId))) return;
-  await tellWebhooks(executor, batchId);
-}
-
-async function hasOpenTasks(executor: Executor, batchId: string): Promise<boolean> {
-  const open = await executor
-    .select({ id: tasks.id })
-    .from(tasks)
-    .where(and(eq(tasks.batchId, batchId), inArray(tasks.state, ['queued', 'running'])))
-    .limit(1);
-  return open.length > 0;
-}
-
 /** Queues a delivery to every webhook of the team that is on. */
-async function tellWebhooks(executor: Executor, batchId: string): Promise<void> {
+export async function tellWebhooks(executor: Executor, batchId: string): Promise<void> {
   const told = await executor
     .select({ id: webhooks.id })
     .from(webhooks)
