@@ -91,11 +91,15 @@ const finishResponse: Handle = async ({ event, resolve }) => {
 };
 
 /** Auth.js brings endpoints of its own; the forms here call it directly, so only the way back from a provider is open. */
-const closeAuthEndpoints: Handle = ({ event, resolve }) => {
-  const isWayBack = event.url.pathname === CALLBACK_PATH && event.request.method === 'GET';
-  if (event.url.pathname.startsWith('/auth/') && !isWayBack)
+const closeAuthEndpoints: Handle = async ({ event, resolve }) => {
+  const { pathname } = event.url;
+  if (!pathname.startsWith('/auth/')) return resolve(event);
+  if (pathname !== CALLBACK_PATH || event.request.method !== 'GET') {
     error(404, 'There is no page at this address.');
-  return resolve(event);
+  }
+  // Auth.js answers a failure by a redirect whose headers cannot be added to; its copy's can.
+  const response = await resolve(event);
+  return new Response(response.body, response);
 };
 
 async function identify(event: RequestEvent): Promise<void> {

@@ -235,6 +235,34 @@ describe('signing in', () => {
   });
 });
 
+describe('coming back from an identity provider', () => {
+  it.each(['code=made-up&state=made-up', 'error=access_denied', ''])(
+    '10.1.2, 10.2.1: signs nobody in who did not begin here (%s)',
+    async (query) => {
+      const response = await get(`/auth/callback/sso?${query}`);
+      expect(response.status).toBe(302);
+      expect(response.headers.get('location')).toMatch(/^https:\/\/windlass[.]example\/sign-in[?]/);
+      expect(response.headers.get('x-content-type-options')).toBe('nosniff');
+      expect(sessionCookieOf(response)).toBeUndefined();
+    },
+  );
+
+  it.each(['session', 'csrf', 'providers', 'signin', 'signout', 'callback/credentials'])(
+    '13.4.5: the library’s own endpoint %s is closed',
+    async (name) => {
+      expect((await get(`/auth/${name}`)).status).toBe(404);
+      expect((await post(`/auth/${name}`, {})).status).toBe(404);
+    },
+  );
+
+  it('16.5.2: a provider that is away is said to be', async () => {
+    const response = await get('/sign-in/sso?next=/desk');
+    expect(response.headers.get('location')).toBe('/sign-in?fault=away');
+    const page = await get('/sign-in?fault=away', { accept: 'text/html' });
+    expect(await page.text()).toContain('does not answer');
+  });
+});
+
 describe('passwords', () => {
   it.each([
     ['6.2.1: eleven characters', 'wet lantern', false],

@@ -4,6 +4,7 @@ import { Secret, TOTP } from 'otpauth';
 import postgres from 'postgres';
 import { waitForLetter } from '../support/letters';
 import {
+  databaseUrl,
   demoMembers,
   demoPassword,
   expectAccessible,
