@@ -2,15 +2,13 @@
 import type { Control } from '../control';
 import type { ForceField } from '../forcefield/forcefield';
 import { imaginaryModes } from './free-energy';
+import { FREE_ENERGY_WINDOW } from './shape-free-energies';
 import type { VibrationalAnalysis } from './shape-free-energies';
 import { vibrationalForm, vibrationsOf } from './vibrations';
 
 /** What stands in the place of numbers that time did not suffice for. */
 export const noTime: VibrationalAnalysis = { modes: null, flaw: 'no-time' };
 const leftOut: VibrationalAnalysis = { modes: null, flaw: 'left-out' };
-
-/** Shapes higher than this above the lowest are left out, kcal/mol: at 25 °C one would hold 0.1 % of the lowest's share. */
-export const FREE_ENERGY_WINDOW = 4;
 
 /** The vibrations at a minimum (Å, 3N); a flaw where an imaginary frequency says that it is none. */
 export async function minimumVibrations(

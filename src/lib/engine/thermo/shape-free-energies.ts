@@ -3,6 +3,9 @@ import { boltzmannPopulations } from './boltzmann';
 import { thermochemistry } from './free-energy';
 import type { Vibrations } from './free-energy';
 
+/** Shapes higher than this above the lowest are left out, kcal/mol: at 25 °C one would hold 0.1 % of the lowest's share. */
+export const FREE_ENERGY_WINDOW = 4;
+
 /**
  * Why a shape has no free energy:
  * - left-out: too high above the lowest to matter
