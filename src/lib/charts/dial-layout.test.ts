@@ -46,6 +46,7 @@ describe('the dial’s layout', () => {
       forms: [],
       turn: null,
       ways: [],
+      freeEnergies: null,
     });
     expect(Math.abs(turnBetween(angle, 180))).toBeGreaterThan(14);
     expect(curve.at(angle)).toBeLessThan(0.5);

@@ -6,6 +6,24 @@ const coordinates = z
   .describe('x, y, z of every atom in the order of the molfile, Å');
 const kcal = (what: string) => z.number().describe(`${what}, kcal/mol`);
 
+const vibrations = z
+  .object({
+    modes: z
+      .object({
+        frequencies: z
+          .array(z.number())
+          .readonly()
+          .describe('cm⁻¹, ascending, unscaled; imaginary ones negative'),
+        moments: z.array(z.number()).readonly().describe('Principal moments of inertia, g/mol Å²'),
+        mass: z.number().describe('g/mol'),
+      })
+      .nullable()
+      .describe('null where none were computed'),
+    flaw: z.string().nullable().describe('Why there is no free energy; null where there is one'),
+    rise: kcal('How far the saddle lies above the top of the profile').optional(),
+  })
+  .describe('Harmonic vibrations, on which free energies rest');
+
 export const answerSchema = z.looseObject({
   name: z.string(),
   smiles: z.string().describe('Canonical isomeric SMILES'),
@@ -29,6 +47,7 @@ export const answerSchema = z.looseObject({
       degeneracy: z.number().int(),
       population: z.number().describe('Share of the set, 0 to 1'),
       rmsdToLowest: z.number().describe('Å'),
+      vibrations: vibrations.nullable().describe('null in results of versions before 0.3'),
       coordinates,
     }),
   ),
@@ -53,6 +72,9 @@ export const answerSchema = z.looseObject({
           energy: kcal('Model energy'),
           relative: kcal('Energy above the lowest of all points'),
           label: z.string(),
+          vibrations: vibrations
+            .optional()
+            .describe('Missing in rigid scans and before version 0.3'),
           coordinates,
         }),
       ),

@@ -13,14 +13,15 @@ const REFERENCES = {
   labels:
     'G. P. Moss, Pure Appl. Chem. 1996, 68, 2193-2222 (torsion terms after Klyne and Prelog).',
   eyring: 'H. Eyring, J. Chem. Phys. 1935, 3, 107-115 (rates).',
+  grimme: 'S. Grimme, Chem. Eur. J. 2012, 18, 9955-9964 (entropies of soft modes).',
   atropisomers:
     'S. R. LaPlante et al., J. Med. Chem. 2011, 54, 7005-7022 (stability classes of axes).',
 } as const;
 
 const SENTENCES: Readonly<Record<string, string>> = {
   conformers:
-    'Conformers were searched from distance geometry, systematic turns of all rotatable bonds and repeated kicks, minimized to an RMS gradient of at most 0.001 kcal/mol/Å, freed of duplicates under symmetry, and weighted by their Boltzmann factors and degeneracies.',
-  scan: 'Torsion profiles were relaxed at every grid angle with the torsion held, each angle started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely and maxima refined along the profile. Rates take the energy barrier in the place of the free energy of activation, with a transmission coefficient of 1.',
+    'Conformers were searched from distance geometry, systematic turns of all rotatable bonds and repeated kicks, minimized to an RMS gradient of at most 0.001 kcal/mol/Å, freed of duplicates under symmetry, and weighted by their Boltzmann factors and degeneracies, by energy and, from version 0.3 on and within 4 kcal/mol of the lowest, by free energy from harmonic frequencies without scaling and without symmetry numbers, which the degeneracies take in.',
+  scan: 'Torsion profiles were relaxed at every grid angle with the torsion held, each angle started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely and maxima refined along the profile. From version 0.3 on, tops of profiles were refined to saddles with one imaginary frequency that lead down to the minima on both sides; free energies take harmonic frequencies, without scaling, with the entropies of soft modes interpolated to those of free rotors. Rates take the free energy of activation, or the energy barrier where the tables say so, with a transmission coefficient of 1.',
   map: 'Maps of two bonds were relaxed in every cell of the grid with both torsions held, each cell started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely, and the lowest way between two of them is the one whose highest cell is lowest.',
   conjugation:
     'Conjugated bonds were described by the twist between the local π axes, its overlap cos², and the energies of their s-cis and s-trans forms along a relaxed profile.',
@@ -44,6 +45,7 @@ export function methodsText({ engineVersion, models, kinds }: MethodFacts): stri
   const cited = [
     REFERENCES.mmff94,
     ...(models.includes('MMFF94s') ? [REFERENCES.mmff94s] : []),
+    ...(kinds.includes('scan') || kinds.includes('conformers') ? [REFERENCES.grimme] : []),
     ...(kinds.includes('scan')
       ? [REFERENCES.labels, REFERENCES.eyring, REFERENCES.atropisomers]
       : []),

@@ -10,12 +10,13 @@ async function scanned(smiles: string, bond: [number, number], temperature: numb
   const profile: StoredProfile = {
     symmetry: result.symmetry,
     points: result.points.map(({ angle, energy }) => ({ angle, relative: energy - lowest })),
-    stationary: result.stationary.map(({ kind, angle, energy, label, converged }) => ({
+    stationary: result.stationary.map(({ kind, angle, energy, label, converged, vibrations }) => ({
       kind,
       angle,
       relative: energy - lowest,
       label,
       converged,
+      vibrations,
     })),
   };
   return { result, profile };
@@ -31,10 +32,41 @@ describe('a profile read in the browser', () => {
         expect(reading.basins[n].population).toBeCloseTo(population, 9),
       );
       expect(reading.turn!.barrier).toBeCloseTo(result.interconversion!.barrier, 9);
-      result.crossings.forEach((crossing, n) =>
-        expect(reading.ways[n].halfLife / crossing.halfLife).toBeCloseTo(1, 6),
+      result.crossings.forEach((crossing, n) => {
+        expect(reading.ways[n].halfLife / crossing.halfLife).toBeCloseTo(1, 6);
+        expect(reading.ways[n].free!.barrier).toBeCloseTo(crossing.free!.barrier, 9);
+      });
+      expect(reading.turn!.free!.barrier).toBeCloseTo(result.interconversion!.free!.barrier, 9);
+      result.freeEnergies.forEach((energy, n) =>
+        expect(reading.freeEnergies![n]).toBeCloseTo(energy!, 9),
       );
     }
+  });
+
+  it('has no free energies where the computation gave none, or where a minimum is without', async () => {
+    const { profile } = await scanned('CCCC', [1, 2], 298.15);
+    const old = {
+      ...profile,
+      stationary: profile.stationary.map(({ vibrations: _vibrations, ...point }) => point),
+    };
+    const reading = readProfile(old, 298.15);
+    expect(reading.freeEnergies).toBeNull();
+    expect(reading.turn!.free).toBeNull();
+    expect(reading.forms.every(({ free }) => free === null)).toBe(true);
+
+    const flawed = {
+      ...profile,
+      stationary: profile.stationary.map((point) =>
+        point.label === 'anti'
+          ? { ...point, vibrations: { modes: null, flaw: 'no-time' as const } }
+          : point,
+      ),
+    };
+    const { freeEnergies, ways } = readProfile(flawed, 298.15);
+    expect(freeEnergies!.every((energy) => energy === null)).toBe(true);
+    // Between the gauche forms nothing is missing.
+    expect(ways.some(({ free }) => free !== null)).toBe(true);
+    expect(ways.some(({ free }) => free === null)).toBe(true);
   });
 
   it('joins mirrored minima to one form and names every angle', async () => {

@@ -6,9 +6,11 @@ import {
   summarizeProfile,
   turnBetween,
   wrapDegrees,
+  type FreeCrossing,
   type PeriodicCurve,
   type Profile,
   type StabilityClass,
+  type VibrationalAnalysis,
 } from '../engine/light';
 
 export interface StationaryPoint {
@@ -18,6 +20,8 @@ export interface StationaryPoint {
   readonly relative: number;
   readonly label: string;
   readonly converged: boolean;
+  /** What its free energy rests on; missing in rigid scans and in results of versions before 0.3. */
+  readonly vibrations?: VibrationalAnalysis | undefined;
 }
 
 /** A stored profile; angles in degrees, energies in kcal/mol. */
@@ -42,6 +46,8 @@ export interface Form {
   readonly label: string;
   readonly angles: readonly number[];
   readonly relative: number;
+  /** ΔG of the first of them, kcal/mol; null where there is none. */
+  readonly free: number | null;
   readonly population: number;
 }
 
@@ -52,6 +58,8 @@ export interface Turn {
   readonly rate: number;
   readonly halfLife: number;
   readonly stability: StabilityClass;
+  /** The same by ΔG‡; null where it is not known. */
+  readonly free: FreeCrossing | null;
 }
 
 /** One way over a maximum. */
@@ -59,6 +67,7 @@ export interface Way {
   readonly maximum: number;
   readonly barrier: number;
   readonly halfLife: number;
+  readonly free: FreeCrossing | null;
 }
 
 export interface ProfileReading {
@@ -72,6 +81,8 @@ export interface ProfileReading {
   readonly turn: Turn | null;
   /** Both ways over each maximum. */
   readonly ways: readonly Way[];
+  /** ΔG of the stationary points above the lowest minimum's, kcal/mol, null where there is none; null for profiles without. */
+  readonly freeEnergies: readonly (number | null)[] | null;
 }
 
 /** Minima of one name whose energies differ by less are one form, kcal/mol. */
@@ -84,7 +95,12 @@ function asProfile({ points, stationary, symmetry }: StoredProfile): Profile {
   return {
     symmetry,
     points: points.map(({ angle, relative }) => ({ angle, energy: relative })),
-    stationary: stationary.map(({ kind, angle, relative }) => ({ kind, angle, energy: relative })),
+    stationary: stationary.map(({ kind, angle, relative, vibrations }) => ({
+      kind,
+      angle,
+      energy: relative,
+      vibrations,
+    })),
   };
 }
 
@@ -106,17 +122,23 @@ export function readProfile(profile: StoredProfile, temperature: number): Profil
     temperature,
     curve: profileCurve(energies),
     basins,
-    forms: formsOf(profile, basins),
+    forms: formsOf(profile, basins, summary.freeEnergies),
     turn:
       interconversion && rate !== null
         ? { ...interconversion, rate, halfLife: halfLife(rate) }
         : null,
     ways: summary.crossings,
+    freeEnergies: stationary.some(({ vibrations }) => vibrations) ? summary.freeEnergies : null,
   };
 }
 
-function formsOf({ stationary }: StoredProfile, basins: readonly Basin[]): Form[] {
-  const forms: { label: string; angles: number[]; relative: number; population: number }[] = [];
+function formsOf(
+  { stationary }: StoredProfile,
+  basins: readonly Basin[],
+  freeEnergies: readonly (number | null)[],
+): Form[] {
+  const forms: (Omit<Form, 'angles' | 'population'> & { angles: number[]; population: number })[] =
+    [];
   const minima = stationary
     .filter(({ kind }) => kind === 'minimum')
     .toSorted((a, b) => a.relative - b.relative);
@@ -130,7 +152,8 @@ function formsOf({ stationary }: StoredProfile, basins: readonly Basin[]): Form[
       known.population += population;
     } else {
       const { label, angle, relative } = minimum;
-      forms.push({ label, angles: [angle], relative, population });
+      const free = freeEnergies[stationary.indexOf(minimum)];
+      forms.push({ label, angles: [angle], relative, free, population });
     }
   }
   return forms;

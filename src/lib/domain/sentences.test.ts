@@ -60,6 +60,19 @@ describe('sentences', () => {
     expect(conformersSentence({ ...facts, complete: true }, 'kcal/mol')).not.toContain('others');
   });
 
+  it('tells the populations of conformers by ΔE and by ΔG apart', () => {
+    const facts = { count: 3, window: 10, lowestPopulation: 0.5, temperature: 298.15 };
+    const sentence = (free: { lowest: number; leader: number; share: number } | null) =>
+      conformersSentence({ ...facts, complete: true, free }, 'kcal/mol');
+    expect(sentence(null)).toMatch(/the lowest holds 50 % by ΔE at 25 °C[.]$/);
+    expect(sentence({ lowest: 0.4, leader: 0, share: 0.4 })).toMatch(
+      /holds 50 % by ΔE and 40 % by ΔG at 25 °C[.]$/,
+    );
+    expect(sentence({ lowest: 0.3, leader: 1, share: 0.6 })).toMatch(
+      /30 % by ΔG, where conformer 2 leads with 60 %, at 25 °C[.]$/,
+    );
+  });
+
   it('names the bond that carries the strain', () => {
     expect(
       strainSentence(
@@ -72,13 +85,20 @@ describe('sentences', () => {
   });
 
   describe('of a scan', () => {
-    const anti = { label: 'anti', angles: [180], relative: 0, population: 0.69 };
-    const gauche = { label: 'gauche', angles: [-65, 65], relative: 0.78, population: 0.31 };
+    const anti = { label: 'anti', angles: [180], relative: 0, free: null, population: 0.69 };
+    const gauche = {
+      label: 'gauche',
+      angles: [-65, 65],
+      relative: 0.78,
+      free: null,
+      population: 0.31,
+    };
     const turnOver = (barrier: number, stability: 1 | 2 | 3) => ({
       barrier,
       rate: 2.3e9,
       halfLife: 3e-10,
       stability,
+      free: null,
     });
     const facts = {
       bond: 'C2–C3',
@@ -93,6 +113,21 @@ describe('sentences', () => {
         'C2–C3: anti (180°) is preferred by 0.8 kcal/mol over gauche (±65°); 69 % at 25 °C; 5.0 kcal/mol to turn, 2.3 × 10⁹ s⁻¹, half-life 300 ps with ΔE‡ for ΔG‡, too fast to separate the forms (class 1).',
       );
       expect(scanSentence(facts, 'kJ/mol')).toContain('preferred by 3.3 kJ/mol');
+    });
+
+    it('says whether it rests on ΔE or on ΔG where both are known', () => {
+      const free = { barrier: 5.4, rate: 6.8e8, halfLife: 1e-9 };
+      const reading = {
+        ...facts.reading,
+        forms: [
+          { ...anti, free: 0.1 },
+          { ...gauche, free: 0 },
+        ],
+        turn: { ...turnOver(5.01, 1), free },
+      };
+      expect(scanSentence({ ...facts, reading }, 'kcal/mol')).toBe(
+        'C2–C3: anti (180°) is preferred over gauche (±65°) by ΔE 0.8 kcal/mol, ΔG −0.1 kcal/mol; 69 % by ΔE at 25 °C; ΔG‡ 5.4 kcal/mol to turn (ΔE‡ 5.0 kcal/mol), 6.8 × 10⁸ s⁻¹ and half-life 1 ns by ΔG‡; by ΔE‡ too fast to separate the forms (class 1).',
+      );
     });
 
     it('says in the same sentence what is uncertain', () => {

@@ -74,6 +74,12 @@ export interface ConformersFacts {
   readonly lowestPopulation: number;
   readonly temperature: number;
   readonly complete: boolean;
+  /** Share by ΔG of the lowest in ΔE, and which holds most by ΔG, counted from 0; null or missing where that is not known. */
+  readonly free?: {
+    readonly lowest: number;
+    readonly leader: number;
+    readonly share: number;
+  } | null;
 }
 
 export function conformersSentence(facts: ConformersFacts, unit: EnergyUnit): string {
@@ -82,7 +88,14 @@ export function conformersSentence(facts: ConformersFacts, unit: EnergyUnit): st
     ? ''
     : '; the search ended before its set stopped changing, so others may exist';
   if (count === 1) return `One conformer within ${energyText(window, unit)}${search}.`;
-  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} at ${celsius(temperature)}${search}.`;
+  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} by ΔE${freeShareText(facts)} at ${celsius(temperature)}${search}.`;
+}
+
+function freeShareText({ free }: ConformersFacts): string {
+  if (!free) return '';
+  const { lowest, leader, share } = free;
+  const other = leader === 0 ? '' : `, where conformer ${leader + 1} leads with ${percent(share)},`;
+  return ` and ${percent(lowest)} by ΔG${other}`;
 }
 
 export interface ConjugationFacts {
@@ -175,15 +188,24 @@ function formsText({ forms, temperature }: ScanFacts['reading'], unit: EnergyUni
   const named = ({ label, angles }: Form): string => `${label} (${anglesText(angles)})`;
   if (!second) return `${named(first)} is the only form`;
   const known = first.population > 0 || second.population > 0;
-  const share = known ? `; ${percent(first.population)} at ${celsius(temperature)}` : '';
+  const share = known
+    ? `; ${percent(first.population)}${first.free === null ? '' : ' by ΔE'} at ${celsius(temperature)}`
+    : '';
   const gap = second.relative - first.relative;
-  return `${named(first)} is preferred by ${energyText(gap, unit)} over ${named(second)}${share}`;
+  if (first.free === null || second.free === null) {
+    return `${named(first)} is preferred by ${energyText(gap, unit)} over ${named(second)}${share}`;
+  }
+  const freeGap = energyText(second.free - first.free, unit).replace('-', '−');
+  return `${named(first)} is preferred over ${named(second)} by ΔE ${energyText(gap, unit)}, ΔG ${freeGap}${share}`;
 }
 
 function turnText({ turn }: ScanFacts['reading'], unit: EnergyUnit): string {
   if (!turn) return '';
-  const { barrier, rate, halfLife, stability } = turn;
+  const { barrier, rate, halfLife, stability, free } = turn;
   const isNearBorder = CLASS_BORDERS.some((border) => Math.abs(barrier - border) < MODEL_ERROR);
   const doubt = isNearBorder ? ', though within the model’s error of the next class' : '';
+  if (free) {
+    return `; ΔG‡ ${energyText(free.barrier, unit)} to turn (ΔE‡ ${energyText(barrier, unit)}), ${rateText(free.rate)} and half-life ${duration(free.halfLife)} by ΔG‡; by ΔE‡ ${separation[stability]}${doubt}`;
+  }
   return `; ${energyText(barrier, unit)} to turn, ${rateText(rate)}, half-life ${duration(halfLife)} with ΔE‡ for ΔG‡, ${separation[stability]}${doubt}`;
 }

@@ -4,8 +4,15 @@
 export const KJ_PER_KCAL = 4.184;
 /** Molar gas constant, 8.314462618 J/(mol K) (CODATA 2018, exact), in kcal/(mol K). */
 export const GAS_CONSTANT = 8.314462618e-3 / KJ_PER_KCAL;
-/** Boltzmann constant over Planck constant, 1/(K s) (CODATA 2018, both exact). */
-export const BOLTZMANN_OVER_PLANCK = 1.380649e-23 / 6.62607015e-34;
+/** Planck constant, J s, and Boltzmann constant, J/K (CODATA 2018, both exact). */
+export const PLANCK = 6.62607015e-34;
+export const BOLTZMANN = 1.380649e-23;
+/** Boltzmann constant over Planck constant, 1/(K s). */
+export const BOLTZMANN_OVER_PLANCK = BOLTZMANN / PLANCK;
+/** Avogadro constant, 1/mol (CODATA 2018, exact). */
+export const AVOGADRO = 6.02214076e23;
+/** Speed of light in the unit of wavenumbers, cm/s (exact). */
+export const SPEED_OF_LIGHT = 2.99792458e10;
 /** Standard room temperature in K. */
 export const ROOM_TEMPERATURE = 298.15;
 

@@ -11,6 +11,7 @@ import {
   results,
   tasks,
 } from './db/schema';
+import type { VibrationalAnalysis } from '../engine/light';
 import type { InTeam } from './member';
 import { unpack } from './packing';
 import { toMap, type StoredMap } from './stored-maps';
@@ -22,6 +23,8 @@ export interface StoredConformer {
   readonly degeneracy: number;
   readonly population: number;
   readonly rmsdToLowest: number;
+  /** Null in results of versions before 0.3. */
+  readonly vibrations: VibrationalAnalysis | null;
   readonly coordinates: Float64Array;
 }
 
@@ -42,6 +45,8 @@ export interface StoredStationaryPoint {
   readonly label: string;
   readonly range: string;
   readonly converged: boolean;
+  /** Missing in rigid scans and in results of versions before 0.3. */
+  readonly vibrations?: VibrationalAnalysis;
   readonly coordinates: Float64Array;
 }
 
@@ -140,6 +145,7 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
       .filter(({ resultId }) => resultId === row.id)
       .map(({ resultId: _resultId, coordinates, ...conformer }) => ({
         ...conformer,
+        vibrations: conformer.vibrations as VibrationalAnalysis | null,
         coordinates: unpack(coordinates, atomCount)[0],
       })),
     profiles: curves

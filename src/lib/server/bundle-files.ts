@@ -2,8 +2,11 @@
 import { writeSdf } from '../engine';
 import { profilePlot } from '../charts/profile-plot';
 import { csvTable } from '../domain/csv';
+import { readConformers } from '../domain/conformers-reading';
 import { createNamer } from '../domain/file-names';
+import { readProfile } from '../domain/profile-reading';
 import type { Answer, StoredProfile } from './answers';
+import { FREE_ENERGY_COLUMNS, freeEnergyCells } from './bundle-free-energies';
 import { mapFiles } from './bundle-map-files';
 import { atomName, energy, type BundledMolecule, type BundleFile } from './bundle-parts';
 
@@ -37,7 +40,7 @@ function tableAndGeometries(
 ): BundleFile[] {
   if (answer.conformers.length > 0) return conformerFiles(bundled, answer, path);
   if (answer.profiles.length > 0) {
-    return answer.profiles.flatMap((profile) => profileFiles(bundled, profile, path));
+    return answer.profiles.flatMap((profile) => profileFiles(bundled, answer, profile, path));
   }
   if (answer.map) return mapFiles(bundled, answer, answer.map, path);
   if (answer.kind === 'conjugation')
@@ -75,6 +78,7 @@ function conformerFiles(
   answer: Answer,
   path: (ending: string) => string,
 ): BundleFile[] {
+  const { free } = readConformers(answer.conformers, answer.settings.temperature as number);
   const csv = csvTable(
     [
       'conformer',
@@ -83,9 +87,11 @@ function conformerFiles(
       'degeneracy',
       'population',
       'rmsd_to_lowest_angstrom',
+      'population_by_free_energy',
+      ...FREE_ENERGY_COLUMNS,
     ],
-    answer.conformers.map((conformer) =>
-      [
+    answer.conformers.map((conformer, n) => [
+      ...[
         conformer.rank + 1,
         energy(conformer.energy),
         energy(conformer.relative),
@@ -93,7 +99,9 @@ function conformerFiles(
         conformer.population.toPrecision(6),
         conformer.rmsdToLowest.toFixed(4),
       ].map(Number),
-    ),
+      significant(free?.populations[n]),
+      ...freeEnergyCells(conformer.vibrations, free?.relative[n]),
+    ]),
   );
   return [
     { path: path('sdf'), content: conformersSdf(bundled, answer) },
@@ -101,15 +109,26 @@ function conformerFiles(
   ];
 }
 
+function significant(value: number | null | undefined): number | null {
+  return value === null || value === undefined ? null : Number(value.toPrecision(6));
+}
+
 function profileFiles(
   { name, smiles, molecule }: BundledMolecule,
+  { settings, details }: Answer,
   profile: StoredProfile,
   path: (ending: string) => string,
 ): BundleFile[] {
   const torsion = profile.torsion.map((atom) => atomName(molecule, atom)).join('-');
+  const symmetry = details.symmetry as { readonly mirror: boolean };
+  const { freeEnergies } = readProfile({ ...profile, symmetry }, settings.temperature as number);
   const points = [
-    ...profile.points.map((point) => ({ ...point, label: '', kind: 'grid' })),
-    ...profile.stationary.map((point) => ({ ...point, reached: point.angle })),
+    ...profile.points.map((point) => ({ ...point, label: '', kind: 'grid', free: null })),
+    ...profile.stationary.map((point, n) => ({
+      ...point,
+      reached: point.angle,
+      free: freeEnergies?.[n] ?? null,
+    })),
   ];
   const sdf = writeSdf(
     points.map((point) => ({
@@ -136,6 +155,7 @@ function profileFiles(
       'energy_kcal_per_mol',
       'relative_kcal_per_mol',
       'label',
+      ...FREE_ENERGY_COLUMNS,
     ],
     points.map((point) => [
       point.kind,
@@ -144,6 +164,7 @@ function profileFiles(
       Number(energy(point.energy)),
       Number(energy(point.relative)),
       point.label,
+      ...freeEnergyCells('vibrations' in point ? point.vibrations : null, point.free),
     ]),
   );
   const plot = profilePlot({

@@ -178,6 +178,7 @@ function partitionConformers(
           population: conformer.population,
           rmsdToLowest: conformer.rmsdToLowest,
           coordinates: pack([coordinatesOf(conformer.molfile)]),
+          vibrations: conformer.vibrations,
         })),
       );
     },

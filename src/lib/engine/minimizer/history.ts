@@ -74,7 +74,7 @@ export function dot(a: Float64Array, b: Float64Array): number {
 }
 
 /** Inner product of a vector and as many numbers of `rows` from `start` on. */
-function dotRow(rows: Float64Array, start: number, vector: Float64Array): number {
+export function dotRow(rows: Float64Array, start: number, vector: Float64Array): number {
   // Four sums, because each addition would otherwise wait for the one before.
   let sum0 = 0;
   let sum1 = 0;

@@ -19,25 +19,6 @@ export interface Mode {
   readonly direction: Float64Array;
 }
 
-/** The matrix of second derivatives (3N × 3N, row by row, kcal/mol/Å²) by central differences of the gradient. */
-export function differenceHessian(energy: EnergyTerm, x: Readonly<Float64Array>): Float64Array {
-  const size = x.length;
-  const multiply = hessianProduct(energy, x);
-  const unit = new Float64Array(size);
-  const row = new Float64Array(size);
-  const hessian = new Float64Array(size * size);
-  for (let a = 0; a < size; a++) {
-    unit.fill(0);
-    unit[a] = 1;
-    multiply(unit, row);
-    for (let b = 0; b < size; b++) {
-      hessian[a * size + b] += 0.5 * row[b];
-      hessian[b * size + a] += 0.5 * row[b];
-    }
-  }
-  return hessian;
-}
-
 /** The function that writes Hessian(x) · vector into `product`, by a central difference along the vector. */
 function hessianProduct(
   energy: EnergyTerm,

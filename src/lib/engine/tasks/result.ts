@@ -4,6 +4,7 @@ import type { Conformer, SearchEnd } from '../conformers/conformers';
 import type { InputWarning } from '../errors';
 import type { TermEnergies, Variant } from '../forcefield/forcefield';
 import type { TorsionStrain } from '../strain/strain';
+import type { VibrationalAnalysis } from '../thermo/shape-free-energies';
 import type { MapCell, MapMinimum, MapResult } from '../torsion/map';
 import type { ProfileSummary } from '../torsion/profile';
 import type { ScanPoint, ScanResult, StationaryPoint } from '../torsion/scan-result';
@@ -56,9 +57,17 @@ export interface MinimizeFields {
   readonly evaluations: number;
 }
 
+export interface WeighedConformer extends AsMolfile<Conformer> {
+  readonly vibrations: VibrationalAnalysis;
+  /** kcal/mol above the lowest free energy at the task's temperature; null where there is none. */
+  readonly freeEnergy: number | null;
+  /** Share by free energy, 0 to 1; null for what was left out, and where shares cannot be told. */
+  readonly freePopulation: number | null;
+}
+
 export interface ConformersFields {
   /** Lowest first. */
-  readonly conformers: readonly AsMolfile<Conformer>[];
+  readonly conformers: readonly WeighedConformer[];
   /** True when the set within the window stopped changing and is here whole. */
   readonly complete: boolean;
   readonly ended: SearchEnd;

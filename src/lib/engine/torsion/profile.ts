@@ -4,6 +4,8 @@ import { createPeriodicCurve } from '../thermo/periodic-curve';
 import type { PeriodicCurve } from '../thermo/periodic-curve';
 import { eyringRate, halfLife, stabilityClass } from '../thermo/rates';
 import type { StabilityClass } from '../thermo/rates';
+import { freeEnergies } from '../thermo/shape-free-energies';
+import type { VibrationalAnalysis } from '../thermo/shape-free-energies';
 import { fitFourier } from './fourier';
 import type { FourierSeries } from './fourier';
 import type { StationaryKind } from './labels';
@@ -16,6 +18,7 @@ export interface Profile {
     readonly kind: StationaryKind;
     readonly angle: number;
     readonly energy: number;
+    readonly vibrations?: VibrationalAnalysis | undefined;
   }[];
   readonly symmetry: { readonly mirror: boolean };
 }
@@ -28,7 +31,7 @@ export interface Basin {
   readonly population: number;
 }
 
-/** One way over a barrier; E‡ of the model stands in for the free energy of activation. */
+/** One way over a barrier, by the model's ΔE‡ in the place of ΔG‡, and by ΔG‡ where both ends have a free energy. */
 export interface Crossing {
   /** Position of the maximum, and of the minima before and behind, in the list of stationary points. */
   readonly maximum: number;
@@ -40,6 +43,16 @@ export interface Crossing {
   readonly rate: number;
   /** s */
   readonly halfLife: number;
+  readonly free: FreeCrossing | null;
+}
+
+/** The same by the free energy of activation. */
+export interface FreeCrossing {
+  /** ΔG‡, kcal/mol */
+  readonly barrier: number;
+  /** 1/s and s, by Eyring with transmission coefficient 1. */
+  readonly rate: number;
+  readonly halfLife: number;
 }
 
 export interface ProfileSummary {
@@ -50,9 +63,18 @@ export interface ProfileSummary {
   readonly crossings: readonly Crossing[];
   /**
    * The barrier in kcal/mol, from the lowest minimum, that divides the circle in two sets of forms, and the stability class
-   * it gives the axis; null with fewer than two basins.
+   * it gives the axis, with the same barrier by free energy; null with fewer than two basins.
    */
-  readonly interconversion: { readonly barrier: number; readonly stability: StabilityClass } | null;
+  readonly interconversion: {
+    readonly barrier: number;
+    readonly stability: StabilityClass;
+    readonly free: FreeCrossing | null;
+  } | null;
+  /**
+   * Free energy of each stationary point above that of the lowest minimum, kcal/mol; null where it has none, or where a minimum
+   * has none that could be the lowest.
+   */
+  readonly freeEnergies: readonly (number | null)[];
   readonly fourier: FourierSeries | null;
 }
 
@@ -75,6 +97,7 @@ export function summarizeProfile(profile: Profile, temperature: number): Profile
     stationary.flatMap((point, n) => (point.kind === kind ? [n] : []));
   const minima = positions('minimum');
   const maxima = positions('maximum');
+  const free = freeEnergies(stationary, temperature);
   // A scan that ran out of time may lack barriers; then nothing can be said about what lies between them.
   const whole = minima.length === maxima.length;
   const crossings = (whole ? maxima : []).flatMap((maximum): Crossing[] => {
@@ -82,15 +105,16 @@ export function summarizeProfile(profile: Profile, temperature: number): Profile
     const before = (maximum + count - 1) % count;
     const behind = (maximum + 1) % count;
     return [
-      crossingOf(stationary, before, maximum, behind, temperature),
-      crossingOf(stationary, behind, maximum, before, temperature),
+      crossingOf(stationary, free, before, maximum, behind, temperature),
+      crossingOf(stationary, free, behind, maximum, before, temperature),
     ];
   });
   return {
     temperature,
     basins: whole ? basinsOf(profile, minima, maxima, temperature) : [],
     crossings,
-    interconversion: whole ? interconversionOf(profile, minima, maxima) : null,
+    interconversion: whole ? interconversionOf(profile, free, minima, maxima, temperature) : null,
+    freeEnergies: aboveLowestMinimum(free, minima),
     fourier:
       points.length < 3
         ? null
@@ -104,14 +128,50 @@ export function summarizeProfile(profile: Profile, temperature: number): Profile
 
 function crossingOf(
   stationary: Profile['stationary'],
+  free: readonly (number | null)[],
   from: number,
   maximum: number,
   to: number,
   temperature: number,
 ): Crossing {
   const barrier = stationary[maximum].energy - stationary[from].energy;
+  return {
+    maximum,
+    from,
+    to,
+    ...overBarrier(barrier, temperature),
+    free: freeCrossing(free[from], free[maximum], temperature),
+  };
+}
+
+function overBarrier(barrier: number, temperature: number): FreeCrossing {
   const rate = eyringRate(barrier, temperature);
-  return { maximum, from, to, barrier, rate, halfLife: halfLife(rate) };
+  return { barrier, rate, halfLife: halfLife(rate) };
+}
+
+function freeCrossing(
+  from: number | null,
+  over: number | null,
+  temperature: number,
+): FreeCrossing | null {
+  return from === null || over === null ? null : overBarrier(over - from, temperature);
+}
+
+function aboveLowestMinimum(
+  free: readonly (number | null)[],
+  minima: readonly number[],
+): (number | null)[] {
+  const floor = lowestOf(free, minima);
+  return free.map((energy) => (energy === null || floor === null ? null : energy - floor));
+}
+
+/** The lowest of some energies; null where there are none or one of them is missing. */
+function lowestOf(
+  energies: readonly (number | null)[],
+  positions: readonly number[],
+): number | null {
+  const chosen = positions.map((position) => energies[position]);
+  return chosen.length === 0 || chosen.includes(null) ? null : Math.min(...(chosen as number[]));
 }
 
 function basinsOf(
@@ -132,12 +192,26 @@ function basinsOf(
 /** Two sets of forms are parted by the two highest maxima of the circle, and the lower of these is the way between them. */
 function interconversionOf(
   { stationary }: Profile,
+  free: readonly (number | null)[],
   minima: readonly number[],
   maxima: readonly number[],
+  temperature: number,
 ): ProfileSummary['interconversion'] {
   if (minima.length < 2 || maxima.length < 2) return null;
-  const heights = maxima.map((maximum) => stationary[maximum].energy).sort((a, b) => b - a);
-  const floor = Math.min(...minima.map((minimum) => stationary[minimum].energy));
-  const barrier = heights[1] - floor;
-  return { barrier, stability: stabilityClass(barrier) };
+  const energies = stationary.map(({ energy }) => energy);
+  const barrier = secondHighest(energies, maxima)! - lowestOf(energies, minima)!;
+  return {
+    barrier,
+    stability: stabilityClass(barrier),
+    free: freeCrossing(lowestOf(free, minima), secondHighest(free, maxima), temperature),
+  };
+}
+
+/** Null where one is missing. */
+function secondHighest(
+  energies: readonly (number | null)[],
+  positions: readonly number[],
+): number | null {
+  const heights = positions.map((position) => energies[position]);
+  return heights.includes(null) ? null : (heights as number[]).sort((a, b) => b - a)[1];
 }

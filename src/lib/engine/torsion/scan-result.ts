@@ -1,4 +1,5 @@
 /** What a torsion scan is asked and what it answers. */
+import type { VibrationalAnalysis } from '../thermo/shape-free-energies';
 import type { StationaryKind } from './labels';
 import type { TorsionAtoms } from './scan-symmetry';
 
@@ -61,6 +62,8 @@ export interface StationaryPoint {
   /** 3N, Å */
   readonly coordinates: Float64Array;
   readonly converged: boolean;
+  /** What a free energy rests on; only where it was asked for. */
+  readonly vibrations?: VibrationalAnalysis;
 }
 
 export interface ScanResult {

@@ -510,6 +510,8 @@ export const conformers = pgTable(
     population: doublePrecision('population').notNull(),
     rmsdToLowest: doublePrecision('rmsd_to_lowest').notNull(),
     coordinates: bytes('coordinates').notNull(),
+    /** {modes, flaw} as the engine gives them; null in results of versions before 0.3. */
+    vibrations: jsonb('vibrations'),
   },
   (table) => [primaryKey({ columns: [table.resultId, table.rank] })],
 );

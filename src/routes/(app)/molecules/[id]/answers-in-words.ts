@@ -1,5 +1,6 @@
 /** Every answer of a molecule in a sentence, at a temperature and in a unit, for its page and its report. */
 import { conjugationAt } from '$lib/domain/conjugation-reading';
+import { freeLeader, readConformers } from '$lib/domain/conformers-reading';
 import type { EnergyUnit } from '$lib/domain/energy-units';
 import { mapSentence } from '$lib/domain/map-sentence';
 import { wayBetween } from '$lib/domain/map-way';
@@ -11,7 +12,6 @@ import {
   scanSentence,
   strainSentence,
 } from '$lib/domain/sentences';
-import { boltzmannPopulations } from '$lib/engine/light';
 import type { PageData } from './$types';
 
 type Molecule = PageData['molecule'];
@@ -103,13 +103,15 @@ function conformersInWords(
   reading: Reading,
 ): AnswerInWords {
   const temperature = reading.temperature ?? answer.temperature;
-  const [lowestPopulation] = boltzmannPopulations(
-    answer.rows.map(({ relative }) => relative),
-    answer.rows.map(({ degeneracy }) => degeneracy),
+  const conformers = readConformers(answer.rows, temperature);
+  const facts = {
+    count: answer.rows.length,
+    window: answer.window,
+    lowestPopulation: conformers.populations[0],
     temperature,
-  );
-  const { window, complete } = answer;
-  const facts = { count: answer.rows.length, window, lowestPopulation, temperature, complete };
+    complete: answer.complete,
+    free: freeLeader(conformers),
+  };
   return {
     key: answer.id,
     evidence: `conformers-${answer.id}`,

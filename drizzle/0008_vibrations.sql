@@ -1,0 +1,1 @@
+ALTER TABLE "conformers" ADD COLUMN "vibrations" jsonb;
