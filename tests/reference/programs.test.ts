@@ -123,9 +123,6 @@ describe.skipIf(!hasMopac)('mopac', () => {
       for (const smiles of ['C=CC=C', 'CC([O-])=O']) {
         const { molecule, x } = await minimum(smiles);
         const point = await relaxByPm7(mopac, molecule, x, limits);
-        const atoms = molecule.symbols.map(
-          (s, a) => `${s} ${[0, 1, 2].map((k) => `${x[3 * a + k]} 1`).join(' ')}`,
-        );
         const deck = `PM7 PRECISE GNORM=0.05 XYZ CHARGE=${molecule.charge}\n\n\n${atomLines(molecule, x, ' 1')}\n`;
         const printed = byHand(MOPAC, ['in.mop'], ['in.mop', deck], 'in.out');
         const expected = Number(/FINAL HEAT OF FORMATION =\s+(-?\d+\.\d+)/.exec(printed)![1]);

@@ -5,6 +5,7 @@ import { mapSentence } from '$lib/domain/map-sentence';
 import { wayBetween } from '$lib/domain/map-way';
 import { readProfile } from '$lib/domain/profile-reading';
 import {
+  byModel,
   conformersSentence,
   conjugationSentence,
   remarked,
@@ -53,7 +54,7 @@ function conjugationInWords(
       bond.sCisFraction !== null && bond.profile
         ? conjugationAt(bond.profile, temperature).sCisFraction
         : bond.sCisFraction;
-    const facts = { ...bond, bond: bond.name, sCisFraction, temperature };
+    const facts = { ...bond, bond: byModel(bond.name, answer.model), sCisFraction, temperature };
     return {
       key: `${answer.id} ${bond.name}`,
       evidence: `conjugation-${answer.id}`,
@@ -66,7 +67,7 @@ function conjugationInWords(
 
 function scanInWords(scan: Molecule['scans'][number], reading: Reading): AnswerInWords {
   const facts = {
-    bond: scan.bond,
+    bond: byModel(scan.bond, scan.model),
     reading: readProfile(scan, reading.temperature ?? scan.temperature),
     relaxed: scan.relaxed,
     complete: scan.complete,
@@ -108,8 +109,15 @@ function conformersInWords(
     answer.rows.map(({ degeneracy }) => degeneracy),
     temperature,
   );
-  const { window, complete } = answer;
-  const facts = { count: answer.rows.length, window, lowestPopulation, temperature, complete };
+  const { model, window, complete } = answer;
+  const facts = {
+    model,
+    count: answer.rows.length,
+    window,
+    lowestPopulation,
+    temperature,
+    complete,
+  };
   return {
     key: answer.id,
     evidence: `conformers-${answer.id}`,
@@ -122,6 +130,7 @@ function conformersInWords(
 function strainInWords(answer: Molecule['strain'][number], { unit }: Reading): AnswerInWords {
   const [worst] = answer.torsions;
   const facts = {
+    model: answer.model,
     strain: answer.strain,
     worst: worst ? { bond: worst.name, strain: worst.strain } : null,
     complete: answer.complete,
