@@ -63,6 +63,11 @@ export function needsProgram(kind: string): kind is ProgramTaskKind {
   return kind in programOfKind;
 }
 
+/** The program that performs tasks of a kind; undefined for the engine's own. */
+export function programFor(kind: string): ProgramName | undefined {
+  return needsProgram(kind) ? programOfKind[kind] : undefined;
+}
+
 /** How to add a program that no worker has. */
 export function howToAdd(program: ProgramName): string {
   return `No worker has the program ${program}. Whoever runs Windlass can add it with “apt-get install ${program}” on a worker’s machine, and start the worker again.`;

@@ -21,6 +21,9 @@ const schema = z.object({
   WINDLASS_WORKER_CONCURRENCY: z.coerce.number().int().min(0).max(256).default(0),
   /** Longest time one task may take, seconds. */
   WINDLASS_TASK_SECONDS: z.coerce.number().int().min(10).max(86_400).default(1_800),
+  /** The external programs of second opinions; a worker does without those that are not there. */
+  WINDLASS_XTB: z.string().startsWith('/').default('/usr/bin/xtb'),
+  WINDLASS_MOPAC: z.string().startsWith('/').default('/usr/bin/mopac'),
   WINDLASS_LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 

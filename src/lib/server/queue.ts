@@ -4,11 +4,15 @@
  */
 import { sql } from 'drizzle-orm';
 import { fromDrizzle, PgBoss, type JobWithMetadata } from 'pg-boss';
+import type { ProgramName } from '../domain/second-opinions';
 import type { Executor } from './db';
 import { environment } from './environment';
 import { log } from './log';
 
 const TASKS = 'tasks';
+/** Tasks of external programs wait apart, since only workers that have the program take them. */
+const PROGRAM_TASKS = { xtb: 'xtb-tasks', mopac: 'mopac-tasks' } as const;
+const QUEUES = [TASKS, ...Object.values(PROGRAM_TASKS)];
 
 /** Without a sign of life for this long a worker counts as dead, and pg-boss hands its job to another one. */
 const HEARTBEAT_SECONDS = 15;
@@ -25,6 +29,8 @@ export interface TaskJob {
 export interface QueuedTask {
   readonly id: string;
   readonly priority: number;
+  /** The external program that performs it; none for the engine's own tasks. */
+  readonly program?: ProgramName | undefined;
 }
 
 let opening: Promise<PgBoss> | null = null;
@@ -51,15 +57,17 @@ async function start(isWorker: boolean): Promise<PgBoss> {
   });
   boss.on('error', (error) => log.warn({ error }, 'The queue lost the database for a moment'));
   await boss.start();
-  await boss.createQueue(TASKS, {
-    notify: true,
-    heartbeatSeconds: HEARTBEAT_SECONDS,
-    expireInSeconds: environment.WINDLASS_TASK_SECONDS + 120,
-    retryLimit: RETRY_LIMIT,
-    retryBackoff: true,
-    retryDelay: 1,
-    retryDelayMax: 30,
-  });
+  for (const queue of QUEUES) {
+    await boss.createQueue(queue, {
+      notify: true,
+      heartbeatSeconds: HEARTBEAT_SECONDS,
+      expireInSeconds: environment.WINDLASS_TASK_SECONDS + 120,
+      retryLimit: RETRY_LIMIT,
+      retryBackoff: true,
+      retryDelay: 1,
+      retryDelayMax: 30,
+    });
+  }
   return boss;
 }
 
@@ -73,28 +81,39 @@ export async function stopQueue(): Promise<void> {
 /** Puts tasks into the queue as a part of the caller's transaction: rolled back, no job is left behind. */
 export async function enqueue(executor: Executor, tasks: readonly QueuedTask[]): Promise<void> {
   const boss = await openQueue();
-  await boss.insert(
-    TASKS,
-    tasks.map(({ id, priority }) => ({ id, priority, data: { taskId: id } satisfies TaskJob })),
-    { db: fromDrizzle(executor, sql) },
-  );
+  for (const queue of QUEUES) {
+    const jobs = tasks
+      .filter(({ program }) => queue === queueOf(program))
+      .map(({ id, priority }) => ({ id, priority, data: { taskId: id } satisfies TaskJob }));
+    if (jobs.length > 0) await boss.insert(queue, jobs, { db: fromDrizzle(executor, sql) });
+  }
+}
+
+function queueOf(program: ProgramName | undefined): string {
+  return program === undefined ? TASKS : PROGRAM_TASKS[program];
 }
 
 /** Takes tasks out of the queue as a part of the caller's transaction. */
 export async function dequeue(executor: Executor, ids: readonly string[]): Promise<void> {
   if (ids.length === 0) return;
   const boss = await openQueue();
-  await boss.deleteJob(TASKS, [...ids], { db: fromDrizzle(executor, sql) });
+  for (const queue of QUEUES) {
+    await boss.deleteJob(queue, [...ids], { db: fromDrizzle(executor, sql) });
+  }
 }
 
-/** Runs `handle` for every job, `concurrency` at a time; a handler that throws hands its job back for a later try. */
+/**
+ * Runs `handle` for every job, `concurrency` at a time: those of the engine, or those of an external program. A handler
+ * that throws hands its job back for a later try.
+ */
 export async function workOnTasks(
   concurrency: number,
   handle: (taskId: string, lastTry: boolean) => Promise<void>,
+  program?: ProgramName,
 ): Promise<void> {
   const boss = await openQueue(true);
   await boss.work(
-    TASKS,
+    queueOf(program),
     {
       includeMetadata: true,
       localConcurrency: concurrency,

@@ -1,5 +1,6 @@
 /** Tasks: claimed, kept alive, finished, cancelled and run again. The row is the only truth shown to people. */
 import { and, asc, count, eq, inArray, lt, min, or, sql } from 'drizzle-orm';
+import { programFor } from '../domain/second-opinions';
 import { db, type Executor } from './db';
 import { batches, entries, molecules, tasks, users } from './db/schema';
 import { recordEvent } from './events';
@@ -159,9 +160,10 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
   const chosen = and(
     eq(tasks.batchId, where.batchId),
     where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
+    where.tasks ? inArray(tasks.id, [...where.tasks]) : undefined,
   );
   return executor
-    .select({ id: tasks.id, state: tasks.state, batchId: tasks.batchId })
+    .select({ id: tasks.id, kind: tasks.kind, state: tasks.state, batchId: tasks.batchId })
     .from(tasks)
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .where(and(chosen, eq(batches.teamId, member.teamId)))
@@ -169,10 +171,11 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     .for('update', { of: tasks });
 }
 
-/** Which tasks are meant: all of a batch, or those of some of its rows. */
+/** Which tasks are meant: all of a batch, those of some of its rows, or single ones. */
 export interface TaskChoice {
   readonly batchId: string;
   readonly rows?: readonly string[];
+  readonly tasks?: readonly string[];
 }
 
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
@@ -209,31 +212,45 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
     const ended = rows.filter((row) => row.state === 'failed' || row.state === 'cancelled');
     const ids = ended.map((row) => row.id);
     if (ids.length === 0) return 0;
-    await transaction
-      .update(tasks)
-      .set({
-        state: 'queued',
-        error: null,
-        progress: 0,
-        worker: null,
-        startedAt: null,
-        beatAt: null,
-        finishedAt: null,
-      })
-      .where(inArray(tasks.id, ids));
-    // The job of the attempt before has the same id and would stand in the way.
-    await dequeue(transaction, ids);
-    const ahead = await waitingOf(transaction, member);
-    await enqueue(
-      transaction,
-      ids.map((id, position) => ({ id, priority: -(ahead + position) })),
-    );
+    await queueAgain(transaction, member, ended);
     await recordEvent(transaction, member, 'rerun tasks', `batch:${ended[0].batchId}`, {
       tasks: ids.length,
     });
     await tell(transaction, 'batch-changed', [...new Set(ended.map((row) => row.batchId))]);
     return ids.length;
   });
+}
+
+/** Queues ended tasks as new attempts, as a part of the caller's transaction. */
+export async function queueAgain(
+  executor: Executor,
+  member: Member,
+  ended: readonly Pick<typeof tasks.$inferSelect, 'id' | 'kind'>[],
+): Promise<void> {
+  const ids = ended.map(({ id }) => id);
+  await executor
+    .update(tasks)
+    .set({
+      state: 'queued',
+      error: null,
+      progress: 0,
+      worker: null,
+      startedAt: null,
+      beatAt: null,
+      finishedAt: null,
+    })
+    .where(inArray(tasks.id, ids));
+  // The job of the attempt before has the same id and would stand in the way.
+  await dequeue(executor, ids);
+  const ahead = await waitingOf(executor, member);
+  await enqueue(
+    executor,
+    ended.map(({ id, kind }, position) => ({
+      id,
+      priority: -(ahead + position),
+      program: programFor(kind),
+    })),
+  );
 }
 
 /**
