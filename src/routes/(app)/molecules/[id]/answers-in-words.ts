@@ -3,6 +3,8 @@ import { conjugationAt } from '$lib/domain/conjugation-reading';
 import type { EnergyUnit } from '$lib/domain/energy-units';
 import { mapSentence } from '$lib/domain/map-sentence';
 import { wayBetween } from '$lib/domain/map-way';
+import { readOpinion } from '$lib/domain/opinion-reading';
+import { disagreementSentence } from '$lib/domain/opinion-sentences';
 import { readProfile } from '$lib/domain/profile-reading';
 import {
   byModel,
@@ -66,9 +68,18 @@ function conjugationInWords(
 }
 
 function scanInWords(scan: Molecule['scans'][number], reading: Reading): AnswerInWords {
+  const temperature = reading.temperature ?? scan.temperature;
+  const [opinion] = scan.opinions;
+  const disagreement = opinion
+    ? disagreementSentence(
+        scan.bond,
+        readOpinion(scan, opinion, temperature).disagreements,
+        reading.unit,
+      )
+    : '';
   const facts = {
     bond: byModel(scan.bond, scan.model),
-    reading: readProfile(scan, reading.temperature ?? scan.temperature),
+    reading: readProfile(scan, temperature),
     relaxed: scan.relaxed,
     complete: scan.complete,
     converged: scan.stationary.every(({ converged }) => converged),
@@ -78,7 +89,7 @@ function scanInWords(scan: Molecule['scans'][number], reading: Reading): AnswerI
     evidence: `scan-${scan.id}`,
     name: `Turn about ${scan.bond}`,
     distinction: scan.distinction,
-    text: remarked(scanSentence(facts, reading.unit), scan.warnings),
+    text: `${disagreement} ${remarked(scanSentence(facts, reading.unit), scan.warnings)}`.trim(),
   };
 }
 
