@@ -6,7 +6,9 @@ import { join } from 'node:path';
 import { eq } from 'drizzle-orm';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
 import { planSchema, readingSchema } from '$lib/domain/submission';
+import { readMolecule } from '$lib/engine';
 import { readAnswers } from '$lib/server/answers';
+import { filesOf } from '$lib/server/bundle-files';
 import { db } from '$lib/server/db';
 import { entries, tasks } from '$lib/server/db/schema';
 import { readUpload } from '$lib/server/drafts';
@@ -141,6 +143,21 @@ describe.skipIf(!hasXtb)('with the program', () => {
       const at = (angle: number) => gfn2.points.find((point) => point.angle === angle)!.relative;
       expect(at(180)).toBeLessThan(0.01);
       expect(at(0)).toBeGreaterThan(2);
+
+      const bundled = {
+        name: 'butadiene',
+        folder: 'butadiene',
+        smiles: 'C=CC=C',
+        molecule: readMolecule({ smiles: 'C=CC=C' }),
+      };
+      const files = filesOf({ ...bundled, answers: [opinion] });
+      const table = files.find(({ path }) => path.endsWith('relaxed.csv'))!.content.split('\n');
+      expect(table[0].trim()).toBe(
+        'angle_degrees,MMFF94s_kcal_per_mol,GFN2-xTB_kcal_per_mol,GFN1-xTB_kcal_per_mol,consensus_kcal_per_mol,lowest_kcal_per_mol,highest_kcal_per_mol',
+      );
+      const last = table[12].split(',').map(Number);
+      expect(last[4]).toBeCloseTo((last[1] + last[2] + last[3]) / 3, 3);
+      expect(files.filter(({ path }) => path.endsWith('.sdf'))).toHaveLength(2);
 
       const [scanAgain] = await readAnswers([scan.result], 10);
       expect(scanAgain.profiles.map(({ model }) => model)).toEqual(['MMFF94s']);

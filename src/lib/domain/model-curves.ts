@@ -18,6 +18,8 @@ export interface RelativeCurve {
 const NOISE = 0.05;
 /** An extreme this near to a named one of another model has its name, degrees. */
 const SAME_PLACE = 45;
+/** A named point of the other kind must be nearer by this to give its name, degrees. */
+const OTHER_KIND = 10;
 
 type Known = { readonly angle: number; readonly energy: number };
 
@@ -137,11 +139,11 @@ const rangeWords = {
   ap: 'antiperiplanar',
 } as const;
 
-/** What an extreme is called: as the named one of its kind nearby, else by its Klyne-Prelog range. */
+/** What an extreme is called: as the named point nearest to it, of its own kind if two are as near; else by its Klyne-Prelog range. */
 function nameOf(kind: string, angle: number, named: readonly StationaryPoint[]): string {
-  const [nearest] = named
-    .filter((point) => point.kind === kind)
-    .toSorted((a, b) => distance(a.angle, angle) - distance(b.angle, angle));
+  const away = (point: StationaryPoint) =>
+    distance(point.angle, angle) + (point.kind === kind ? 0 : OTHER_KIND);
+  const [nearest] = named.toSorted((a, b) => away(a) - away(b));
   return nearest && distance(nearest.angle, angle) <= SAME_PLACE
     ? nearest.label
     : rangeWords[torsionRange(angle)];

@@ -5,6 +5,7 @@ import { csvTable } from '../domain/csv';
 import { createNamer } from '../domain/file-names';
 import type { Answer, StoredProfile } from './answers';
 import { mapFiles } from './bundle-map-files';
+import { opinionFiles } from './bundle-opinion-files';
 import { atomName, energy, type BundledMolecule, type BundleFile } from './bundle-parts';
 
 /** Every file of a molecule, answer by answer. */
@@ -36,6 +37,7 @@ function tableAndGeometries(
   path: (ending: string) => string,
 ): BundleFile[] {
   if (answer.conformers.length > 0) return conformerFiles(bundled, answer, path);
+  if (answer.kind === 'opinion') return opinionFiles(bundled, answer, path);
   if (answer.profiles.length > 0) {
     return answer.profiles.flatMap((profile) => profileFiles(bundled, profile, path));
   }

@@ -1,4 +1,5 @@
 /** Tasks of external programs: asked for one at a time, about what is stored already. */
+import { error } from '@sveltejs/kit';
 import { and, desc, eq, inArray, isNotNull, sql } from 'drizzle-orm';
 import {
   howToAdd,
@@ -18,6 +19,12 @@ import { versions } from './worker-programs';
 
 /** Why something cannot be asked for, in a sentence for people. */
 export class ProgramRequestError extends Error {}
+
+/** Answers 422 with the reason where a request was refused; throws on what it knows nothing about. */
+export function refuseAsProblem(cause: unknown): never {
+  if (cause instanceof ProgramRequestError) error(422, cause.message);
+  throw cause;
+}
 
 export interface ProgramRequest {
   readonly moleculeId: string;
