@@ -1,9 +1,14 @@
 /** Tasks that external programs perform: from what is stored to what is stored beside it. */
 import { programOfKind, type ProgramTaskKind } from '../src/lib/domain/second-opinions';
+import { orderAgain } from '../src/lib/engine';
+import * as heats from '../src/lib/server/heats';
 import * as opinions from '../src/lib/server/opinions';
+import * as rankings from '../src/lib/server/rankings';
 import type { ClaimedTask, TaskError } from '../src/lib/server/tasks';
+import { computeHeat } from './heat';
 import type { InstalledPrograms } from './installed-programs';
 import { computeOpinion, type Report } from './opinion';
+import { computeRanking } from './ranking';
 import { ProgramUnavailable } from './programs/run-program';
 
 /** Longest time of one call of a program, s. */
@@ -39,8 +44,21 @@ export async function performWithProgram(
       }
       return { store: () => opinions.store(task, scan, outcome) };
     }
-    default:
-      throw new Error(`no program performs ${task.kind}`);
+    case 'ranking': {
+      const search = await rankings.searchOf(task);
+      if (!search) return { refused: gone };
+      const outcome = await computeRanking(search, program, limits, report);
+      if (outcome.points.length === 0) return { refused: noPoint(outcome.gaps[0]?.reason ?? '') };
+      const ordered = orderAgain(search.molecule, outcome.points);
+      return { store: () => rankings.store(task, search, outcome, ordered) };
+    }
+    case 'heat': {
+      const subject = await heats.subjectOf(task);
+      const outcome = await computeHeat(subject, program, limits, report);
+      if (outcome.lowest === null) return { refused: noPoint(outcome.gaps[0] ?? '') };
+      const { lowest } = outcome;
+      return { store: () => heats.store(task, subject, outcome, lowest) };
+    }
   }
 }
 

@@ -5,6 +5,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { eq } from 'drizzle-orm';
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { heatSettingsSchema } from '$lib/domain/second-opinions';
 import { planSchema, readingSchema } from '$lib/domain/submission';
 import { readMolecule } from '$lib/engine';
 import { readAnswers } from '$lib/server/answers';
@@ -13,14 +14,16 @@ import { db } from '$lib/server/db';
 import { entries, tasks } from '$lib/server/db/schema';
 import { readUpload } from '$lib/server/drafts';
 import type { Member } from '$lib/server/member';
+import * as heats from '$lib/server/heats';
 import * as opinions from '$lib/server/opinions';
+import * as rankings from '$lib/server/rankings';
 import { stopQueue } from '$lib/server/queue';
 import { submit } from '$lib/server/submission';
 import { cancel } from '$lib/server/tasks';
 import { versions } from '$lib/server/worker-programs';
 import { bytesOf, performAll } from '../support/batches';
 import { newTeam } from '../support/people';
-import { hasXtb } from '../support/programs';
+import { hasMopac, hasXtb } from '../support/programs';
 import { until } from '../support/until';
 import { killWorker, startWorker } from '../support/worker';
 
@@ -164,6 +167,57 @@ describe.skipIf(!hasXtb)('with the program', () => {
       expect(await ask(chemist, scan, 'relaxed')).toEqual({ taskId: first.taskId, state: 'done' });
     },
   );
+});
+
+describe.skipIf(!hasXtb)('conformers by the program', () => {
+  it('are ranked again and stored beside their search', { timeout: 120_000 }, async () => {
+    const { modeler } = await newTeam();
+    const options = {
+      name: 'Butane',
+      source: 'paste' as const,
+      format: 'smi' as const,
+      reading: readingSchema.parse({}),
+    };
+    const id = await readUpload(modeler, options, bytesOf('CCCC butane'), () => undefined);
+    await submit(modeler, id, planSchema.parse({ conformers: {} }));
+    await performAll(id);
+    const [{ moleculeId }] = await db.select().from(entries).where(eq(entries.batchId, id));
+    const [{ resultId }] = await db.select().from(tasks).where(eq(tasks.batchId, id));
+    await workerWith('/usr/bin/xtb');
+    const asked = await rankings.request(modeler, moleculeId!, {
+      result: resultId!,
+      depth: 'optimized',
+      window: 6,
+    });
+    const task = await ended(asked.taskId);
+    expect(task).toMatchObject({ state: 'done', error: null });
+    const [answer] = await readAnswers([task.resultId!], 14);
+    expect(answer).toMatchObject({ model: 'GFN2-xTB', details: { from: [[0], [1]], gaps: [] } });
+    expect(answer.conformers.map(({ degeneracy }) => degeneracy)).toEqual([1, 2]);
+    // Anti butane is below gauche by 0.5 to 1 kcal/mol (common practice).
+    expect(answer.conformers[1].relative).toBeGreaterThan(0.3);
+    expect(answer.conformers[1].relative).toBeLessThan(1.2);
+  });
+});
+
+describe.skipIf(!hasMopac)('a heat of formation', () => {
+  it('is that of the lowest conformers by PM7, and is stored', { timeout: 120_000 }, async () => {
+    const scan = await scanned();
+    worker = startWorker();
+    await until('the worker to tell what it has', async () => (await versions()).mopac !== null);
+    const settings = heatSettingsSchema.parse({});
+    const asked = await heats.request(scan.team.chemist, scan.moleculeId, settings);
+    const task = await ended(asked.taskId);
+    expect(task).toMatchObject({ state: 'done', error: null });
+    const [answer] = await readAnswers([task.resultId!], 10);
+    expect(answer).toMatchObject({ model: 'PM7', details: { gaps: [] } });
+    // Buta-1,3-diene: 26.3 kcal/mol by experiment (from memory); PM7 is within a few of it.
+    expect(Math.abs((answer.details.heatOfFormation as number) - 26.3)).toBeLessThan(4);
+    const stranger = (await newTeam()).lead;
+    await expect(heats.request(stranger, scan.moleculeId, settings)).rejects.toMatchObject({
+      status: 404,
+    });
+  });
 });
 
 describe('with a program that misbehaves', () => {

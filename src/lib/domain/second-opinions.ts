@@ -49,8 +49,8 @@ export type RankingSettings = z.output<typeof rankingSettingsSchema>;
 /** A heat of formation: the lowest conformers by MMFF94s, each relaxed by PM7. */
 export const heatSettingsSchema = z.strictObject({
   /** How many of the lowest conformers PM7 relaxes. */
-  conformers: z.number().int().min(1).max(20).default(5),
-  seed: z.number().int().min(0).default(1),
+  conformers: z.coerce.number().int().min(1).max(20).default(5),
+  seed: z.coerce.number().int().min(0).default(1),
 });
 export type HeatSettings = z.output<typeof heatSettingsSchema>;
 

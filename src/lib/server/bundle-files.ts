@@ -44,6 +44,7 @@ function tableAndGeometries(
   if (answer.map) return mapFiles(bundled, answer, answer.map, path);
   if (answer.kind === 'conjugation')
     return [{ path: path('csv'), content: conjugationTable(bundled, answer) }];
+  if (answer.kind === 'heat') return [{ path: path('mol'), content: answer.molfile }];
   return [
     { path: path('csv'), content: strainTable(bundled, answer) },
     { path: path('mol'), content: answer.molfile },

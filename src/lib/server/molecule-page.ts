@@ -54,7 +54,7 @@ export async function load(member: Member, moleculeId: string) {
     programs: await versions(),
     programTasks: await programTasks.open(member, stored.id),
     conformers: of('conformers').map((answer) =>
-      describeConformers(molecule, stored.rotors, answer),
+      describeConformers(molecule, stored.rotors, answer, of('ranking')),
     ),
     // A rigid profile is there to be compared with the relaxed one, so it comes after.
     scans: of('scan')
@@ -64,8 +64,20 @@ export async function load(member: Member, moleculeId: string) {
       .toSorted((a, b) => Number(b.relaxed) - Number(a.relaxed)),
     maps: describeMaps(molecule, of('map')),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
+    heats: of('heat').map(describeHeat),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };
+}
+
+/** A heat of formation with what it rests on; kcal/mol. */
+function describeHeat({ id, model, details, seconds }: Answer) {
+  const { heatOfFormation, tried, gaps, program } = details as {
+    heatOfFormation: number;
+    tried: number;
+    gaps: readonly string[];
+    program: string;
+  };
+  return { id, model, heatOfFormation, tried, gaps, program, seconds };
 }
 
 /** What an answer is about: answers about the same need telling apart. */
@@ -122,6 +134,8 @@ function molfilesOf(molecule: Molecule, answer: Answer): string[] | null {
       return conjugationForms(answer).map(({ molfile }) => molfile);
     case 'strain':
       return strainGeometries(answer);
+    case 'heat':
+      return [answer.molfile];
     default:
       return null;
   }

@@ -1,12 +1,18 @@
 import { fail } from '@sveltejs/kit';
 import { z } from 'zod';
 import { uuidParam } from '$lib/domain/identifiers';
-import { opinionSettingsSchema } from '$lib/domain/second-opinions';
+import {
+  heatSettingsSchema,
+  opinionSettingsSchema,
+  rankingSettingsSchema,
+} from '$lib/domain/second-opinions';
 import { readForm } from '$lib/server/forms';
 import { load as loadMolecule } from '$lib/server/molecule-page';
 import { board } from '$lib/server/note-board';
+import * as heats from '$lib/server/heats';
 import * as opinions from '$lib/server/opinions';
 import { ProgramRequestError } from '$lib/server/program-tasks';
+import * as rankings from '$lib/server/rankings';
 import * as tasks from '$lib/server/tasks';
 import { whoAsks } from '$lib/server/teams';
 import type { Actions, PageServerLoad } from './$types';
@@ -29,6 +35,26 @@ export const actions: Actions = {
     if (!form.data) return fail(400, { programFault: Object.values(form.faults.errors)[0] });
     try {
       await opinions.request(member, uuidParam(params.id), form.data);
+    } catch (cause) {
+      return refused(cause);
+    }
+  },
+
+  ranking: async ({ locals, params, request }) => {
+    const member = whoAsks(locals);
+    const form = await readForm(request, rankingSettingsSchema);
+    if (!form.data) return fail(400, { programFault: Object.values(form.faults.errors)[0] });
+    try {
+      await rankings.request(member, uuidParam(params.id), form.data);
+    } catch (cause) {
+      return refused(cause);
+    }
+  },
+
+  heat: async ({ locals, params }) => {
+    const member = whoAsks(locals);
+    try {
+      await heats.request(member, uuidParam(params.id), heatSettingsSchema.parse({}));
     } catch (cause) {
       return refused(cause);
     }
