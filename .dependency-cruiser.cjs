@@ -135,6 +135,24 @@ module.exports = {
       to: { path: '^worker/' },
     },
     {
+      name: 'programs-stand-alone',
+      comment:
+        'The room of the external programs turns geometries into numbers: it needs no more than the engine’s types, so it can be tried without database and queue.',
+      severity: 'error',
+      from: { path: '^worker/programs/', pathNot: tests },
+      to: {
+        pathNot: ['^worker/programs/', '^src/lib/engine/index[.]ts$'],
+        dependencyTypesNot: ['core'],
+      },
+    },
+    {
+      name: 'programs-take-only-types-of-the-engine',
+      comment: 'Whatever the engine computes is computed in its own threads.',
+      severity: 'error',
+      from: { path: '^worker/programs/', pathNot: tests },
+      to: { path: '^src/', dependencyTypesNot: ['type-only'] },
+    },
+    {
       name: 'charts-are-arithmetic',
       comment: 'Scales and paths of the charts are plain functions, tested without a page.',
       severity: 'error',

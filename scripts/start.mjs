@@ -6,6 +6,7 @@ import { join } from 'node:path';
 import { windlassFolder } from './folders.mjs';
 import { installPackages } from './install.mjs';
 import { installPostgres, keepRunning, openCluster, runningPort } from './postgres.mjs';
+import { installPrograms } from './programs.mjs';
 import { announce, claimClone, releaseClone, waitForOther } from './running.mjs';
 import { isLoopback, isPortFree, readPorts, readSecrets, StartError } from './settings.mjs';
 
@@ -140,6 +141,7 @@ async function main() {
   }
   await checkPorts(plan);
   await installPackages();
+  installPrograms();
   const secrets = readSecrets();
   const databaseUrl = openDatabase(plan.ports, secrets);
   const { createProduct } = await import('./product.mjs');

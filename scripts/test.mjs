@@ -11,6 +11,7 @@ import { installChromium } from './chromium.mjs';
 import { projectRoot } from './folders.mjs';
 import { installPackages } from './install.mjs';
 import { installPostgres } from './postgres.mjs';
+import { installPrograms } from './programs.mjs';
 
 /** Runs a test runner that writes a JSON report; a run that ends without one counts as a failure. */
 function runRunner({ name, command, env, count }) {
@@ -71,6 +72,7 @@ const hasPageTests =
   );
 await installPackages();
 installPostgres();
+installPrograms();
 installChromium();
 const results = [
   { ...(await runChecks()), skipped: 0 },

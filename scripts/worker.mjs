@@ -2,6 +2,7 @@
 import { join } from 'node:path';
 import { buildProduct } from './build.mjs';
 import { installPackages } from './install.mjs';
+import { installPrograms } from './programs.mjs';
 
 const missing = ['DATABASE_URL', 'AUTH_SECRET'].filter((name) => !process.env[name]);
 if (missing.length > 0) {
@@ -12,6 +13,7 @@ if (missing.length > 0) {
   process.exit(1);
 }
 await installPackages();
+installPrograms();
 const folder = await buildProduct();
 const { superviseProgram } = await import('./processes.mjs');
 const { printLine } = await import('./log-lines.mjs');

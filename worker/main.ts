@@ -1,6 +1,7 @@
 /** The worker: takes tasks from the queue and performs them until it is told to stop. */
 import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
+import { programNames } from '../src/lib/domain/second-opinions';
 import { ENGINE_VERSION } from '../src/lib/engine';
 import { closeDatabase } from '../src/lib/server/db';
 import { environment } from '../src/lib/server/environment';
@@ -10,11 +11,13 @@ import { closeDelivery, deliver } from '../src/lib/server/letter-delivery';
 import { closeMail } from '../src/lib/server/mail';
 import { watchProcess } from '../src/lib/server/metrics';
 import { stopQueue, workOnLetters, workOnTasks } from '../src/lib/server/queue';
+import { joinSlots } from '../src/lib/server/task-slots';
 import { failAbandoned } from '../src/lib/server/tasks';
 import { requeueStranded } from '../src/lib/server/webhook-log';
 import { deliverWebhooks } from './deliveries';
 import { keepLetters } from './letters';
 import { keepFingerprints } from './fingerprints';
+import { findInstalled, keepAnnouncing } from './installed-programs';
 import { showLife } from './life';
 import { hearCancels, performTask } from './perform';
 import { closePool, concurrency } from './pool';
@@ -26,9 +29,21 @@ const name = `${hostname()} ${process.pid} ${randomUUID().slice(0, 4)}`;
 watchProcess({ worker: name });
 
 await hearCancels();
-const slots = await workOnTasks(concurrency, (taskId, lastTry) =>
-  performTask(taskId, name, lastTry),
-);
+const installed = await findInstalled();
+const slots = [
+  await workOnTasks(concurrency, (taskId, lastTry) => performTask(taskId, name, lastTry)),
+];
+for (const program of programNames) {
+  if (!installed[program]) continue;
+  // As many as cores, since they give way to the computing threads (programs/run-program.ts).
+  slots.push(
+    await workOnTasks(
+      concurrency,
+      (taskId, lastTry) => performTask(taskId, name, lastTry, installed),
+      program,
+    ),
+  );
+}
 const stopDelivering = await deliverWebhooks();
 const doesChores = environment.WINDLASS_WORKER_CHORES === 'on';
 if (doesChores) {
@@ -43,13 +58,19 @@ const check = setInterval(() => {
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
 if (doesChores) void keepLetters(ending.signal);
-const leave = await showLife({ name, version: ENGINE_VERSION, concurrency }, slots, endDrained);
+const announcing = keepAnnouncing(name, installed, ending.signal);
+const leave = await showLife(
+  { name, version: ENGINE_VERSION, concurrency },
+  joinSlots(slots),
+  endDrained,
+);
 log.info({ worker: name, concurrency }, 'The worker takes tasks');
 
 /** Ends at once: what was running is picked up by another worker, or by this one when it is back. */
 async function stop(): Promise<void> {
   clearInterval(check);
   ending.abort();
+  await announcing;
   await Promise.all([closePool(), closeDelivery()]);
   await leave();
   await stopQueue();

@@ -5,7 +5,11 @@ import * as results from '../src/lib/server/results';
 import * as tasks from '../src/lib/server/tasks';
 import { listen } from '../src/lib/server/live';
 import { countTask } from '../src/lib/server/metrics';
+import { needsProgram } from '../src/lib/domain/second-opinions';
+import type { InstalledPrograms } from './installed-programs';
 import { computeInThread } from './pool';
+import { performWithProgram } from './program-tasks';
+import { ProgramUnavailable } from './programs/run-program';
 
 /** How often a running task shows that it is alive; well under the silence after which it counts as lost. */
 const BEAT_MS = 3_000;
@@ -23,7 +27,12 @@ export async function hearCancels(): Promise<void> {
  * Performs a task: nothing to do when it is done or cancelled already; the stored result where there is one; else it is
  * computed. Throws after faults of the machine, so that the queue delivers the task again, unless it was the last try.
  */
-export async function performTask(taskId: string, worker: string, lastTry: boolean): Promise<void> {
+export async function performTask(
+  taskId: string,
+  worker: string,
+  lastTry: boolean,
+  installed: InstalledPrograms = {},
+): Promise<void> {
   const task = await tasks.claim(taskId, worker);
   if (!task) return;
   if (await results.reuseStored(task)) {
@@ -34,13 +43,13 @@ export async function performTask(taskId: string, worker: string, lastTry: boole
   running.set(task.id, controller);
   const life = keepAlive(task, controller);
   try {
-    await computeAndStore(task, controller.signal, life.report);
+    await computeAndStore(task, installed, controller.signal, life.report);
   } catch (error) {
     // Cancelled or taken over: the row says so already, and whatever was computed is dropped.
     if (controller.signal.aborted) return;
     log.error({ error, task: task.id, attempt: task.attempt, lastTry }, 'A task could not be run');
     if (lastTry) {
-      if (await tasks.fail(task, tasks.workerLost)) countTask(task.kind, 'failed');
+      if (await tasks.fail(task, lastWords(error))) countTask(task.kind, 'failed');
       return;
     }
     await tasks.release(task);
@@ -51,8 +60,15 @@ export async function performTask(taskId: string, worker: string, lastTry: boole
   }
 }
 
+/** Why the last try failed: what a program needs of the machine is known better than that of a lost worker. */
+function lastWords(error: unknown): tasks.TaskError {
+  if (!(error instanceof ProgramUnavailable)) return tasks.workerLost;
+  return { code: 'program-unavailable', message: `${error.message} Tell the operator.` };
+}
+
 async function computeAndStore(
   task: tasks.ClaimedTask,
+  installed: InstalledPrograms,
   signal: AbortSignal,
   report: (fraction: number, stage: string) => void,
 ): Promise<void> {
@@ -63,17 +79,22 @@ async function computeAndStore(
   });
   const budget = environment.WINDLASS_TASK_SECONDS * 1000;
   const limit = AbortSignal.timeout(budget + 60_000);
-  const answer = await computeInThread(results.requestOf(task), {
-    budget,
-    signal: AbortSignal.any([signal, limit]),
-    report,
-  }).catch((error: unknown) => {
+  const both = AbortSignal.any([signal, limit]);
+  const { kind } = task;
+  const computing = needsProgram(kind)
+    ? performWithProgram({ ...task, kind }, installed, both, report)
+    : computeInThread(results.requestOf(task), { budget, signal: both, report });
+  const answer = await computing.catch((error: unknown) => {
     if (!limit.aborted || signal.aborted) throw error;
     return { refused: overTime(budget) };
   });
   if ('result' in answer) {
     const engine = answer.result.provenance.seconds;
     if (await results.store(task, answer.result)) countTask(task.kind, 'done', since(engine));
+    return;
+  }
+  if ('store' in answer) {
+    if (await answer.store()) countTask(task.kind, 'done', since());
     return;
   }
   const fault = 'broken' in answer ? internalError(task, answer.broken) : answer.refused;

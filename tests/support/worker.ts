@@ -5,11 +5,11 @@ import { fileURLToPath } from 'node:url';
 
 const main = fileURLToPath(new URL('../../worker/main.ts', import.meta.url));
 
-/** Starts a worker from the sources; it inherits the database of the test file. */
-export function startWorker(): ChildProcess {
+/** Starts a worker from the sources; it inherits the database of the test file, and takes further settings. */
+export function startWorker(settings: Record<string, string> = {}): ChildProcess {
   return spawn(process.execPath, ['--import', 'tsx', main], {
     stdio: ['ignore', 'ignore', 'inherit'],
-    env: { ...process.env, WINDLASS_WORKER_CONCURRENCY: '2' },
+    env: { ...process.env, WINDLASS_WORKER_CONCURRENCY: '2', ...settings },
   });
 }
 

@@ -2,6 +2,7 @@
 import { z } from 'zod';
 import { answerSchema } from './bundle-schema';
 import { moleculeSchema } from './compute';
+import { opinionSettingsSchema } from './second-opinions';
 import { planSchema, readingSchema, remarkSchema, ROW_LIMIT } from './submission';
 import {
   DELIVERY_DAYS,
@@ -203,6 +204,18 @@ export const operations = {
     summary: 'One result with all its numbers and geometries, as the JSON of a bundle',
     scope: 'read',
     answer: answerSchema,
+  },
+  askOpinion: {
+    method: 'post',
+    path: '/molecules/{id}/opinions',
+    summary:
+      'Asks for a second opinion on a relaxed MMFF94s scan by xtb: quick for energies on its geometries, relaxed for a scan by GFN2-xTB with GFN1-xTB on top. The same request is not carried out twice',
+    scope: 'submit',
+    body: opinionSettingsSchema,
+    answer: z.object({
+      taskId: id,
+      state: z.enum(['queued', 'running', 'done']),
+    }),
   },
   moleculeBundle: {
     method: 'get',

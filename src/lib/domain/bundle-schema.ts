@@ -27,7 +27,16 @@ const vibrations = z
 export const answerSchema = z.looseObject({
   name: z.string(),
   smiles: z.string().describe('Canonical isomeric SMILES'),
-  kind: z.enum(['conformers', 'scan', 'map', 'conjugation', 'strain']),
+  kind: z.enum([
+    'conformers',
+    'scan',
+    'map',
+    'conjugation',
+    'strain',
+    'opinion',
+    'ranking',
+    'heat',
+  ]),
   settings: z.record(z.string(), z.unknown()).describe('The settings, defaults and seed included'),
   engineVersion: z.string(),
   model: z.string().describe('Energy model'),

@@ -6,6 +6,9 @@ const taskKinds = {
   map: 'Map of two bonds',
   conjugation: 'Conjugation',
   strain: 'Strain',
+  opinion: 'Second opinion',
+  ranking: 'Conformers ranked again',
+  heat: 'Heat of formation',
 } as const;
 
 /** The kind of a task, as people call it. */

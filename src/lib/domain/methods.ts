@@ -25,6 +25,11 @@ const SENTENCES: Readonly<Record<string, string>> = {
   map: 'Maps of two bonds were relaxed in every cell of the grid with both torsions held, each cell started again from its neighbors’ best geometries until no energy fell further; minima were then minimized freely, and the lowest way between two of them is the one whose highest cell is lowest.',
   conjugation:
     'Conjugated bonds were described by the twist between the local π axes, its overlap cos², and the energies of their s-cis and s-trans forms along a relaxed profile.',
+  opinion:
+    'Second opinions on torsion profiles come from the program xtb: GFN2-xTB energies on the MMFF94s geometries (a quick look, rough), or each geometry relaxed again by GFN2-xTB with the torsion held, its energy taken without the constraint, and GFN1-xTB energies at the GFN2-xTB geometries; the consensus is the plain mean of the three models, each above its own lowest point. Points that failed are gaps, listed with their reasons.',
+  ranking:
+    'Conformers were ranked again by GFN2-xTB with the program xtb, as they were or each relaxed; those that fell together were merged.',
+  heat: 'Heats of formation at 298 K are those of PM7 by the program mopac, the lowest among the lowest MMFF94s conformers, each relaxed by PM7.',
   strain:
     'Strain of given geometries was measured after relaxing hydrogens and then all atoms within a flat-bottomed tether, as energy above the lowest conformer found; the strain of single torsions was read from profiles of fragments.',
 };
@@ -38,12 +43,28 @@ export const COMPUTE_AGAIN = `## Computing it again
 
 writes the answers again, a line each, with the same numbers.
 `;
+/** The force fields among the models, for the sentence that names them. */
+function ownModels(models: readonly string[]): string {
+  return models.filter((model) => model.startsWith('MMFF')).join(' and ') || 'MMFF94s';
+}
+
+/** What further models are, where they were asked. */
+const MODEL_REFERENCES: Readonly<Record<string, string>> = {
+  'GFN2-xTB':
+    'C. Bannwarth, S. Ehlert, S. Grimme, J. Chem. Theory Comput. 2019, 15, 1652-1671 (GFN2-xTB).',
+  'GFN1-xTB':
+    'S. Grimme, C. Bannwarth, P. Shushkov, J. Chem. Theory Comput. 2017, 13, 1989-2009 (GFN1-xTB).',
+  PM7: 'J. J. P. Stewart, J. Mol. Model. 2013, 19, 1-32 (PM7).',
+};
 
 /** A text in Markdown, ready to paste: what was done, the literature, and how far to trust it. */
 export function methodsText({ engineVersion, models, kinds }: MethodFacts): string {
   const sentences = kinds.flatMap((kind) => SENTENCES[kind] ?? []);
   const cited = [
     REFERENCES.mmff94,
+    ...Object.entries(MODEL_REFERENCES).flatMap(([model, reference]) =>
+      models.some((each) => each.split(', ').includes(model)) ? [reference] : [],
+    ),
     ...(models.includes('MMFF94s') ? [REFERENCES.mmff94s] : []),
     ...(kinds.includes('scan') || kinds.includes('conformers') ? [REFERENCES.grimme] : []),
     ...(kinds.includes('scan')
@@ -53,7 +74,7 @@ export function methodsText({ engineVersion, models, kinds }: MethodFacts): stri
   return [
     '# Methods',
     '',
-    `Energies and geometries were computed with Windlass ${engineVersion} and the ${models.join(' and ')} force field in the gas phase, unless a dielectric is named in the settings. ${sentences.join(' ')}`,
+    `Energies and geometries were computed with Windlass ${engineVersion} and the ${ownModels(models)} force field in the gas phase, unless a dielectric is named in the settings. ${sentences.join(' ')}`,
     '',
     '## Literature',
     '',

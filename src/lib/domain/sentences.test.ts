@@ -53,7 +53,13 @@ describe('sentences', () => {
   });
 
   it('says so when a search was not complete', () => {
-    const facts = { count: 3, window: 10, lowestPopulation: 0.5, temperature: 298.15 };
+    const facts = {
+      model: 'MMFF94s',
+      count: 3,
+      window: 10,
+      lowestPopulation: 0.5,
+      temperature: 298.15,
+    };
     expect(conformersSentence({ ...facts, complete: false }, 'kcal/mol')).toContain(
       'others may exist',
     );
@@ -61,7 +67,13 @@ describe('sentences', () => {
   });
 
   it('tells the populations of conformers by ΔE and by ΔG apart', () => {
-    const facts = { count: 3, window: 10, lowestPopulation: 0.5, temperature: 298.15 };
+    const facts = {
+      model: 'MMFF94s',
+      count: 3,
+      window: 10,
+      lowestPopulation: 0.5,
+      temperature: 298.15,
+    };
     const sentence = (free: { lowest: number; leader: number; share: number } | null) =>
       conformersSentence({ ...facts, complete: true, free }, 'kcal/mol');
     expect(sentence(null)).toMatch(/the lowest holds 50 % by ΔE at 25 °C[.]$/);
@@ -76,11 +88,11 @@ describe('sentences', () => {
   it('names the bond that carries the strain', () => {
     expect(
       strainSentence(
-        { strain: 4.21, worst: { bond: 'C7–N8', strain: 2.05 }, complete: true },
+        { model: 'MMFF94s', strain: 4.21, worst: { bond: 'C7–N8', strain: 2.05 }, complete: true },
         'kcal/mol',
       ),
     ).toBe(
-      'The uploaded geometry is strained by 4.2 kcal/mol; C7–N8 carries most of it, 2.0 kcal/mol.',
+      'The uploaded geometry is strained by 4.2 kcal/mol (MMFF94s); C7–N8 carries most of it, 2.0 kcal/mol.',
     );
   });
 

@@ -68,7 +68,13 @@ export function rateText(rate: number): string {
   return `${mantissa} × 10${raised} s⁻¹`;
 }
 
+/** What is told, with the energy model that it rests on: "C2–C3 by MMFF94s". */
+export function byModel(subject: string, model: string): string {
+  return `${subject} by ${model}`;
+}
+
 export interface ConformersFacts {
+  readonly model: string;
   readonly count: number;
   readonly window: number;
   readonly lowestPopulation: number;
@@ -84,11 +90,12 @@ export interface ConformersFacts {
 
 export function conformersSentence(facts: ConformersFacts, unit: EnergyUnit): string {
   const { count, window, lowestPopulation, temperature, complete } = facts;
+  const within = byModel(energyText(window, unit), facts.model);
   const search = complete
     ? ''
     : '; the search ended before its set stopped changing, so others may exist';
-  if (count === 1) return `One conformer within ${energyText(window, unit)}${search}.`;
-  return `${count} conformers within ${energyText(window, unit)}; the lowest holds ${percent(lowestPopulation)} by ΔE${freeShareText(facts)} at ${celsius(temperature)}${search}.`;
+  if (count === 1) return `One conformer within ${within}${search}.`;
+  return `${count} conformers within ${within}; the lowest holds ${percent(lowestPopulation)} by ΔE${freeShareText(facts)} at ${celsius(temperature)}${search}.`;
 }
 
 function freeShareText({ free }: ConformersFacts): string {
@@ -134,12 +141,16 @@ export function conjugationSentence(facts: ConjugationFacts, unit: EnergyUnit): 
 }
 
 export interface StrainFacts {
+  readonly model: string;
   readonly strain: number;
   readonly worst: { readonly bond: string; readonly strain: number } | null;
   readonly complete: boolean;
 }
 
-export function strainSentence({ strain, worst, complete }: StrainFacts, unit: EnergyUnit): string {
+export function strainSentence(
+  { model, strain, worst, complete }: StrainFacts,
+  unit: EnergyUnit,
+): string {
   const most =
     worst && worst.strain >= 0.05
       ? `; ${worst.bond} carries most of it, ${energyText(worst.strain, unit)}`
@@ -147,7 +158,7 @@ export function strainSentence({ strain, worst, complete }: StrainFacts, unit: E
   const search = complete
     ? ''
     : '; the search for the lowest conformer was not complete, so the strain may be larger';
-  return `The uploaded geometry is strained by ${energyText(strain, unit)}${most}${search}.`;
+  return `The uploaded geometry is strained by ${energyText(strain, unit)} (${model})${most}${search}.`;
 }
 
 export interface ScanFacts {

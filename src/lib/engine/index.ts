@@ -1,6 +1,8 @@
 /** What the rest of the program may use of the engine. */
 export { InputError } from './errors';
 export type { InputErrorCode, InputPlace, InputWarning, InputWarningCode } from './errors';
+export { orderAgain } from './conformers/order-again';
+export type { Reordered } from './conformers/order-again';
 export { drawMolecule } from './molecule/drawing';
 export type { Drawing } from './molecule/drawing';
 export { atomLabel, ELEMENT_SYMBOLS } from './molecule/elements';

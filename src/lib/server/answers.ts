@@ -1,5 +1,6 @@
 /** Stored answers, read back whole: for pages and bundles. */
-import { and, asc, desc, eq, inArray, isNotNull } from 'drizzle-orm';
+import { aliasedTable, and, asc, desc, eq, inArray, isNotNull, isNull, or, sql } from 'drizzle-orm';
+import { GFN2 } from '../domain/second-opinions';
 import { db } from './db';
 import {
   batches,
@@ -127,8 +128,8 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
     .select()
     .from(profiles)
     .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
-    .where(inArray(profiles.resultId, wanted))
-    .orderBy(asc(profileCurves.model));
+    .where(and(inArray(profiles.resultId, wanted), isNull(profileCurves.opinionId)));
+  const asked = await opinionCurves(wanted);
   const mapped = await db.select().from(maps).where(inArray(maps.resultId, wanted));
   return rows.map((row) => ({
     id: row.id,
@@ -150,12 +151,33 @@ export async function readAnswers(ids: readonly string[], atomCount: number): Pr
       })),
     profiles: curves
       .filter(({ profiles: { resultId } }) => resultId === row.id)
+      .concat(asked.filter(({ opinionId }) => opinionId === row.id))
       .map(({ profiles: profile, profile_curves: curve }) => toProfile(profile, curve, atomCount)),
     map: toMap(
       mapped.find(({ resultId }) => resultId === row.id),
       atomCount,
     ),
   }));
+}
+
+/** The curves of second opinions, each opinion's scan before those of the other models. */
+async function opinionCurves(ids: readonly string[]) {
+  const own = aliasedTable(profileCurves, 'own');
+  const rows = await db
+    .select({ opinionId: own.opinionId, profiles, profile_curves: profileCurves })
+    .from(profileCurves)
+    .innerJoin(profiles, eq(profiles.id, profileCurves.profileId))
+    .innerJoin(own, eq(own.profileId, profileCurves.profileId))
+    .where(
+      and(
+        inArray(own.opinionId, [...ids]),
+        or(isNull(profileCurves.opinionId), eq(profileCurves.opinionId, own.opinionId)),
+        // One row of the opinion stands for it.
+        eq(own.model, GFN2),
+      ),
+    )
+    .orderBy(sql`${profileCurves.opinionId} nulls first`, desc(profileCurves.model));
+  return rows;
 }
 
 /** A stationary point as the table holds it, its energy not yet above the lowest. */
@@ -186,12 +208,15 @@ function toProfile(
     model: curve.model,
     relaxed: curve.relaxed,
     ...aboveLowest(
-      profile.angles.map((angle, n) => ({
-        angle,
-        energy: curve.energies[n],
-        reached: curve.reached[n],
-        coordinates: geometries[n],
-      })),
+      // A model that gave no point at an angle has a gap there.
+      profile.angles
+        .map((angle, n) => ({
+          angle,
+          energy: curve.energies[n],
+          reached: curve.reached[n],
+          coordinates: geometries[n],
+        }))
+        .filter(({ energy }) => !Number.isNaN(energy)),
       (curve.stationary as StationaryPointWithoutGeometry[]).map((point, n) => ({
         ...point,
         coordinates: geometries[profile.angles.length + n],

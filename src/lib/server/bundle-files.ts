@@ -8,6 +8,7 @@ import { readProfile } from '../domain/profile-reading';
 import type { Answer, StoredProfile } from './answers';
 import { FREE_ENERGY_COLUMNS, freeEnergyCells } from './bundle-free-energies';
 import { mapFiles } from './bundle-map-files';
+import { opinionFiles } from './bundle-opinion-files';
 import { atomName, energy, type BundledMolecule, type BundleFile } from './bundle-parts';
 
 /** Every file of a molecule, answer by answer. */
@@ -39,12 +40,14 @@ function tableAndGeometries(
   path: (ending: string) => string,
 ): BundleFile[] {
   if (answer.conformers.length > 0) return conformerFiles(bundled, answer, path);
+  if (answer.kind === 'opinion') return opinionFiles(bundled, answer, path);
   if (answer.profiles.length > 0) {
     return answer.profiles.flatMap((profile) => profileFiles(bundled, answer, profile, path));
   }
   if (answer.map) return mapFiles(bundled, answer, answer.map, path);
   if (answer.kind === 'conjugation')
     return [{ path: path('csv'), content: conjugationTable(bundled, answer) }];
+  if (answer.kind === 'heat') return [{ path: path('mol'), content: answer.molfile }];
   return [
     { path: path('csv'), content: strainTable(bundled, answer) },
     { path: path('mol'), content: answer.molfile },

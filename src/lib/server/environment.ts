@@ -77,6 +77,9 @@ const schema = z
     WINDLASS_TEAM_MEGABYTES_CEILING: limit(100_000),
     WINDLASS_TEAM_MONTHS: limit(36),
     WINDLASS_TEAM_MONTHS_CEILING: limit(240),
+    /** The external programs of second opinions; a worker does without those that are not there. */
+    WINDLASS_XTB: z.string().startsWith('/').default('/usr/bin/xtb'),
+    WINDLASS_MOPAC: z.string().startsWith('/').default('/usr/bin/mopac'),
     WINDLASS_LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
   })
   .superRefine((given, context) => {

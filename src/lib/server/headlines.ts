@@ -2,6 +2,7 @@
 import { and, count, desc, eq, inArray, sql } from 'drizzle-orm';
 import type { Result } from '../engine';
 import {
+  byModel,
   conformersSentence,
   conjugationSentence,
   scanSentence,
@@ -23,6 +24,7 @@ const headColumns = {
   details: results.details,
   settings: results.settings,
   moleculeId: results.moleculeId,
+  model: results.model,
   molfile: results.molfile,
 };
 
@@ -31,7 +33,13 @@ async function readHeads(member: Pick<Member, 'teamId'>, moleculeIds: readonly s
   return db
     .selectDistinctOn([results.moleculeId], headColumns)
     .from(results)
-    .where(and(eq(results.teamId, member.teamId), inArray(results.moleculeId, [...moleculeIds])))
+    .where(
+      and(
+        eq(results.teamId, member.teamId),
+        inArray(results.moleculeId, [...moleculeIds]),
+        inArray(results.kind, ['conjugation', 'strain', 'scan', 'conformers']),
+      ),
+    )
     .orderBy(results.moleculeId, byWeight, desc(results.createdAt));
 }
 type Head = Awaited<ReturnType<typeof readHeads>>[number];
@@ -69,6 +77,9 @@ function sentenceOf(head: Head): string | null | Promise<string | null> {
     case 'conformers':
       return conformersHeadline(head);
     case 'map':
+    case 'opinion':
+    case 'ranking':
+    case 'heat':
       return null;
   }
 }
@@ -79,7 +90,10 @@ function conjugationHeadline(head: Head): string | null {
   const bond = bonds.find(({ difference }) => difference !== null) ?? bonds[0];
   if (!bond) return null;
   const { temperature } = head.settings as { temperature: number };
-  return conjugationSentence({ ...bond, bond: bondName(head, bond.bond), temperature }, UNIT);
+  return conjugationSentence(
+    { ...bond, bond: byModel(bondName(head, bond.bond), head.model), temperature },
+    UNIT,
+  );
 }
 
 function strainHeadline(head: Head): string {
@@ -90,6 +104,7 @@ function strainHeadline(head: Head): string {
   const [worst] = torsions;
   return strainSentence(
     {
+      model: head.model,
       strain,
       complete,
       worst: worst ? { bond: bondName(head, worst.bond), strain: worst.strain } : null,
@@ -108,7 +123,10 @@ async function scanHeadline(head: Head): Promise<string | null> {
       stationary: profileCurves.stationary,
     })
     .from(profiles)
-    .innerJoin(profileCurves, eq(profileCurves.profileId, profiles.id))
+    .innerJoin(
+      profileCurves,
+      and(eq(profileCurves.profileId, profiles.id), eq(profileCurves.model, head.model)),
+    )
     .where(eq(profiles.resultId, head.id))
     .limit(1);
   if (!curve) return null;
@@ -122,7 +140,7 @@ async function scanHeadline(head: Head): Promise<string | null> {
   );
   return scanSentence(
     {
-      bond: bondName(head, curve.torsion.slice(1, 3)),
+      bond: byModel(bondName(head, curve.torsion.slice(1, 3)), head.model),
       reading: readProfile({ points, stationary, symmetry }, temperature),
       relaxed: curve.relaxed,
       complete,
@@ -144,7 +162,7 @@ async function conformersHeadline(head: Head): Promise<string | null> {
   const { complete } = head.details as { complete: boolean };
   const { window, temperature } = head.settings as { window: number; temperature: number };
   return conformersSentence(
-    { count: found, window, lowestPopulation, temperature, complete },
+    { model: head.model, count: found, window, lowestPopulation, temperature, complete },
     UNIT,
   );
 }

@@ -11,8 +11,10 @@ import { describeMaps, mapGeometries } from './map-section';
 import { notFound, type Member } from './member';
 import * as molecules from './molecules';
 import { bondName } from './molecules';
+import * as programTasks from './program-tasks';
 import { describeScan, packScan, skeletonOf } from './scan-section';
 import { describeStrain, strainGeometries } from './strain-section';
+import { versions } from './worker-programs';
 
 /** Everything the page needs but the geometries, which it asks for when they are looked at. */
 export async function load(member: Member, moleculeId: string) {
@@ -49,19 +51,33 @@ export async function load(member: Member, moleculeId: string) {
     skeleton: skeletonOf(molecule),
     batches: mentions.map(({ batchId, batchName }) => ({ id: batchId, name: batchName })),
     tasks: open,
+    programs: await versions(),
+    programTasks: await programTasks.open(member, stored.id),
     conformers: of('conformers').map((answer) =>
-      describeConformers(molecule, stored.rotors, answer),
+      describeConformers(molecule, stored.rotors, answer, of('ranking')),
     ),
     // A rigid profile is there to be compared with the relaxed one, so it comes after.
     scans: of('scan')
       .flatMap((answer) =>
-        answer.profiles.map((profile) => describeScan(molecule, answer, profile)),
+        answer.profiles.map((profile) => describeScan(molecule, answer, profile, of('opinion'))),
       )
       .toSorted((a, b) => Number(b.relaxed) - Number(a.relaxed)),
     maps: describeMaps(molecule, of('map')),
     conjugation: of('conjugation').map((answer) => describeConjugation(molecule, answer)),
+    heats: of('heat').map(describeHeat),
     strain: of('strain').map((answer) => describeStrain(molecule, answer)),
   };
+}
+
+/** A heat of formation with what it rests on; kcal/mol. */
+function describeHeat({ id, model, details, seconds }: Answer) {
+  const { heatOfFormation, tried, gaps, program } = details as {
+    heatOfFormation: number;
+    tried: number;
+    gaps: readonly string[];
+    program: string;
+  };
+  return { id, model, heatOfFormation, tried, gaps, program, seconds };
 }
 
 /** What an answer is about: answers about the same need telling apart. */
@@ -118,6 +134,8 @@ function molfilesOf(molecule: Molecule, answer: Answer): string[] | null {
       return conjugationForms(answer).map(({ molfile }) => molfile);
     case 'strain':
       return strainGeometries(answer);
+    case 'heat':
+      return [answer.molfile];
     default:
       return null;
   }

@@ -40,7 +40,7 @@ export function requeueReason(operator: Operator, reason: MachineFault): Promise
 async function requeue(operator: Operator, chosen: SQL, subject: string): Promise<number> {
   return db.transaction(async (tx) => {
     const failed = await tx
-      .select({ id: tasks.id, batchId: tasks.batchId })
+      .select({ id: tasks.id, kind: tasks.kind, batchId: tasks.batchId })
       .from(tasks)
       .where(
         and(
@@ -54,11 +54,7 @@ async function requeue(operator: Operator, chosen: SQL, subject: string): Promis
       // What a member runs again at this moment is theirs.
       .for('update', { skipLocked: true });
     if (failed.length === 0) return 0;
-    await queueAgain(
-      tx,
-      failed.map(({ id }) => id),
-      0,
-    );
+    await queueAgain(tx, failed, 0);
     await recordOperation(tx, operator, 'queue failed tasks again', subject, {
       tasks: failed.length,
     });

@@ -1,11 +1,12 @@
 /** From a plan to tasks: which computations one row of a batch needs. */
 import type { ChosenBonds, Plan, Rotor } from '../domain/submission';
+import type { ProgramTaskKind } from '../domain/second-opinions';
 import type { tasks } from './db/schema';
 
 export interface PlannedTask {
   readonly entryId: string;
   readonly moleculeId: string;
-  readonly kind: (typeof tasks.$inferSelect)['kind'];
+  readonly kind: Exclude<(typeof tasks.$inferSelect)['kind'], ProgramTaskKind>;
   /** As the task schemas of the domain have them, without the kind. */
   readonly settings: Record<string, unknown>;
 }

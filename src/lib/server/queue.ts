@@ -4,12 +4,16 @@
  */
 import { sql } from 'drizzle-orm';
 import { fromDrizzle, PgBoss, type Job, type JobWithMetadata } from 'pg-boss';
+import type { ProgramName } from '../domain/second-opinions';
 import type { Executor } from './db';
 import { environment } from './environment';
 import { log } from './log';
 import { keepSlots, type Slots } from './task-slots';
 
 const TASKS = 'tasks';
+/** Tasks of external programs wait apart, since only workers that have the program take them. */
+const PROGRAM_TASKS = { xtb: 'xtb-tasks', mopac: 'mopac-tasks' } as const;
+const TASK_QUEUES = [TASKS, ...Object.values(PROGRAM_TASKS)];
 const LETTERS = 'letters';
 
 /** Without a sign of life for this long a worker counts as dead, and pg-boss hands its job to another one. */
@@ -37,6 +41,8 @@ export interface LetterJob {
 export interface QueuedTask {
   readonly id: string;
   readonly priority: number;
+  /** The external program that performs it; none for the engine's own tasks. */
+  readonly program?: ProgramName | undefined;
 }
 
 let opening: Promise<PgBoss> | null = null;
@@ -63,15 +69,17 @@ async function start(isWorker: boolean): Promise<PgBoss> {
   });
   boss.on('error', (error) => log.warn({ error }, 'The queue lost the database for a moment'));
   await boss.start();
-  await boss.createQueue(TASKS, {
-    notify: true,
-    heartbeatSeconds: HEARTBEAT_SECONDS,
-    expireInSeconds: environment.WINDLASS_TASK_SECONDS + 120,
-    retryLimit: RETRY_LIMIT,
-    retryBackoff: true,
-    retryDelay: 1,
-    retryDelayMax: 30,
-  });
+  for (const queue of TASK_QUEUES) {
+    await boss.createQueue(queue, {
+      notify: true,
+      heartbeatSeconds: HEARTBEAT_SECONDS,
+      expireInSeconds: environment.WINDLASS_TASK_SECONDS + 120,
+      retryLimit: RETRY_LIMIT,
+      retryBackoff: true,
+      retryDelay: 1,
+      retryDelayMax: 30,
+    });
+  }
   await boss.createQueue(LETTERS, {
     notify: true,
     heartbeatSeconds: HEARTBEAT_SECONDS,
@@ -93,11 +101,16 @@ export async function stopQueue(): Promise<void> {
 /** Puts tasks into the queue as a part of the caller's transaction: rolled back, no job is left behind. */
 export async function enqueue(executor: Executor, tasks: readonly QueuedTask[]): Promise<void> {
   const boss = await openQueue();
-  await boss.insert(
-    TASKS,
-    tasks.map(({ id, priority }) => ({ id, priority, data: { taskId: id } satisfies TaskJob })),
-    { db: fromDrizzle(executor, sql) },
-  );
+  for (const queue of TASK_QUEUES) {
+    const jobs = tasks
+      .filter(({ program }) => queue === queueOf(program))
+      .map(({ id, priority }) => ({ id, priority, data: { taskId: id } satisfies TaskJob }));
+    if (jobs.length > 0) await boss.insert(queue, jobs, { db: fromDrizzle(executor, sql) });
+  }
+}
+
+function queueOf(program: ProgramName | undefined): string {
+  return program === undefined ? TASKS : PROGRAM_TASKS[program];
 }
 
 /** Puts a letter into the queue as a part of the caller's transaction. */
@@ -112,7 +125,9 @@ export async function enqueueLetter(executor: Executor, letterId: string): Promi
 export async function dequeue(executor: Executor, ids: readonly string[]): Promise<void> {
   if (ids.length === 0) return;
   const boss = await openQueue();
-  await boss.deleteJob(TASKS, [...ids], { db: fromDrizzle(executor, sql) });
+  for (const queue of TASK_QUEUES) {
+    await boss.deleteJob(queue, [...ids], { db: fromDrizzle(executor, sql) });
+  }
 }
 
 const ONE_BY_ONE = { batchSize: 1, pollingIntervalSeconds: 2, notifyPollingIntervalSeconds: 5 };
@@ -130,18 +145,20 @@ export async function workOnLetters(handle: (letterId: string) => Promise<void>)
 }
 
 /**
- * Opens the queue as a worker. Where its places are told to take tasks, `handle` runs for every job, one at a place; a
- * handler that throws hands its job back for a later try.
+ * Opens the queue as a worker: of the engine's tasks, or of those of an external program. Where its places are told to
+ * take tasks, `handle` runs for every job, one at a place; a handler that throws hands its job back for a later try.
  */
 export async function workOnTasks(
   concurrency: number,
   handle: (taskId: string, lastTry: boolean) => Promise<void>,
+  program?: ProgramName,
 ): Promise<Slots> {
   const boss = await openQueue(true);
+  const queue = queueOf(program);
   return keepSlots(concurrency, {
     open: () =>
       boss.work(
-        TASKS,
+        queue,
         { ...ONE_BY_ONE, includeMetadata: true },
         async (jobs: JobWithMetadata<TaskJob>[]) => {
           for (const { data, retryCount, retryLimit } of jobs) {
@@ -149,6 +166,6 @@ export async function workOnTasks(
           }
         },
       ),
-    close: (id) => boss.offWork(TASKS, { id, wait: true }),
+    close: (id) => boss.offWork(queue, { id, wait: true }),
   });
 }

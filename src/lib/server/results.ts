@@ -81,15 +81,41 @@ export function requestOf({ format, structure, kind, settings }: ClaimedTask): R
 /** Raised inside a transaction to roll it back when the task was cancelled or taken over meanwhile. */
 class NoLongerHeld extends Error {}
 
+/** What is stored of an answer: its own row, and what writes the rows that hang on it. */
+export interface StoredAnswer {
+  readonly engineVersion: string;
+  readonly model: string;
+  readonly molfile: string;
+  /** All that has no table of its own. */
+  readonly details: Record<string, unknown>;
+  readonly warnings: unknown;
+  readonly seconds: number;
+  readonly rows: (executor: Executor, resultId: string) => Promise<void>;
+}
+
+/** Stores what the engine computed and marks the task done; false where the task is no longer held. */
+export function store(task: ClaimedTask, result: Result): Promise<boolean> {
+  const { molfile, warnings, provenance } = result;
+  const { version: engineVersion, model, seconds } = provenance;
+  return storeAnswer(task, {
+    ...partition(result),
+    engineVersion,
+    model,
+    molfile,
+    warnings,
+    seconds,
+  });
+}
+
 /**
- * Stores what a task computed and marks it done, in one transaction. However often a task is delivered, one result is
+ * Stores an answer and marks its task done, in one transaction. However often a task is delivered, one result is
  * stored: a second one of the same identity gives way to the first. Nothing is stored for a task that is no longer held;
  * the answer then is false.
  */
-export async function store(task: ClaimedTask, result: Result): Promise<boolean> {
+export async function storeAnswer(task: ClaimedTask, answer: StoredAnswer): Promise<boolean> {
   try {
     await db.transaction(async (transaction) => {
-      const resultId = await insertResult(transaction, task, result);
+      const resultId = await insertAnswer(transaction, task, answer);
       if (!(await finish(transaction, task, resultId, false))) throw new NoLongerHeld();
     });
     return true;
@@ -99,29 +125,24 @@ export async function store(task: ClaimedTask, result: Result): Promise<boolean>
   }
 }
 
-async function insertResult(
+async function insertAnswer(
   executor: Executor,
   task: ClaimedTask,
-  result: Result,
+  { rows, ...answer }: StoredAnswer,
 ): Promise<string> {
-  const { rows, details } = partition(result);
   const identity = {
     moleculeId: task.moleculeId,
     kind: task.kind,
     settingsDigest: settingsDigest(task.settings),
-    engineVersion: result.provenance.version,
+    engineVersion: answer.engineVersion,
   };
   const [inserted] = await executor
     .insert(results)
     .values({
+      ...answer,
       ...identity,
       teamId: task.teamId,
       settings: task.settings,
-      model: result.provenance.model,
-      molfile: result.molfile,
-      details,
-      warnings: result.warnings,
-      seconds: result.provenance.seconds,
       madeFor: sql`(select ${batches.createdBy} from ${batches} where ${batches.id} = ${task.batchId})`,
     })
     .onConflictDoNothing()
@@ -145,12 +166,7 @@ async function insertResult(
   return id;
 }
 
-interface Partition {
-  /** Writes the rows of the tables that hang on a result. */
-  readonly rows: (executor: Executor, resultId: string) => Promise<void>;
-  /** All that has no table of its own. */
-  readonly details: Record<string, unknown>;
-}
+type Partition = Pick<StoredAnswer, 'rows' | 'details'>;
 
 /** Parts an answer into the rows of its tables and the rest. */
 function partition(result: Result): Partition {

@@ -3,6 +3,7 @@ import type { Result } from '../engine';
 import { ELEMENT_SYMBOLS, type Molecule } from '../engine';
 import type { Answer, StoredProfile } from './answers';
 import { bondName } from './molecules';
+import { opinionsOn } from './opinion-section';
 import { provenance, type ToldApart } from './section-parts';
 
 /** Atoms and bonds for what the browser draws and turns; formal charges are not needed for either. */
@@ -13,7 +14,13 @@ export function skeletonOf(molecule: Molecule) {
   };
 }
 
-export function describeScan(molecule: Molecule, answer: ToldApart, profile: StoredProfile) {
+/** A scan, with the second opinions that there are on it. */
+export function describeScan(
+  molecule: Molecule,
+  answer: ToldApart,
+  profile: StoredProfile,
+  opinions: readonly Answer[] = [],
+) {
   const details = answer.details as Pick<Result<'scan'>, 'complete' | 'temperature' | 'symmetry'>;
   return {
     ...provenance(answer),
@@ -28,6 +35,7 @@ export function describeScan(molecule: Molecule, answer: ToldApart, profile: Sto
     symmetry: details.symmetry,
     points: profile.points.map(({ angle, relative }) => ({ angle, relative })),
     stationary: profile.stationary.map(({ coordinates: _coordinates, ...point }) => point),
+    opinions: opinionsOn(profile, opinions),
   };
 }
 

@@ -58,3 +58,15 @@ export function keepSlots(count: number, slot: Slot): Slots {
     },
   };
 }
+
+/** Places of several queues as if they were one. */
+export function joinSlots(several: readonly Slots[]): Slots {
+  return {
+    take: () => {
+      for (const slots of several) slots.take();
+    },
+    pause: async () => {
+      await Promise.all(several.map((slots) => slots.pause()));
+    },
+  };
+}

@@ -178,6 +178,7 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
   const chosen = and(
     eq(tasks.batchId, where.batchId),
     where.rows ? inArray(tasks.entryId, [...where.rows]) : undefined,
+    where.tasks ? inArray(tasks.id, [...where.tasks]) : undefined,
   );
   return executor
     .select({
@@ -194,10 +195,11 @@ async function lockOwn(executor: Executor, member: Member, where: TaskChoice) {
     .for('update', { of: tasks });
 }
 
-/** Which tasks are meant: all of a batch, or those of some of its rows. */
+/** Which tasks are meant: all of a batch, those of some of its rows, or single ones. */
 export interface TaskChoice {
   readonly batchId: string;
   readonly rows?: readonly string[];
+  readonly tasks?: readonly string[];
 }
 
 /** Cancels what is queued or running among the chosen tasks; running ones stop within a second. Returns how many. */
@@ -245,8 +247,8 @@ export async function rerun(member: Member, choice: TaskChoice): Promise<number>
     );
     const ids = ended.map((row) => row.id);
     if (ids.length === 0) return 0;
-    await checkRoom(transaction, member, ids.length);
-    await queueAgain(transaction, ids, await waitingOf(transaction, member));
+    await queueAgain(transaction, ended, await waitingOf(transaction, member));
+    await checkRoom(transaction, member, ended.length);
     await recordEvent(transaction, member, 'rerun tasks', `batch:${ended[0].batchId}`, {
       tasks: ids.length,
     });

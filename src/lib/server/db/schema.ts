@@ -46,6 +46,9 @@ export const taskKindEnum = pgEnum('task_kind', [
   'map',
   'conjugation',
   'strain',
+  'opinion',
+  'ranking',
+  'heat',
 ]);
 export const taskStateEnum = pgEnum('task_state', [
   'queued',
@@ -531,7 +534,10 @@ export const profiles = pgTable(
   (table) => [index('profiles_result').on(table.resultId)],
 );
 
-/** One energy model's curve over a profile's grid; several models can stand side by side. */
+/**
+ * One energy model's curve over a profile's grid; several models can stand side by side. The curve of the result's own
+ * model is the scan; those of other models are second opinions, written by the task whose result they name.
+ */
 export const profileCurves = pgTable(
   'profile_curves',
   {
@@ -540,6 +546,9 @@ export const profileCurves = pgTable(
       .references(() => profiles.id, { onDelete: 'cascade' }),
     model: text('model').notNull(),
     relaxed: boolean('relaxed').notNull(),
+    /** The result of the opinion that the curve belongs to; null for the scan itself. */
+    opinionId: uuid('opinion_id').references(() => results.id, { onDelete: 'cascade' }),
+    /** kcal/mol; NaN where the model gave no point, for which the opinion's details have the reason. */
     energies: doublePrecision('energies').array().notNull(),
     reached: doublePrecision('reached').array().notNull(),
     /** Packed as a conformer's: the geometries of the angles in their order, then those of the stationary points. */
@@ -548,7 +557,22 @@ export const profileCurves = pgTable(
     stationary: jsonb('stationary').notNull(),
     createdAt: created(),
   },
-  (table) => [primaryKey({ columns: [table.profileId, table.model, table.relaxed] })],
+  (table) => [
+    primaryKey({ columns: [table.profileId, table.model, table.relaxed] }),
+    index('profile_curves_opinion').on(table.opinionId),
+  ],
+);
+
+/** The external programs each worker has; a worker that falls silent no longer counts. */
+export const workerPrograms = pgTable(
+  'worker_programs',
+  {
+    worker: text('worker').notNull(),
+    program: text('program').notNull(),
+    version: text('version').notNull(),
+    seenAt: moment('seen_at').notNull().defaultNow(),
+  },
+  (table) => [primaryKey({ columns: [table.worker, table.program] })],
 );
 
 /** Tokens by which programs ask in a person's name, in one team; the token itself is shown once. */

@@ -4,8 +4,11 @@ import { freeLeader, readConformers } from '$lib/domain/conformers-reading';
 import type { EnergyUnit } from '$lib/domain/energy-units';
 import { mapSentence } from '$lib/domain/map-sentence';
 import { wayBetween } from '$lib/domain/map-way';
+import { readOpinion } from '$lib/domain/opinion-reading';
+import { disagreementSentence } from '$lib/domain/opinion-sentences';
 import { readProfile } from '$lib/domain/profile-reading';
 import {
+  byModel,
   conformersSentence,
   conjugationSentence,
   remarked,
@@ -53,7 +56,7 @@ function conjugationInWords(
       bond.sCisFraction !== null && bond.profile
         ? conjugationAt(bond.profile, temperature).sCisFraction
         : bond.sCisFraction;
-    const facts = { ...bond, bond: bond.name, sCisFraction, temperature };
+    const facts = { ...bond, bond: byModel(bond.name, answer.model), sCisFraction, temperature };
     return {
       key: `${answer.id} ${bond.name}`,
       evidence: `conjugation-${answer.id}`,
@@ -65,9 +68,18 @@ function conjugationInWords(
 }
 
 function scanInWords(scan: Molecule['scans'][number], reading: Reading): AnswerInWords {
+  const temperature = reading.temperature ?? scan.temperature;
+  const [opinion] = scan.opinions;
+  const disagreement = opinion
+    ? disagreementSentence(
+        scan.bond,
+        readOpinion(scan, opinion, temperature).disagreements,
+        reading.unit,
+      )
+    : '';
   const facts = {
-    bond: scan.bond,
-    reading: readProfile(scan, reading.temperature ?? scan.temperature),
+    bond: byModel(scan.bond, scan.model),
+    reading: readProfile(scan, temperature),
     relaxed: scan.relaxed,
     complete: scan.complete,
     converged: scan.stationary.every(({ converged }) => converged),
@@ -77,7 +89,7 @@ function scanInWords(scan: Molecule['scans'][number], reading: Reading): AnswerI
     evidence: `scan-${scan.id}`,
     name: `Turn about ${scan.bond}`,
     distinction: scan.distinction,
-    text: remarked(scanSentence(facts, reading.unit), scan.warnings),
+    text: `${disagreement} ${remarked(scanSentence(facts, reading.unit), scan.warnings)}`.trim(),
   };
 }
 
@@ -105,6 +117,7 @@ function conformersInWords(
   const temperature = reading.temperature ?? answer.temperature;
   const conformers = readConformers(answer.rows, temperature);
   const facts = {
+    model: answer.model,
     count: answer.rows.length,
     window: answer.window,
     lowestPopulation: conformers.populations[0],
@@ -124,6 +137,7 @@ function conformersInWords(
 function strainInWords(answer: Molecule['strain'][number], { unit }: Reading): AnswerInWords {
   const [worst] = answer.torsions;
   const facts = {
+    model: answer.model,
     strain: answer.strain,
     worst: worst ? { bond: worst.name, strain: worst.strain } : null,
     complete: answer.complete,
