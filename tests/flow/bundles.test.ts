@@ -89,6 +89,35 @@ describe('a bundle', () => {
     expect(text('methods.md')).toMatch(/MMFF94s[\s\S]*Halgren/);
   });
 
+  it('carries free energies with what they rest on, in tables and JSON', () => {
+    const answer = JSON.parse(text('butadiene-2/conformers.json'));
+    const [anti, gauche] = answer.conformers;
+    for (const { vibrations } of [anti, gauche]) {
+      expect(vibrations.flaw).toBeNull();
+      // 3N - 6 modes of butane.
+      expect(vibrations.modes.frequencies).toHaveLength(36);
+    }
+    const [head, ...rows] = text('butadiene-2/conformers.csv')
+      .trim()
+      .split('\r\n')
+      .map((line) => line.split(','));
+    const column = (name: string) => rows.map((row) => row[head.indexOf(name)]);
+    const relative = column('free_energy_relative_kcal_per_mol').map(Number);
+    expect(Math.min(...relative)).toBe(0);
+    expect(column('imaginary_frequencies')).toEqual(['0', '0']);
+    const shares = column('population_by_free_energy').map(Number);
+    expect(shares[0] + shares[1]).toBeCloseTo(1, 5);
+    const scan = Object.keys(files).find((path) => /butadiene-2\/scan_.*csv$/.test(path))!;
+    const [scanHead, ...points] = text(scan)
+      .trim()
+      .split('\r\n')
+      .map((line) => line.split(','));
+    for (const point of points) {
+      const imaginary = point[scanHead.indexOf('imaginary_frequencies')];
+      expect(imaginary).toBe({ grid: '', minimum: '0', maximum: '1' }[point[0]]);
+    }
+  });
+
   it('is closed to other teams', async () => {
     const stranger = (await newTeam()).lead;
     await expect(bundleBatch(stranger, batchId)).rejects.toMatchObject({ status: 404 });
