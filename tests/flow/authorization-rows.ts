@@ -18,7 +18,8 @@
  * - `form`, what an allowed person would send: fields, or a function of the place (see tests/support/place.ts) for ids
  * - `foreign`, where people of another team do not get 404: 'own' when they get their own things, with nothing of ours
  * - `fresh`, true where a sign-in that is stale is asked once more who is there (`requireFresh`)
- * - `query`, behind the address; `body` for what is no form
+ * - `query`, behind the address; `body` for what is no form, or a function of the place
+ * - `shared`, true where the place must have answers
  * - for /api/v1 `scope`, what a token must have
  *
  * Parts of a route in brackets are filled from the place: see `fill` in the test.
@@ -42,13 +43,16 @@ export interface Row {
   readonly form?: Record<string, string> | ((place: Place) => Record<string, string>);
   readonly foreign?: 'own';
   readonly fresh?: true;
+  /** Asked of a place that has answers, which all share: what it changes does no harm there. */
+  readonly shared?: true;
   readonly query?: string | ((place: Place) => string);
-  readonly body?: unknown;
+  readonly body?: object | string | ((place: Place) => object);
   readonly scope?: ApiScope;
 }
 
 const own = 'own' as const;
 const fresh = true as const;
+const limits = { queuedTasks: '100', atoms: '100', megabytes: '100', months: '12' };
 const webhook = ({ webhookId }: Place) => ({ webhook: webhookId });
 /** A public address, never written to: the place's webhook is off, and no worker runs. */
 const newWebhook = { name: 'Another', url: 'https://9.9.9.9/hook' };
@@ -101,6 +105,7 @@ export const rows: Record<string, Row> = {
     form: ({ sessionId }) => ({ session: sessionId }),
   },
   'POST /(app)/account?/revokeOthers': { may: 'account' },
+  'POST /(app)/account?/chooseLetters': { may: 'account', form: { choice: 'off' } },
   'GET /(app)/account/second-factor': { may: 'account', fresh },
   'POST /(app)/account/second-factor?/switchOn': { may: 'account', fresh },
   'POST /(app)/account/second-factor?/renew': { may: 'account', fresh },
@@ -157,9 +162,19 @@ export const rows: Record<string, Row> = {
   'GET /(app)/team/record/record.csv': { may: 'lead', foreign: own },
   'GET /(app)/team/signing-in': { may: 'lead', foreign: own },
   'POST /(app)/team/signing-in': { may: 'lead', foreign: own, fresh },
+  'GET /(app)/team/limits': { may: 'reader', foreign: own },
+  'POST /(app)/team/limits?/team': { may: 'lead', foreign: own, form: limits },
+  'POST /(app)/team/limits?/member': {
+    may: 'lead',
+    form: ({ people }) => ({ ...limits, member: people.reader.userId }),
+  },
+  'GET /(app)/team/end': { may: 'lead', foreign: own },
+  'GET /(app)/team/end/everything.zip': { may: 'lead', foreign: own, fresh },
+  'POST /(app)/team/end?/ask': { may: 'lead', foreign: own, fresh, form: { name: 'not its name' } },
+  'POST /(app)/team/end?/undo': { may: 'lead', foreign: own },
   'GET /(app)/team/webhooks': { may: 'lead', foreign: own },
-  'POST /(app)/team/webhooks?/create': { may: 'lead', foreign: own, form: newWebhook },
-  'POST /(app)/team/webhooks?/renew': { may: 'lead', form: webhook },
+  'POST /(app)/team/webhooks?/create': { may: 'lead', foreign: own, fresh, form: newWebhook },
+  'POST /(app)/team/webhooks?/renew': { may: 'lead', fresh, form: webhook },
   'POST /(app)/team/webhooks?/switch': {
     may: 'lead',
     form: (place) => ({ ...webhook(place), on: 'no' }),
@@ -207,6 +222,8 @@ export const rows: Record<string, Row> = {
   },
   'GET /(app)/batches/[id]': { may: 'reader' },
   'POST /(app)/batches/[id]?/cancel': { may: 'modeler' },
+  'POST /(app)/batches/[id]?/pin': { may: 'modeler' },
+  'POST /(app)/batches/[id]?/unpin': { may: 'modeler' },
   'POST /(app)/batches/[id]?/rerun': { may: 'modeler' },
   'GET /(app)/batches/[id]/bundle': { may: 'reader' },
   'GET /(app)/batches/[id]/events': { may: 'reader' },
@@ -222,6 +239,22 @@ export const rows: Record<string, Row> = {
   'POST /(app)/batches/[id]/preview?/discard': { may: 'maker' },
   'POST /(app)/batches/[id]/preview/estimate': { may: 'maker', form: plan },
   'GET /(app)/molecules/[id]': { may: 'reader' },
+  'POST /(app)/molecules/[id]?/opinion': {
+    may: 'chemist',
+    shared: true,
+    form: ({ scanId }) => ({ result: scanId, depth: 'quick' }),
+  },
+  'POST /(app)/molecules/[id]?/ranking': {
+    may: 'chemist',
+    shared: true,
+    form: ({ resultId }) => ({ result: resultId, depth: 'energies' }),
+  },
+  'POST /(app)/molecules/[id]?/heat': { may: 'chemist' },
+  'POST /(app)/molecules/[id]?/cancelTask': {
+    may: 'modeler',
+    form: ({ batchId, taskId }) => ({ batch: batchId, task: taskId }),
+  },
+  'GET /(app)/molecules/[id]/program-tasks': { may: 'reader' },
   'GET /(app)/molecules/[id]/bundle': { may: 'reader' },
   'GET /(app)/molecules/[id]/report': { may: 'reader' },
   'GET /(app)/molecules/[id]/drawing': { may: 'reader' },
@@ -276,6 +309,12 @@ export const rows: Record<string, Row> = {
   'GET /api/v1/molecules/[id]': { may: 'reader', scope: 'read' },
   'GET /api/v1/molecules/[id]/bundle': { may: 'reader', scope: 'read' },
   'GET /api/v1/molecules/[id]/results/[result]': { may: 'reader', scope: 'read' },
+  'POST /api/v1/molecules/[id]/opinions': {
+    may: 'chemist',
+    scope: 'submit',
+    shared: true,
+    body: ({ scanId }) => ({ result: scanId, depth: 'quick' }),
+  },
   'GET /api/v1/webhooks': { may: 'lead', foreign: own, scope: 'webhooks' },
   'POST /api/v1/webhooks': { may: 'lead', foreign: own, scope: 'webhooks', body: newWebhook },
   'DELETE /api/v1/webhooks/[id]': { may: 'lead', scope: 'webhooks' },

@@ -105,7 +105,8 @@ async function ask(way: string, row: Row, at: Place, headers: Record<string, str
   const method = way.slice(0, way.indexOf(' '));
   const isAction = isPost(way) && row.body === undefined;
   const given = typeof row.form === 'function' ? row.form(at) : (row.form ?? {});
-  const isJson = typeof row.body === 'object';
+  const body = typeof row.body === 'function' ? row.body(at) : row.body;
+  const isJson = typeof body === 'object';
   const response = await fetch(`${web.origin}${addressOf(way, row, at)}`, {
     method,
     redirect: 'manual',
@@ -123,8 +124,8 @@ async function ask(way: string, row: Row, at: Place, headers: Record<string, str
           body: isAction
             ? new URLSearchParams(given)
             : isJson
-              ? JSON.stringify(row.body)
-              : String(row.body),
+              ? JSON.stringify(body)
+              : String(body),
         }
       : {}),
   });
@@ -190,7 +191,7 @@ describe('for people who signed in', () => {
     expect(nobody.text).not.toContain(place.marker);
     for (const role of roles) {
       const expected = expectedOf(row, role);
-      const isChanging = isPost(way) && expected.includes('through');
+      const isChanging = isPost(way) && !row.shared && expected.includes('through');
       const at = isChanging ? await newPlace() : place;
       const { outcome } = await ask(way, row, at, await signedIn(at.people[role]));
       expect(expected, `for a ${role}: ${outcome}`).toContain(outcome);
@@ -271,7 +272,8 @@ describe('for programs', () => {
     expect((await send(place, await signedIn(place.people.lead))).outcome).toBe('unknown');
     for (const role of roles) {
       const expected = expectedOf(row, role);
-      const at = isPost(way) && expected.includes('through') ? await newPlace() : place;
+      const isChanging = isPost(way) && !row.shared && expected.includes('through');
+      const at = isChanging ? await newPlace() : place;
       const { outcome } = await send(at, await bearer(at.people[role], row.scope!));
       expect(expected, `for a ${role}: ${outcome}`).toContain(outcome);
     }
@@ -306,7 +308,7 @@ describe('what stands elsewhere in the table', () => {
   });
 
   it('a person chooses among their own teams', async () => {
-    const row: Row = { may: 'reader', form: ({ teamId }) => ({ team: teamId }), body: undefined };
+    const row: Row = { may: 'reader', form: ({ teamId }) => ({ team: teamId }) };
     const way = 'POST /choose-team';
     const mine = await ask(way, row, place, await signedIn(place.people.reader));
     expect(mine.outcome).toBe('through');

@@ -1,4 +1,5 @@
 /** A team with something of everything that a request can be about, for asking who may do what with it. */
+import { eq } from 'drizzle-orm';
 import { randomUUID } from 'node:crypto';
 import { newBatchSchema } from '$lib/domain/api';
 import { newNoteSchema } from '$lib/domain/notes';
@@ -9,6 +10,8 @@ import * as apiTokens from '$lib/server/api-tokens';
 import * as lists from '$lib/server/batch-lists';
 import * as batches from '$lib/server/batches';
 import { readUpload } from '$lib/server/drafts';
+import { db } from '$lib/server/db';
+import { tasks } from '$lib/server/db/schema';
 import * as invitations from '$lib/server/invitations';
 import type { Member } from '$lib/server/member';
 import { board } from '$lib/server/note-board';
@@ -27,6 +30,8 @@ export interface Place {
   readonly teamId: string;
   readonly batchId: string;
   readonly moleculeId: string;
+  /** A task of the batch. */
+  readonly taskId: string;
   /** The chemist's own: a batch that was not submitted yet, one of its rows, a note, a token and a sign-in. */
   readonly draftId: string;
   readonly draftRowId: string;
@@ -89,6 +94,7 @@ export async function newPlace(): Promise<Place> {
   const { id: batchId } = await submitRequest(chemist, request);
   const [entry] = await lists.listEntriesAfter(chemist, batchId, 0, 1);
   const moleculeId = entry!.moleculeId!;
+  const [task] = await db.select().from(tasks).where(eq(tasks.batchId, batchId));
   await apiTokens.create(chemist, { name: marker, scope: 'read', days: 7 });
   const [token] = await apiTokens.list(chemist);
   await invitations.invite(lead, {
@@ -102,6 +108,7 @@ export async function newPlace(): Promise<Place> {
     teamId: lead.teamId,
     batchId,
     moleculeId,
+    taskId: task!.id,
     ...(await openDraft(chemist, marker)),
     noteId: await writeNote(chemist, moleculeId, marker),
     tokenId: token!.id,

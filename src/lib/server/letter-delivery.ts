@@ -217,12 +217,9 @@ export async function report(shown = 50) {
   const failed = await db
     .select({
       id: letters.id,
-      address: letters.address,
-      subject: letters.subject,
-      state: letters.state,
+      state: sql<(typeof failures)[number]>`${letters.state}`,
       reason: letters.reason,
       attempts: letters.attempt,
-      createdAt: letters.createdAt,
       endedAt: letters.endedAt,
     })
     .from(letters)

@@ -6,6 +6,7 @@ import {
   type workerOrders,
 } from '$lib/domain/operation';
 import { readForm } from '$lib/server/forms';
+import { report as letterReport } from '$lib/server/letter-delivery';
 import * as operation from '$lib/server/operation';
 import { databaseMegabytes, storageByTeam } from '$lib/server/operation-storage';
 import * as operatorActions from '$lib/server/operator-actions';
@@ -14,6 +15,7 @@ import { listWorkers } from '$lib/server/workers';
 import type { Actions, PageServerLoad } from './$types';
 
 const SHOWN_OPERATIONS = 20;
+const SHOWN_LETTERS = 20;
 
 export const load: PageServerLoad = async (event) => {
   event.depends('windlass:operation');
@@ -28,8 +30,9 @@ export const load: PageServerLoad = async (event) => {
       operation.machineFailures(),
       operation.machineFailureCounts(),
     ]);
-  const [webhooks, operations, storage, megabytes] = await Promise.all([
+  const [webhooks, letters, operations, storage, megabytes] = await Promise.all([
     operation.failingWebhooks(),
+    letterReport(SHOWN_LETTERS),
     readOperations(SHOWN_OPERATIONS),
     storageByTeam(),
     databaseMegabytes(),
@@ -44,6 +47,7 @@ export const load: PageServerLoad = async (event) => {
     machineFailures,
     machineCounts,
     webhooks,
+    letters,
     operations,
     storage,
     megabytes,

@@ -1,6 +1,7 @@
 import { fail } from '@sveltejs/kit';
 import { teamEndSchema } from '$lib/domain/team-forms';
 import { readForm } from '$lib/server/forms';
+import { requireFresh } from '$lib/server/freshness';
 import { require } from '$lib/server/member';
 import { askDeletion, DELETION_DAYS, undoDeletion } from '$lib/server/team-deletion';
 import { whoAsks } from '$lib/server/teams';
@@ -12,9 +13,11 @@ export const load: PageServerLoad = ({ locals }) => {
 };
 
 export const actions: Actions = {
-  ask: async ({ request, locals }) => {
-    const member = whoAsks(locals);
-    const form = await readForm(request, teamEndSchema);
+  ask: async (event) => {
+    const member = whoAsks(event.locals);
+    require(member, 'delete the team');
+    requireFresh(event);
+    const form = await readForm(event.request, teamEndSchema);
     if (!form.data) return fail(400, { fault: form.faults.errors['name'] ?? '' });
     const outcome = await askDeletion(member, form.data.name);
     if (outcome === 'wrong name') {

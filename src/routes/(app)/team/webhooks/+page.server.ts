@@ -1,6 +1,8 @@
 import { fail } from '@sveltejs/kit';
 import { newWebhookSchema, switchWebhookSchema, webhookSchema } from '$lib/domain/webhooks';
 import { faultOf, nothing, readForm } from '$lib/server/forms';
+import { requireFresh } from '$lib/server/freshness';
+import { require } from '$lib/server/member';
 import { whoAsks } from '$lib/server/teams';
 import { AddressRefused } from '$lib/server/webhook-addresses';
 import * as webhooks from '$lib/server/webhooks';
@@ -21,7 +23,10 @@ const answer = (given: {
 const GONE = 'This webhook is not there any more.';
 
 export const actions: Actions = {
-  create: async ({ locals, request }) => {
+  create: async (event) => {
+    const { locals, request } = event;
+    require(whoAsks(locals), 'manage webhooks');
+    requireFresh(event);
     const form = await readForm(request, newWebhookSchema);
     if (!form.data) return fail(400, answer(form.faults));
     try {
@@ -32,7 +37,10 @@ export const actions: Actions = {
     }
   },
 
-  renew: async ({ locals, request }) => {
+  renew: async (event) => {
+    const { locals, request } = event;
+    require(whoAsks(locals), 'manage webhooks');
+    requireFresh(event);
     const form = await readForm(request, webhookSchema);
     if (!form.data) return fail(404, answer({ message: GONE }));
     return answer({ made: await webhooks.renewSecret(whoAsks(locals), form.data.webhook) });
