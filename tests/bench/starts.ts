@@ -22,6 +22,7 @@ export function openchemlibStarts(smiles: string, count: number): string[] {
  * clash another way, and then two runs of the same code would be compared by different minimizations.
  */
 function inFixedOrder(conformer: OpenchemlibMolecule): OpenchemlibMolecule {
+  conformer.ensureHelperArrays(OpenchemlibMolecule.cHelperNeighbours);
   for (let atom = 0; atom < conformer.getAllAtoms(); atom++) {
     const hydrogens = Array.from({ length: conformer.getAllConnAtoms(atom) }, (_, n) =>
       conformer.getConnAtom(atom, n),
