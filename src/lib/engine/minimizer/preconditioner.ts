@@ -15,7 +15,7 @@ export interface Preconditioner {
 }
 
 /** Added to the diagonal, kcal/mol/Å²: about the stiffness of the softest modes a molecule has. */
-const REGULARIZATION = 0.5;
+const REGULARIZATION = 2;
 
 /** Creates a preconditioner for `size` coordinates; before its first curvature it leaves vectors as they are. */
 export function createPreconditioner(size: number): Preconditioner {
