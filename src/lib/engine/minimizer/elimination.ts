@@ -8,6 +8,8 @@ export interface EliminationPlan {
   readonly columnStarts: Int32Array;
   /** The step at which each block's row is eliminated, ascending within a column. */
   readonly rows: Int32Array;
+  /** The same rows as offsets into vectors: 3 × the atom eliminated at that step. */
+  readonly rowOffsets: Int32Array;
   /** For each column, each pair of its rows r ≥ s below the diagonal (s outer, r inner): the place of block (r, s). */
   readonly targets: Int32Array;
 }
@@ -78,5 +80,6 @@ function layOut(
       for (let m = n; m < list.length; m++) targets.push(places[list[m]]);
     }
   }
-  return { order, columnStarts, rows, targets: Int32Array.from(targets) };
+  const rowOffsets = rows.map((row) => 3 * order[row]);
+  return { order, columnStarts, rows, rowOffsets, targets: Int32Array.from(targets) };
 }

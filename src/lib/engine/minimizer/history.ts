@@ -6,7 +6,7 @@
 export interface History {
   /** Forgets everything. */
   clear(): void;
-  /** Remembers `scale` times `direction` with the change of gradient it made, unless its curvature is not safely positive. */
+  /** Remembers `scale` times the `direction` that was found by `apply` at the previous gradient, with the change of gradient it made. */
   remember(
     direction: Float64Array,
     scale: number,
@@ -16,6 +16,12 @@ export interface History {
   /** Turns `vector` in place into H · vector, with `applyInitial` as the initial inverse Hessian (in place). */
   apply(vector: Float64Array, applyInitial: (vector: Float64Array) => void): void;
 }
+
+/**
+ * Least curvature a pair is remembered with, as a share of what was expected along the step. A step over a saddle or a
+ * plateau has met none or a negative one, which as it is would make the next directions endless in it.
+ */
+const LEAST_CURVATURE = 0.3;
 
 /** Creates a memory of `depth` pairs of vectors of length `size`. */
 export function createHistory(size: number, depth: number): History {
@@ -27,6 +33,27 @@ export function createHistory(size: number, depth: number): History {
   let count = 0;
   let newest = -1;
 
+  const end = depth * size;
+  const before = (row: number): number => (row === 0 ? end : row) - size;
+  const after = (row: number): number => (row + size === end ? 0 : row + size);
+  /**
+   * Blends the change at `row` with the expected one, `scale` times `gradient`, so that their product with the step is the
+   * least share of `expected` (Powell, Lecture Notes in Mathematics 1978, 630, 144).
+   */
+  const stiffen = (
+    row: number,
+    product: number,
+    expected: number,
+    scale: number,
+    gradient: Float64Array,
+  ): void => {
+    const kept = ((1 - LEAST_CURVATURE) * expected) / (expected - product);
+    const added = (1 - kept) * scale;
+    for (let a = 0; a < size; a++) {
+      changes[row + a] = kept * changes[row + a] + added * gradient[a];
+    }
+  };
+
   return {
     clear: () => {
       count = 0;
@@ -35,34 +62,48 @@ export function createHistory(size: number, depth: number): History {
       const slot = (newest + 1) % depth;
       const row = slot * size;
       let product = 0;
-      let stepSquare = 0;
-      let changeSquare = 0;
+      let slope = 0;
       for (let a = 0; a < size; a++) {
         const s = scale * direction[a];
         const y = nextGradient[a] - previousGradient[a];
         steps[row + a] = s;
         changes[row + a] = y;
         product += s * y;
-        stepSquare += s * s;
-        changeSquare += y * y;
+        slope += s * previousGradient[a];
       }
-      if (product <= 1e-10 * Math.sqrt(stepSquare * changeSquare)) return;
-      inverseProducts[slot] = 1 / product;
+      // The direction was -H · gradient, so the change expected of the step is -scale · gradient.
+      const expected = -scale * slope;
+      const least = LEAST_CURVATURE * expected;
+      if (!(expected > 0)) return;
+      if (product < least) stiffen(row, product, expected, -scale, previousGradient);
+      inverseProducts[slot] = 1 / Math.max(product, least);
       newest = slot;
       count = Math.min(count + 1, depth);
     },
     apply: (vector, applyInitial) => {
+      if (count === 0) {
+        applyInitial(vector);
+        return;
+      }
+      let row = newest * size;
+      let product = dotRow(steps, row, vector);
       for (let age = 0; age < count; age++) {
-        const slot = (newest - age + depth) % depth;
-        const weight = inverseProducts[slot] * dotRow(steps, slot * size, vector);
+        const slot = row / size;
+        const weight = inverseProducts[slot] * product;
         weights[slot] = weight;
-        addRow(vector, -weight, changes, slot * size);
+        const next = before(row);
+        product = addAndMultiply(vector, -weight, changes, row, steps, next);
+        row = next;
       }
       applyInitial(vector);
+      row = after(row);
+      product = dotRow(changes, row, vector);
       for (let age = count - 1; age >= 0; age--) {
-        const slot = (newest - age + depth) % depth;
-        const correction = inverseProducts[slot] * dotRow(changes, slot * size, vector);
-        addRow(vector, weights[slot] - correction, steps, slot * size);
+        const slot = row / size;
+        const amount = weights[slot] - inverseProducts[slot] * product;
+        const next = after(row);
+        product = addAndMultiply(vector, amount, steps, row, changes, next);
+        row = next;
       }
     },
   };
@@ -91,6 +132,32 @@ export function dotRow(rows: Float64Array, start: number, vector: Float64Array):
   return sum0 + sum1 + (sum2 + sum3);
 }
 
-function addRow(target: Float64Array, scale: number, rows: Float64Array, start: number): void {
-  for (let n = 0; n < target.length; n++) target[n] += scale * rows[start + n];
+/**
+ * Adds `scale` times the row of `added` at `start` to `vector` and returns the inner product of what it became with the row
+ * of `met` at `next`: one pass instead of two.
+ */
+function addAndMultiply(
+  vector: Float64Array,
+  scale: number,
+  added: Float64Array,
+  start: number,
+  met: Float64Array,
+  next: number,
+): number {
+  let sum0 = 0;
+  let sum1 = 0;
+  let sum2 = 0;
+  // Vectors of atoms have three numbers an atom.
+  for (let n = 0; n < vector.length; n += 3) {
+    const x = vector[n] + scale * added[start + n];
+    const y = vector[n + 1] + scale * added[start + n + 1];
+    const z = vector[n + 2] + scale * added[start + n + 2];
+    vector[n] = x;
+    vector[n + 1] = y;
+    vector[n + 2] = z;
+    sum0 += x * met[next + n];
+    sum1 += y * met[next + n + 1];
+    sum2 += z * met[next + n + 2];
+  }
+  return sum0 + sum1 + sum2;
 }

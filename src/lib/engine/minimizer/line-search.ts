@@ -1,5 +1,5 @@
 /**
- * Line search with the strong Wolfe conditions by bracketing and safeguarded cubic interpolation (Nocedal and Wright,
+ * Line search by bracketing and safeguarded cubic interpolation (Nocedal and Wright,
  * Numerical Optimization, 2nd ed., algorithms 3.5 and 3.6), and with the approximate Wolfe conditions where the energy
  * change drowns in rounding (Hager and Zhang, SIAM J. Optim. 2005, 16, 170).
  */
@@ -61,6 +61,8 @@ export function searchLine(
     const flat = Math.abs(slope) <= -CURVATURE * startSlope;
     if ((decreased || drowned) && flat) return;
     if (decreased && slope < 0 && trial >= largestStep) return;
+    // A second energy is not spent on a flatter slope: the memory copes with any curvature it is told.
+    if (decreased && evaluations > 1) return;
 
     // Keep the interval [low, high] around a point that satisfies the conditions; low is its better end.
     if (!(decreased || drowned) || !(end.energy < lowEnergy + noise)) {

@@ -53,16 +53,13 @@ export function createFrames(skeleton: Skeleton | undefined): LocalFrames {
       to[root + 2] = from[root + 2];
     }
   };
-  /** Writes the components of (x, y, z) along the axes of bond `e` to `to[a]` and the next two. */
-  const resolve = (
-    e: number,
-    x: number,
-    y: number,
-    z: number,
-    to: Float64Array,
-    a: number,
-  ): void => {
+  /** Replaces the vector at `to[a]` and the next two by its components along the axes of bond `e`. */
+  const resolve = (e: number, to: Float64Array, a: number): void => {
+    // Numbers handed over one by one would be boxed, a vector of bonds at a time.
     const o = 9 * e;
+    const x = to[a];
+    const y = to[a + 1];
+    const z = to[a + 2];
     to[a] = axes[o] * x + axes[o + 1] * y + axes[o + 2] * z;
     to[a + 1] = axes[o + 3] * x + axes[o + 4] * y + axes[o + 5] * z;
     to[a + 2] = axes[o + 6] * x + axes[o + 7] * y + axes[o + 8] * z;
@@ -82,7 +79,7 @@ export function createFrames(skeleton: Skeleton | undefined): LocalFrames {
         to[p] += to[a];
         to[p + 1] += to[a + 1];
         to[p + 2] += to[a + 2];
-        resolve(e, to[a], to[a + 1], to[a + 2], to, a);
+        resolve(e, to, a);
       }
     },
     gradientFromLocal: (from, to) => {
@@ -110,7 +107,10 @@ export function createFrames(skeleton: Skeleton | undefined): LocalFrames {
       for (let e = 0; e < count; e++) {
         const p = edges[4 * e];
         const a = edges[4 * e + 1];
-        resolve(e, from[a] - from[p], from[a + 1] - from[p + 1], from[a + 2] - from[p + 2], to, a);
+        to[a] = from[a] - from[p];
+        to[a + 1] = from[a + 1] - from[p + 1];
+        to[a + 2] = from[a + 2] - from[p + 2];
+        resolve(e, to, a);
       }
     },
     stepFromLocal: (from, to) => {

@@ -104,32 +104,35 @@ function subtractProduct(b: Float64Array, t: number, r: number, s: number): void
 
 /** Turns `vector` in place into the solution of the factorized system. */
 export function solve({ plan, blocks: b }: BlockFactor, vector: Float64Array): void {
-  const { order, columnStarts, rows } = plan;
-  for (let c = 0; c < order.length; c++) {
-    const v = 3 * order[c];
-    const d = 9 * columnStarts[c];
+  const { columnStarts, rowOffsets } = plan;
+  const columns = columnStarts.length - 1;
+  for (let c = 0; c < columns; c++) {
+    const first = columnStarts[c];
+    const v = rowOffsets[first];
+    const d = 9 * first;
     const y0 = vector[v] * b[d];
     const y1 = (vector[v + 1] - b[d + 3] * y0) * b[d + 4];
     const y2 = (vector[v + 2] - b[d + 6] * y0 - b[d + 7] * y1) * b[d + 8];
     vector[v] = y0;
     vector[v + 1] = y1;
     vector[v + 2] = y2;
-    for (let p = columnStarts[c] + 1; p < columnStarts[c + 1]; p++) {
-      const w = 3 * order[rows[p]];
+    for (let p = first + 1; p < columnStarts[c + 1]; p++) {
+      const w = rowOffsets[p];
       const q = 9 * p;
       vector[w] -= b[q] * y0 + b[q + 1] * y1 + b[q + 2] * y2;
       vector[w + 1] -= b[q + 3] * y0 + b[q + 4] * y1 + b[q + 5] * y2;
       vector[w + 2] -= b[q + 6] * y0 + b[q + 7] * y1 + b[q + 8] * y2;
     }
   }
-  for (let c = order.length - 1; c >= 0; c--) {
-    const v = 3 * order[c];
-    const d = 9 * columnStarts[c];
+  for (let c = columns - 1; c >= 0; c--) {
+    const first = columnStarts[c];
+    const v = rowOffsets[first];
+    const d = 9 * first;
     let z0 = vector[v];
     let z1 = vector[v + 1];
     let z2 = vector[v + 2];
-    for (let p = columnStarts[c] + 1; p < columnStarts[c + 1]; p++) {
-      const w = 3 * order[rows[p]];
+    for (let p = first + 1; p < columnStarts[c + 1]; p++) {
+      const w = rowOffsets[p];
       const q = 9 * p;
       const w0 = vector[w];
       const w1 = vector[w + 1];

@@ -6,7 +6,10 @@ describe('workspace', () => {
   it('is handed on without its memory, and never to two at a time', () => {
     const first = takeWorkspace(6, undefined);
     const ones = new Float64Array(6).fill(1);
-    first.history.remember(ones, 1, new Float64Array(6), new Float64Array(6).fill(3));
+    first.history.remember(ones, 1, new Float64Array(6).fill(-1), new Float64Array(6).fill(2));
+    const shortened = ones.slice();
+    first.history.apply(shortened, () => undefined);
+    expect(shortened[0]).toBeCloseTo(1 / 3, 12);
     expect(takeWorkspace(6, undefined)).not.toBe(first);
     returnWorkspace(first);
     const again = takeWorkspace(6, undefined);

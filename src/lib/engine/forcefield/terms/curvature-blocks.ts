@@ -15,16 +15,11 @@ export function addPairBlock(
   along: number,
   across: number,
 ): void {
-  const xx = along * ux * ux + across;
-  const yy = along * uy * uy + across;
-  const zz = along * uz * uz + across;
-  const xy = along * ux * uy;
-  const xz = along * ux * uz;
-  const yz = along * uy * uz;
-  addSymmetric(hessian, i * size + i, size, xx, yy, zz, xy, xz, yz);
-  addSymmetric(hessian, j * size + j, size, xx, yy, zz, xy, xz, yz);
-  addSymmetric(hessian, i * size + j, size, -xx, -yy, -zz, -xy, -xz, -yz);
-  addSymmetric(hessian, j * size + i, size, -xx, -yy, -zz, -xy, -xz, -yz);
+  fillBlock(ux, uy, uz, along, across);
+  addBlock(hessian, i * size + i, size, 1);
+  addBlock(hessian, j * size + j, size, 1);
+  addBlock(hessian, i * size + j, size, -1);
+  addBlock(hessian, j * size + i, size, -1);
 }
 
 /** Adds `along` · u uᵀ + `across` · 1 to the diagonal block of the atom at offset i (3 × atom). */
@@ -38,33 +33,37 @@ export function addDiagonalBlock(
   along: number,
   across: number,
 ): void {
-  const xx = along * ux * ux + across;
-  const yy = along * uy * uy + across;
-  const zz = along * uz * uz + across;
-  const start = i * size + i;
-  addSymmetric(hessian, start, size, xx, yy, zz, along * ux * uy, along * ux * uz, along * uy * uz);
+  fillBlock(ux, uy, uz, along, across);
+  addBlock(hessian, i * size + i, size, 1);
 }
 
-function addSymmetric(
-  hessian: Float64Array,
-  start: number,
-  size: number,
-  xx: number,
-  yy: number,
-  zz: number,
-  xy: number,
-  xz: number,
-  yz: number,
-): void {
-  hessian[start] += xx;
+/** The block at hand: xx, yy, zz, xy, xz, yz. Numbers handed over one by one would be boxed. */
+const block = new Float64Array(6);
+
+function fillBlock(ux: number, uy: number, uz: number, along: number, across: number): void {
+  block[0] = along * ux * ux + across;
+  block[1] = along * uy * uy + across;
+  block[2] = along * uz * uz + across;
+  block[3] = along * ux * uy;
+  block[4] = along * ux * uz;
+  block[5] = along * uy * uz;
+}
+
+function addBlock(hessian: Float64Array, start: number, size: number, sign: number): void {
+  const second = start + size;
+  const third = second + size;
+  const xy = sign * block[3];
+  const xz = sign * block[4];
+  const yz = sign * block[5];
+  hessian[start] += sign * block[0];
   hessian[start + 1] += xy;
   hessian[start + 2] += xz;
-  hessian[start + size] += xy;
-  hessian[start + size + 1] += yy;
-  hessian[start + size + 2] += yz;
-  hessian[start + 2 * size] += xz;
-  hessian[start + 2 * size + 1] += yz;
-  hessian[start + 2 * size + 2] += zz;
+  hessian[second] += xy;
+  hessian[second + 1] += sign * block[1];
+  hessian[second + 2] += yz;
+  hessian[third] += xz;
+  hessian[third + 1] += yz;
+  hessian[third + 2] += sign * block[2];
 }
 
 /**

@@ -1,6 +1,9 @@
 /** A torsion and its derivatives (Blondel and Karplus, J. Comput. Chem. 1996, 17, 1132). */
 import { COLLINEAR_GUARD } from './constants';
 
+/** Cosine and sine of the torsion at hand, both times one positive number. */
+const bothParts = new Float64Array(2);
+
 /**
  * Writes the derivatives of the torsion by i, j, k, l (12 numbers, 1/Å) and returns it in radians in [-π, π];
  * `offsets` are three times the atoms' indices. Smooth at 0 and π; small where three atoms are collinear.
@@ -10,6 +13,17 @@ export function torsionDerivative(
   offsets: Int32Array,
   derivative: Float64Array,
 ): number {
+  torsionParts(x, offsets, derivative, bothParts);
+  return Math.atan2(bothParts[1], bothParts[0]);
+}
+
+/** Writes the same derivatives, and the torsion's cosine and sine, both times one positive number, to `parts`. */
+export function torsionParts(
+  x: Float64Array,
+  offsets: Int32Array,
+  derivative: Float64Array,
+  parts: Float64Array,
+): void {
   const i = offsets[0];
   const j = offsets[1];
   const k = offsets[2];
@@ -46,5 +60,6 @@ export function torsionDerivative(
     derivative[3 + p] = -derivative[p] + shift;
     derivative[6 + p] = -derivative[9 + p] - shift;
   }
-  return Math.atan2(b * (ax * nx + ay * ny + az * nz), mx * nx + my * ny + mz * nz);
+  parts[0] = mx * nx + my * ny + mz * nz;
+  parts[1] = b * (ax * nx + ay * ny + az * nz);
 }

@@ -7,7 +7,7 @@ import type { CurvatureTerm, EnergyTerm } from '../../energy-term';
 import type { Interactions } from '../interactions';
 import { COLLINEAR_GUARD } from './constants';
 import { addOuterProduct } from './curvature-blocks';
-import { torsionDerivative } from './torsion-derivative';
+import { torsionParts } from './torsion-derivative';
 
 /** The torsion energy, kcal/mol. */
 export function torsionTerm({ atoms, v1, v2, v3 }: Interactions['torsions']): EnergyTerm {
@@ -85,17 +85,20 @@ export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']
   const count = v1.length;
   const { bonds, bondCount } = centralBonds(atoms, count);
   const alone = v1.map((v, q) => stiffnessOf(Math.abs(v), Math.abs(v2[q]), Math.abs(v3[q])));
-  const offsets = new Int32Array(4);
+  const offsets = Array.from({ length: count }, (_, q) =>
+    atoms.slice(4 * q, 4 * q + 4).map((atom) => 3 * atom),
+  );
+  const parts = new Float64Array(2);
   const derivatives = Array.from({ length: count }, () => new Float64Array(12));
   /** For each bond the sums of V cos nφ and V sin nφ, n = 1 to 3, and of what its torsions have alone. */
   const sums = new Float64Array(7 * bondCount);
   return (x, hessian) => {
     sums.fill(0);
     for (let q = 0; q < count; q++) {
-      readOffsets(atoms, q, offsets);
-      const angle = torsionDerivative(x, offsets, derivatives[q]);
-      const c = Math.cos(angle);
-      const s = Math.sin(angle);
+      torsionParts(x, offsets[q], derivatives[q], parts);
+      const scale = 1 / Math.sqrt(parts[0] * parts[0] + parts[1] * parts[1] + COLLINEAR_GUARD);
+      const c = scale * parts[0];
+      const s = scale * parts[1];
       const c2 = c * c - s * s;
       const s2 = 2 * c * s;
       const bond = 7 * bonds[q];
@@ -108,7 +111,6 @@ export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']
       sums[bond + 6] += alone[q];
     }
     for (let q = 0; q < count; q++) {
-      readOffsets(atoms, q, offsets);
       const bond = 7 * bonds[q];
       if (sums[bond + 6] === 0) continue;
       const together = stiffnessOf(
@@ -117,7 +119,7 @@ export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']
         Math.sqrt(sums[bond + 4] ** 2 + sums[bond + 5] ** 2),
       );
       const stiffness = (alone[q] * together) / sums[bond + 6];
-      addOuterProduct(hessian, x.length, offsets, derivatives[q], 4, stiffness);
+      addOuterProduct(hessian, x.length, offsets[q], derivatives[q], 4, stiffness);
     }
   };
 }
@@ -125,10 +127,6 @@ export function torsionCurvature({ atoms, v1, v2, v3 }: Interactions['torsions']
 /** The largest second derivative of a torsion energy with these amplitudes, kcal/mol/radian². */
 function stiffnessOf(v1: number, v2: number, v3: number): number {
   return 0.5 * (v1 + 4 * v2 + 9 * v3);
-}
-
-function readOffsets(atoms: Readonly<Int32Array>, q: number, offsets: Int32Array): void {
-  for (let a = 0; a < 4; a++) offsets[a] = 3 * atoms[4 * q + a];
 }
 
 /** The number of the bond each torsion turns about. */
