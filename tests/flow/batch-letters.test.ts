@@ -65,7 +65,7 @@ describe('the end of a batch', () => {
     expect(letter.text).toContain('1 task done');
     expect(letter.text).toContain('1 row could not be read');
     expect(letter.text).toMatch(
-      /- buta-1,3-diene: C2–C3: s-trans is preferred by \d[.]\d kcal\/mol/,
+      /- buta-1,3-diene: C2–C3 by MMFF94s: s-trans is preferred by \d[.]\d kcal\/mol/,
     );
     expect(letter.text).toContain(`/batches/${id}`);
     expect(letter.html).toContain('s-trans is preferred');
