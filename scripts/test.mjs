@@ -2,7 +2,8 @@
  * `npm test`: installs what is missing, runs the static checks and every test, and sums all of it up in the last line.
  * Arguments choose test files by a part of their path.
  */
-import { spawnSync } from 'node:child_process';
+import { spawn } from 'node:child_process';
+import { once } from 'node:events';
 import { mkdtempSync, readdirSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -13,16 +14,24 @@ import { installPackages } from './install.mjs';
 import { installPostgres } from './postgres.mjs';
 import { installPrograms } from './programs.mjs';
 
-/** Runs a test runner that writes a JSON report; a run that ends without one counts as a failure. */
-function runRunner({ name, command, env, count }) {
+/**
+ * Runs a test runner that writes a JSON report; a run that ends without one counts as a failure. What a quiet runner says
+ * is printed when it has ended, so that runners side by side do not mix their lines.
+ */
+async function runRunner({ name, command, env, count, isQuiet = false }) {
   const folder = mkdtempSync(join(tmpdir(), 'windlass-test-'));
   const report = join(folder, 'report.json');
   try {
-    const { status } = spawnSync('npx', ['--no-install', ...command(report)], {
+    const child = spawn('npx', ['--no-install', ...command(report)], {
       cwd: projectRoot,
-      stdio: 'inherit',
+      stdio: isQuiet ? ['ignore', 'pipe', 'pipe'] : 'inherit',
       env: { ...process.env, ...env?.(report) },
     });
+    const said = [];
+    for (const stream of [child.stdout, child.stderr])
+      stream?.on('data', (chunk) => said.push(chunk));
+    const [status] = await once(child, 'close');
+    process.stdout.write(Buffer.concat(said));
     const counts = count(JSON.parse(readFileSync(report, 'utf8')));
     // A file that could not be loaded fails the run without failing a single test.
     return status !== 0 && counts.failed === 0 ? { ...counts, failed: 1 } : counts;
@@ -53,6 +62,7 @@ const vitest = (files) => ({
 
 const playwright = (files) => ({
   name: 'Playwright',
+  isQuiet: true,
   command: () => ['playwright', 'test', '--reporter=list,json', ...files],
   env: (report) => ({ PLAYWRIGHT_JSON_OUTPUT_NAME: report }),
   // A test that passes only at its second try counts as failed: it hides something.
@@ -74,11 +84,15 @@ await installPackages();
 installPostgres();
 installPrograms();
 installChromium();
-const results = [
-  { ...(await runChecks()), skipped: 0 },
+const nothing = { passed: 0, failed: 0, skipped: 0 };
+const checked = { ...(await runChecks()), skipped: 0 };
+console.log('Tests of the engine and of flows begin, and those in a browser beside them …');
+// Much of either is waiting, so both together take little longer than one of them.
+const tested = await Promise.all([
   runRunner(vitest(files)),
-  hasPageTests ? runRunner(playwright(files)) : { passed: 0, failed: 0, skipped: 0 },
-];
+  hasPageTests ? runRunner(playwright(files)) : nothing,
+]);
+const results = [checked, ...tested];
 const sum = (name) => results.reduce((total, result) => total + result[name], 0);
 const skipped = sum('skipped') > 0 ? `, ${sum('skipped')} skipped` : '';
 process.exitCode = sum('failed') === 0 && results[1].passed + results[2].passed > 0 ? 0 : 1;

@@ -286,7 +286,12 @@ describe('the demo', () => {
     const first = await seedDemo();
     expect(await seedDemo()).toEqual(first);
     expect(await db.$count(teams, eq(teams.name, 'Skerry Coatings'))).toBe(1);
-    expect(first.map(({ role }) => role)).toEqual(['lead', 'modeler', 'chemist', 'reader']);
+    expect(first.map(({ role }) => role)).toEqual([
+      'lead, operator',
+      'modeler',
+      'chemist',
+      'reader',
+    ]);
     for (const { email, role } of first) {
       const outcome = await signIn(email, process.env['WINDLASS_DEMO_PASSWORD']);
       const found = await session.find((outcome as { sessionId: string }).sessionId);

@@ -247,7 +247,7 @@ export const rows: Record<string, Row> = {
   'POST /(app)/molecules/[id]?/ranking': {
     may: 'chemist',
     shared: true,
-    form: ({ resultId }) => ({ result: resultId, depth: 'energies' }),
+    form: ({ resultId }) => ({ result: resultId, depth: 'energies', window: '6' }),
   },
   'POST /(app)/molecules/[id]?/heat': { may: 'chemist' },
   'POST /(app)/molecules/[id]?/cancelTask': {

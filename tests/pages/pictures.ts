@@ -95,6 +95,12 @@ const pages: Record<string, Pictured> = {
   links: { who: 'modeler', go: at('/links') },
   account: { who: 'modeler', go: at('/account') },
   tokens: { who: 'modeler', go: at('/account/tokens') },
+  'second-factor': { who: 'modeler', go: at('/account/second-factor') },
+  limits: { who: 'lead', go: at('/team/limits') },
+  'signing-in': { who: 'lead', go: at('/team/signing-in') },
+  webhooks: { who: 'lead', go: at('/team/webhooks') },
+  'team-end': { who: 'lead', go: at('/team/end') },
+  operator: { who: 'lead', go: at('/operator') },
 };
 
 /** Scrolls to the end and back: plots and 3-D views come when they are seen. */

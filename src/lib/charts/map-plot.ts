@@ -1,4 +1,5 @@
 /** A map of two bonds as a stand-alone SVG document, for bundles. */
+import { inUnit, type EnergyUnit } from '../domain/energy-units';
 import { minimumName } from '../domain/map-way';
 import { energyColor } from './energy-scale';
 import type { MapEnergies } from './fine-grid';
@@ -8,6 +9,8 @@ import { escapeText } from './svg-text';
 
 export interface PlottedMap extends MapEnergies {
   readonly title: string;
+  /** In which energies are drawn; kcal/mol where it is not said. */
+  readonly unit?: EnergyUnit;
   /** Names of the two torsions. */
   readonly axes: readonly [string, string] | readonly string[];
   readonly minima: readonly { readonly angles: readonly [number, number] }[];
@@ -20,9 +23,10 @@ const RIGHT = 110;
 const BOTTOM = 60;
 const TICKS = [-180, -120, -60, 0, 60, 120, 180];
 
-/** Draws a map in kcal/mol with its contours, its minima by letter and its scale. */
-export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {
-  const { bands, contours } = layMap(map, SIZE);
+/** Draws a map in the unit with its contours, its minima by letter and its scale. */
+export function mapPlot({ title, axes, minima, unit = 'kcal/mol', ...map }: PlottedMap): string {
+  const energies = map.energies.map((energy) => (energy === null ? null : inUnit(energy, unit)));
+  const { bands, contours } = layMap({ ...map, energies }, SIZE);
   const x = linearScale([-180, 180], [0, SIZE]);
   const [width, height] = [LEFT + SIZE + RIGHT, TOP + SIZE + BOTTOM];
   const halo = 'paint-order="stroke" stroke="#ffffff" stroke-width="3"';
@@ -66,7 +70,7 @@ export function mapPlot({ title, axes, minima, ...map }: PlottedMap): string {
     `<text x="${SIZE / 2}" y="${SIZE + 44}" text-anchor="middle">${escapeText(axes[0])} / degrees</text>`,
     `<text transform="translate(-54 ${SIZE / 2}) rotate(-90)" text-anchor="middle">${escapeText(axes[1])} / degrees</text>`,
     ...legend,
-    `<text x="${SIZE + 16}" y="${SIZE - 18 * bands.length - 10}">kcal/mol</text>`,
+    `<text x="${SIZE + 16}" y="${SIZE - 18 * bands.length - 10}">${unit}</text>`,
     '</g>',
     '</svg>',
     '',

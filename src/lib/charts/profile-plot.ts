@@ -1,9 +1,12 @@
 /** An energy profile as a stand-alone SVG document, for bundles and downloads. */
+import { inUnit, type EnergyUnit } from '../domain/energy-units';
 import { linearScale, roundTicks } from './scale';
 import { escapeText } from './svg-text';
 
 export interface PlottedProfile {
   readonly title: string;
+  /** In which energies are drawn; kcal/mol where it is not said. */
+  readonly unit?: EnergyUnit;
   /** Energies above the lowest, kcal/mol, ascending in angle over (-180, 180]. */
   readonly points: readonly { readonly angle: number; readonly relative: number }[];
   readonly stationary: readonly {
@@ -20,8 +23,14 @@ const MARGIN = { left: 64, right: 20, top: 40, bottom: 56 };
 
 const round = (value: number): string => value.toFixed(1);
 
-/** Draws a profile with axes in degrees and kcal/mol, and its stationary points by name. */
-export function profilePlot({ title, points, stationary }: PlottedProfile): string {
+/** Draws a profile with axes in degrees and the unit, and its stationary points by name. */
+export function profilePlot({ title, unit = 'kcal/mol', ...profile }: PlottedProfile): string {
+  const drawn = <Point extends { readonly relative: number }>(point: Point): Point => ({
+    ...point,
+    relative: inUnit(point.relative, unit),
+  });
+  const points = profile.points.map(drawn);
+  const stationary = profile.stationary.map(drawn);
   const ticks = roundTicks(Math.max(0.1, ...points.map(({ relative }) => relative)));
   const x = linearScale([-180, 180], [MARGIN.left, WIDTH - MARGIN.right]);
   const y = linearScale([0, ticks[ticks.length - 1]], [HEIGHT - MARGIN.bottom, MARGIN.top]);
@@ -54,7 +63,7 @@ export function profilePlot({ title, points, stationary }: PlottedProfile): stri
     `<text x="${MARGIN.left}" y="22" font-size="15" font-weight="600">${escapeText(title)}</text>`,
     ...axes,
     `<text x="${(MARGIN.left + WIDTH - MARGIN.right) / 2}" y="${HEIGHT - 14}" text-anchor="middle">Torsion angle / degrees</text>`,
-    `<text transform="translate(18 ${(MARGIN.top + HEIGHT - MARGIN.bottom) / 2}) rotate(-90)" text-anchor="middle">Relative energy / kcal/mol</text>`,
+    `<text transform="translate(18 ${(MARGIN.top + HEIGHT - MARGIN.bottom) / 2}) rotate(-90)" text-anchor="middle">Relative energy / ${unit}</text>`,
     `<polyline points="${line.join(' ')}" fill="none" stroke="#0b6e6e" stroke-width="2" stroke-linejoin="round"/>`,
     ...marks,
     '</svg>',

@@ -4,7 +4,7 @@ import { opinionSettingsSchema, type OpinionSettings } from '../domain/second-op
 import { ENGINE_VERSION, type Molecule } from '../engine';
 import { db } from './db';
 import { molecules, profileCurves, profiles, results } from './db/schema';
-import { notFound, type Member } from './member';
+import { notFound, require, type Member } from './member';
 import { readStored } from './molecules';
 import { pack, unpack } from './packing';
 import { ask, ProgramRequestError, type ProgramTask } from './program-tasks';
@@ -18,6 +18,7 @@ export async function request(
   moleculeId: string,
   settings: OpinionSettings,
 ): Promise<ProgramTask> {
+  require(member, 'submit molecules');
   const [scan] = await db
     .select({ kind: results.kind, model: results.model, settings: results.settings })
     .from(results)

@@ -15,6 +15,7 @@ import { tell } from './live';
 import { notFound, require, type Member } from './member';
 import { enqueue } from './queue';
 import { findStored, identityOf, settingsDigest } from './results';
+import { get as getMolecule } from './molecules';
 import { queueAgain } from './queue-again';
 import { waitingOf } from './tasks';
 import { versions } from './worker-programs';
@@ -168,6 +169,7 @@ export interface OpenProgramTask {
 
 /** What is not done among a molecule's tasks of external programs, the newest first. */
 export async function open(member: Member, moleculeId: string): Promise<OpenProgramTask[]> {
+  await getMolecule(member, moleculeId);
   const rows = await db
     .select({
       id: tasks.id,

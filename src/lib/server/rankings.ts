@@ -10,7 +10,7 @@ import { ENGINE_VERSION, writeMolfile, type Molecule, type Reordered } from '../
 import { boltzmannPopulations } from '../engine/light';
 import { db } from './db';
 import { conformers, molecules, results } from './db/schema';
-import { notFound, type Member } from './member';
+import { notFound, require, type Member } from './member';
 import { readStored } from './molecules';
 import { pack, unpack } from './packing';
 import { ask, ProgramRequestError, type ProgramTask } from './program-tasks';
@@ -23,6 +23,7 @@ export async function request(
   moleculeId: string,
   settings: RankingSettings,
 ): Promise<ProgramTask> {
+  require(member, 'submit molecules');
   const [search] = await db
     .select({ kind: results.kind })
     .from(results)

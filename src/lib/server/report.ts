@@ -2,6 +2,7 @@
 import MarkdownIt from 'markdown-it';
 import { mapPlot } from '../charts/map-plot';
 import { profilePlot } from '../charts/profile-plot';
+import type { EnergyUnit } from '../domain/energy-units';
 import { methodsText } from '../domain/methods';
 import { ENGINE_VERSION } from '../engine';
 import type { Member } from './member';
@@ -9,8 +10,8 @@ import * as moleculePage from './molecule-page';
 
 const markdown = new MarkdownIt({ html: false });
 
-/** What the printed report of a molecule shows. */
-export async function load(member: Member, moleculeId: string) {
+/** What the printed report of a molecule shows, its plots in the unit. */
+export async function load(member: Member, moleculeId: string, unit: EnergyUnit) {
   const molecule = await moleculePage.load(member, moleculeId);
   const { conformers, scans, maps, conjugation, strain } = molecule;
   const kinds = { conformers, scan: scans, map: maps, conjugation, strain };
@@ -25,6 +26,7 @@ export async function load(member: Member, moleculeId: string) {
         ...scan,
         plot: profilePlot({
           title: `${molecule.name}, turn about ${scan.bond}`,
+          unit,
           points: scan.points,
           stationary: scan.stationary,
         }),
@@ -34,6 +36,7 @@ export async function load(member: Member, moleculeId: string) {
         plot: mapPlot({
           title: `${molecule.name}, ${map.torsions.map(({ bond }) => bond).join(' and ')}`,
           axes: map.torsions.map(({ name }) => name),
+          unit,
           step: map.step,
           perAxis: map.perAxis,
           energies: map.energies,

@@ -3,7 +3,10 @@ import { load as loadReport } from '$lib/server/report';
 import { whoAsks } from '$lib/server/teams';
 import type { PageServerLoad } from './$types';
 
-export const load: PageServerLoad = async ({ locals, params }) => ({
-  ...(await loadReport(whoAsks(locals), uuidParam(params.id))),
-  printedAt: new Date(),
-});
+export const load: PageServerLoad = async ({ locals, params, parent }) => {
+  const { energyUnit } = await parent();
+  return {
+    ...(await loadReport(whoAsks(locals), uuidParam(params.id), energyUnit)),
+    printedAt: new Date(),
+  };
+};
