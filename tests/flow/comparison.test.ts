@@ -100,8 +100,8 @@ describe('a comparison', () => {
 
 describe('a report', () => {
   it('has plots, settings, methods with literature, and cautions', async () => {
-    const found = await report.load(team.reader, molecules[1]);
-    expect(found.molecule.scans[0].plot).toContain('Relative energy / kcal/mol');
+    const found = await report.load(team.reader, molecules[1], 'kJ/mol');
+    expect(found.molecule.scans[0].plot).toContain('Relative energy / kJ/mol');
     expect(found.origins).toMatchObject([
       { kind: 'scan', model: 'MMFF94s', settings: { step: 30, relaxed: true } },
     ]);
@@ -109,6 +109,8 @@ describe('a report', () => {
   });
 
   it('is closed to other teams', async () => {
-    await expect(report.load(stranger, molecules[1])).rejects.toMatchObject({ status: 404 });
+    await expect(report.load(stranger, molecules[1], 'kcal/mol')).rejects.toMatchObject({
+      status: 404,
+    });
   });
 });

@@ -1,8 +1,8 @@
 /** Tasks: claimed, kept alive, finished, cancelled and run again. The row is the only truth shown to people. */
-import { and, asc, count, eq, inArray, lt, min, or, sql } from 'drizzle-orm';
+import { and, eq, inArray, lt, or, sql } from 'drizzle-orm';
 import { batchFinished } from './batch-finish';
 import { db, type Executor } from './db';
-import { batches, entries, molecules, tasks, users } from './db/schema';
+import { batches, entries, molecules, tasks } from './db/schema';
 import { recordEvent } from './events';
 import { checkRoom, lockTeam } from './limits';
 import { tell } from './live';
@@ -268,42 +268,4 @@ export async function waitingOf(executor: Executor, member: Member): Promise<num
     .innerJoin(batches, eq(batches.id, tasks.batchId))
     .where(and(eq(tasks.state, 'queued'), eq(batches.createdBy, member.userId)));
   return row.count;
-}
-
-/** What runs in the member's team at the moment, the longest first, and how much waits in each of its batches. */
-export async function queueOf(member: Member) {
-  const running = await db
-    .select({
-      id: tasks.id,
-      kind: tasks.kind,
-      progress: tasks.progress,
-      stage: tasks.stage,
-      startedAt: tasks.startedAt,
-      name: entries.name,
-      moleculeId: entries.moleculeId,
-      batchId: batches.id,
-      batchName: batches.name,
-    })
-    .from(tasks)
-    .innerJoin(batches, eq(batches.id, tasks.batchId))
-    .innerJoin(entries, eq(entries.id, tasks.entryId))
-    .where(and(eq(batches.teamId, member.teamId), eq(tasks.state, 'running')))
-    .orderBy(asc(tasks.startedAt))
-    .limit(100);
-  const waiting = await db
-    .select({
-      batchId: batches.id,
-      batchName: batches.name,
-      maker: users.name,
-      count: count(),
-      since: min(tasks.queuedAt),
-    })
-    .from(tasks)
-    .innerJoin(batches, eq(batches.id, tasks.batchId))
-    .leftJoin(users, eq(users.id, batches.createdBy))
-    .where(and(eq(batches.teamId, member.teamId), eq(tasks.state, 'queued')))
-    .groupBy(batches.id, users.name)
-    .orderBy(asc(min(tasks.queuedAt)))
-    .limit(100);
-  return { running, waiting };
 }

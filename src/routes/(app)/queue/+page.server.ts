@@ -1,4 +1,4 @@
-import { queueOf } from '$lib/server/tasks';
+import { queueOf } from '$lib/server/team-queue';
 import { whoAsks } from '$lib/server/teams';
 import type { PageServerLoad } from './$types';
 
