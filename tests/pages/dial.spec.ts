@@ -69,9 +69,9 @@ test('temperature and unit change every number at once, and the unit is remember
 }) => {
   await signInAs(page, 'chemist');
   await openButadiene(page);
-  const sentence = page.getByText(/planar s-trans .* is preferred by/).first();
-  await expect(sentence).toContainText('2.5 kcal/mol over gauche');
-  const share = async () => /; (\d+) % at/.exec(await sentence.innerText())?.[1];
+  const sentence = page.getByText(/planar s-trans .* is preferred over gauche/).first();
+  await expect(sentence).toContainText('by ΔE 2.5 kcal/mol, ΔG');
+  const share = async () => /; (\d+) % by ΔE at/.exec(await sentence.innerText())?.[1];
   const cold = Number(await share());
   await page.getByLabel('Temperature in kelvin').fill('500');
   await page.getByLabel('Temperature in kelvin').press('Tab');
@@ -79,7 +79,7 @@ test('temperature and unit change every number at once, and the unit is remember
   expect(Number(await share())).toBeLessThan(cold);
 
   await page.getByRole('button', { name: 'kJ/mol', exact: true }).click();
-  await expect(sentence).toContainText('kJ/mol over gauche');
+  await expect(sentence).toContainText(/by ΔE [\d.]+ kJ\/mol, ΔG/);
   await expect(page.getByRole('button', { name: 'kJ/mol', exact: true })).toHaveAttribute(
     'aria-pressed',
     'true',
@@ -92,7 +92,7 @@ test('temperature and unit change every number at once, and the unit is remember
   expect((await answeredAgain).status()).toBe(204);
   await page.reload();
   await page.locator('html[data-alive]').waitFor();
-  await expect(sentence).toContainText('kJ/mol over gauche');
+  await expect(sentence).toContainText(/by ΔE [\d.]+ kJ\/mol, ΔG/);
   await page.getByRole('button', { name: 'kcal/mol', exact: true }).click();
 });
 

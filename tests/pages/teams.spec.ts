@@ -128,7 +128,7 @@ test('a program submits, waits and takes the bundle as the README shows, and is 
   await expectAccessible(page);
 
   const readme = readFileSync(new URL('../../README.md', import.meta.url), 'utf8');
-  const section = /## From your own programs\n([\s\S]*?)\n## /.exec(readme)![1];
+  const section = /## From your own programs\n([\s\S]*?)\n##+ /.exec(readme)![1];
   const commands = section
     .split('\n')
     .filter((line) => line.startsWith('    '))
