@@ -37,18 +37,20 @@ export async function signIn(page: Page, email: string, password: string): Promi
 
 type Cookies = Awaited<ReturnType<BrowserContext['cookies']>>;
 /** Sign-ins of the demo's members, kept from test to test: the form has tests of its own. */
-const signedIn = new Map<string, Cookies>();
+const signedIn = new Map<string, { readonly at: number; readonly cookies: Cookies }>();
+/** Well within the time for which dangerous acts take a sign-in as fresh. */
+const KEPT_MS = 4 * 60_000;
 
 /** Opens the desk as a member of the demo, in a sign-in that may be shared with other tests of the file. */
 export async function signInAs(page: Page, role: keyof typeof demoMembers): Promise<void> {
   const kept = signedIn.get(role);
-  if (kept) {
-    await page.context().addCookies(kept);
+  if (kept && Date.now() - kept.at < KEPT_MS) {
+    await page.context().addCookies(kept.cookies);
     await open(page, '/desk');
     if (new URL(page.url()).pathname === '/desk') return;
   }
   await signIn(page, demoMembers[role], demoPassword());
-  signedIn.set(role, await page.context().cookies());
+  signedIn.set(role, { at: Date.now(), cookies: await page.context().cookies() });
 }
 
 /** Pastes molecules, one on each line, and has them read into a preview. */
