@@ -15,23 +15,18 @@ export async function batchFinished(
   batchId: string,
   { isQuiet = false } = {},
 ): Promise<void> {
-  const isUnfinished = and(
-    eq(batches.id, batchId),
-    isNotNull(batches.submittedAt),
-    isNull(batches.finishedAt),
-  );
-  const [batch] = await executor
+  // Whoever waited here sees what the one before noted.
+  const [unfinished] = await executor
     .select({ id: batches.id })
     .from(batches)
-    .where(isUnfinished)
+    .where(and(eq(batches.id, batchId), isNotNull(batches.submittedAt), isNull(batches.finishedAt)))
     .for('no key update');
-  if (!batch || (await hasOpenTasks(executor, batchId))) return;
-  const noted = await executor
+  if (!unfinished || (await hasOpenTasks(executor, batchId))) return;
+  await executor
     .update(batches)
     .set({ finishedAt: sql`now()`, ...(isQuiet ? { toldAt: sql`now()` } : {}) })
-    .where(isUnfinished)
-    .returning({ id: batches.id });
-  if (noted.length > 0) await tellWebhooks(executor, batchId);
+    .where(eq(batches.id, batchId));
+  await tellWebhooks(executor, batchId);
 }
 
 async function hasOpenTasks(executor: Executor, batchId: string): Promise<boolean> {
