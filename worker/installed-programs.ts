@@ -1,13 +1,14 @@
-/** The external programs of this worker's machine, looked for once when it starts, and told to everybody. */
-import { setTimeout as pause } from 'node:timers/promises';
-import { programNames, type ProgramName } from '../src/lib/domain/second-opinions';
+/** The external programs of this worker's machine, looked for once when it starts. */
+import {
+  programNames,
+  type InstalledVersions,
+  type ProgramName,
+} from '../src/lib/domain/second-opinions';
 import { environment } from '../src/lib/server/environment';
 import { log } from '../src/lib/server/log';
-import { announce, withdraw } from '../src/lib/server/worker-programs';
 import { findProgram } from './programs/find-programs';
 import type { InstalledProgram } from './programs/program';
 
-const ANNOUNCE_MS = 30_000;
 const paths = { xtb: environment.WINDLASS_XTB, mopac: environment.WINDLASS_MOPAC };
 
 export type InstalledPrograms = Partial<Record<ProgramName, InstalledProgram>>;
@@ -23,21 +24,12 @@ export async function findInstalled(): Promise<InstalledPrograms> {
   return installed;
 }
 
-/** Tells what this worker has for as long as it runs, and takes it back at its end. */
-export async function keepAnnouncing(
-  worker: string,
-  installed: InstalledPrograms,
-  signal: AbortSignal,
-): Promise<void> {
-  const found = programNames.flatMap((program) => {
-    const version = installed[program]?.version;
-    return version === undefined ? [] : [{ program, version }];
-  });
-  while (!signal.aborted) {
-    await announce(worker, found).catch((error: unknown) =>
-      log.warn({ error }, 'The programs could not be told; tried again'),
-    );
-    await pause(ANNOUNCE_MS, undefined, { signal }).catch(() => undefined);
-  }
-  await withdraw(worker).catch(() => undefined);
+/** What a worker tells of its programs. */
+export function versionsOf(installed: InstalledPrograms): InstalledVersions {
+  return Object.fromEntries(
+    programNames.flatMap((name) => {
+      const version = installed[name]?.version;
+      return version === undefined ? [] : [[name, version]];
+    }),
+  );
 }

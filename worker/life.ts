@@ -10,7 +10,7 @@ const BEAT_MS = 3_000;
 const stateOf = { take: 'taking', pause: 'paused', drain: 'draining' } as const;
 
 /** What a worker is, as operators see it. */
-export type Identity = Pick<workers.WorkerSign, 'name' | 'version' | 'concurrency'>;
+export type Identity = Pick<workers.WorkerSign, 'name' | 'version' | 'concurrency' | 'programs'>;
 
 /**
  * Shows that the worker lives and does what is wanted: takes tasks, pauses, or drains, which ends with a call of `end`

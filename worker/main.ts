@@ -17,7 +17,7 @@ import { requeueStranded } from '../src/lib/server/webhook-log';
 import { deliverWebhooks } from './deliveries';
 import { keepLetters } from './letters';
 import { keepFingerprints } from './fingerprints';
-import { findInstalled, keepAnnouncing } from './installed-programs';
+import { findInstalled, versionsOf } from './installed-programs';
 import { showLife } from './life';
 import { hearCancels, performTask } from './perform';
 import { closePool, concurrency } from './pool';
@@ -58,9 +58,8 @@ const check = setInterval(() => {
 const ending = new AbortController();
 void keepFingerprints(ending.signal);
 if (doesChores) void keepLetters(ending.signal);
-const announcing = keepAnnouncing(name, installed, ending.signal);
 const leave = await showLife(
-  { name, version: ENGINE_VERSION, concurrency },
+  { name, version: ENGINE_VERSION, concurrency, programs: versionsOf(installed) },
   joinSlots(slots),
   endDrained,
 );
@@ -70,7 +69,6 @@ log.info({ worker: name, concurrency }, 'The worker takes tasks');
 async function stop(): Promise<void> {
   clearInterval(check);
   ending.abort();
-  await announcing;
   await Promise.all([closePool(), closeDelivery()]);
   await leave();
   await stopQueue();

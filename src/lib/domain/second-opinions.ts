@@ -8,6 +8,8 @@ export const programs = {
 } as const;
 export type ProgramName = keyof typeof programs;
 export const programNames = ['xtb', 'mopac'] as const satisfies readonly ProgramName[];
+/** Versions of the programs that are there, by name. */
+export type InstalledVersions = Partial<Record<ProgramName, string>>;
 
 export const GFN2 = 'GFN2-xTB';
 export const GFN1 = 'GFN1-xTB';

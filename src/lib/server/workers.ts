@@ -1,6 +1,7 @@
 /** The workers that were seen: their signs of life, and what an operator wants of each. */
 import { and, desc, eq, gt, lt, ne, sql } from 'drizzle-orm';
 import type { MetricObjectWithValues } from 'prom-client';
+import type { InstalledVersions } from '../domain/second-opinions';
 import { db, type Executor } from './db';
 import { workers } from './db/schema';
 
@@ -17,6 +18,7 @@ export interface WorkerSign {
   readonly name: string;
   readonly version: string;
   readonly concurrency: number;
+  readonly programs: InstalledVersions;
   readonly startedAt: Date;
   readonly state: WorkerState;
   readonly metrics: readonly unknown[];

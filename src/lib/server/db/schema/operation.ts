@@ -5,11 +5,11 @@ import {
   jsonb,
   pgEnum,
   pgTable,
-  primaryKey,
   smallint,
   text,
   uuid,
 } from 'drizzle-orm/pg-core';
+import type { InstalledVersions } from '../../../domain/second-opinions';
 import { moment } from './columns';
 import { users } from './people';
 
@@ -28,22 +28,12 @@ export const workers = pgTable(
     wanted: workerOrderEnum('wanted').notNull().default('take'),
     startedAt: moment('started_at').notNull().defaultNow(),
     beatAt: moment('beat_at').notNull().defaultNow(),
+    /** Versions of the external programs on its machine, by name. */
+    programs: jsonb('programs').$type<InstalledVersions>().notNull().default({}),
     /** Its metrics as of the last sign of life, for whoever collects them from the web. */
     metrics: jsonb('metrics').notNull().default([]),
   },
   (table) => [index('workers_beat').on(table.beatAt)],
-);
-
-/** The external programs each worker has; a worker that falls silent no longer counts. */
-export const workerPrograms = pgTable(
-  'worker_programs',
-  {
-    worker: text('worker').notNull(),
-    program: text('program').notNull(),
-    version: text('version').notNull(),
-    seenAt: moment('seen_at').notNull().defaultNow(),
-  },
-  (table) => [primaryKey({ columns: [table.worker, table.program] })],
 );
 
 /** What operators did to the machines, and when; rows are only ever added. */
