@@ -1,5 +1,6 @@
 /** The JSON files of a bundle, described by a schema that goes with them. */
 import { z } from 'zod';
+import { taskKinds } from './labels';
 
 const coordinates = z
   .array(z.number())
@@ -27,16 +28,7 @@ const vibrations = z
 export const answerSchema = z.looseObject({
   name: z.string(),
   smiles: z.string().describe('Canonical isomeric SMILES'),
-  kind: z.enum([
-    'conformers',
-    'scan',
-    'map',
-    'conjugation',
-    'strain',
-    'opinion',
-    'ranking',
-    'heat',
-  ]),
+  kind: z.enum(taskKinds),
   settings: z.record(z.string(), z.unknown()).describe('The settings, defaults and seed included'),
   engineVersion: z.string(),
   model: z.string().describe('Energy model'),

@@ -1,6 +1,6 @@
 /** What things are called on pages, in letters and in bundles. */
 
-const taskKinds = {
+const kindNames = {
   conformers: 'Conformers',
   scan: 'Torsion scan',
   map: 'Map of two bonds',
@@ -11,7 +11,12 @@ const taskKinds = {
   heat: 'Heat of formation',
 } as const;
 
+export type TaskKind = keyof typeof kindNames;
+
+/** What can be computed. */
+export const taskKinds = Object.keys(kindNames) as [TaskKind, ...TaskKind[]];
+
 /** The kind of a task, as people call it. */
-export function taskKindName(kind: keyof typeof taskKinds): string {
-  return taskKinds[kind];
+export function taskKindName(kind: TaskKind): string {
+  return kindNames[kind];
 }

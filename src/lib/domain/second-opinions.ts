@@ -59,6 +59,7 @@ export type HeatSettings = z.output<typeof heatSettingsSchema>;
 /** The tasks that external programs perform, and which program each needs. */
 export const programOfKind = { opinion: 'xtb', ranking: 'xtb', heat: 'mopac' } as const;
 export type ProgramTaskKind = keyof typeof programOfKind;
+export const programTaskKinds = Object.keys(programOfKind) as readonly ProgramTaskKind[];
 
 /** True for tasks that an external program performs. */
 export function needsProgram(kind: string): kind is ProgramTaskKind {

@@ -31,6 +31,15 @@ describe('numbers for people', () => {
   ])('%d s is %s', (seconds, text) => expect(duration(seconds)).toBe(text));
 });
 
+/** What was found by a search of conformers. */
+const found = {
+  model: 'MMFF94s',
+  count: 3,
+  window: 10,
+  lowestPopulation: 0.5,
+  temperature: 298.15,
+};
+
 describe('sentences', () => {
   it('answers whether a diene reaches s-cis, and at what price', () => {
     expect(
@@ -53,29 +62,15 @@ describe('sentences', () => {
   });
 
   it('says so when a search was not complete', () => {
-    const facts = {
-      model: 'MMFF94s',
-      count: 3,
-      window: 10,
-      lowestPopulation: 0.5,
-      temperature: 298.15,
-    };
-    expect(conformersSentence({ ...facts, complete: false }, 'kcal/mol')).toContain(
+    expect(conformersSentence({ ...found, complete: false }, 'kcal/mol')).toContain(
       'others may exist',
     );
-    expect(conformersSentence({ ...facts, complete: true }, 'kcal/mol')).not.toContain('others');
+    expect(conformersSentence({ ...found, complete: true }, 'kcal/mol')).not.toContain('others');
   });
 
   it('tells the populations of conformers by ΔE and by ΔG apart', () => {
-    const facts = {
-      model: 'MMFF94s',
-      count: 3,
-      window: 10,
-      lowestPopulation: 0.5,
-      temperature: 298.15,
-    };
     const sentence = (free: { lowest: number; leader: number; share: number } | null) =>
-      conformersSentence({ ...facts, complete: true, free }, 'kcal/mol');
+      conformersSentence({ ...found, complete: true, free }, 'kcal/mol');
     expect(sentence(null)).toMatch(/the lowest holds 50 % by ΔE at 25 °C[.]$/);
     expect(sentence({ lowest: 0.4, leader: 0, share: 0.4 })).toMatch(
       /holds 50 % by ΔE and 40 % by ΔG at 25 °C[.]$/,

@@ -4,10 +4,10 @@ import { opinionSettingsSchema, type OpinionSettings } from '../domain/second-op
 import { ENGINE_VERSION, type Molecule } from '../engine';
 import { db } from './db';
 import { molecules, profileCurves, profiles, results } from './db/schema';
-import { notFound, require, type Member } from './member';
+import type { Member } from './member';
 import { readStored } from './molecules';
 import { pack, unpack } from './packing';
-import { ask, ProgramRequestError, type ProgramTask } from './program-tasks';
+import { ask, ProgramRequestError, resultAskedAbout, type ProgramTask } from './program-tasks';
 import { storeAnswer } from './results';
 import { measure } from './storage';
 import type { ClaimedTask } from './tasks';
@@ -18,18 +18,7 @@ export async function request(
   moleculeId: string,
   settings: OpinionSettings,
 ): Promise<ProgramTask> {
-  require(member, 'submit molecules');
-  const [scan] = await db
-    .select({ kind: results.kind, model: results.model, settings: results.settings })
-    .from(results)
-    .where(
-      and(
-        eq(results.id, settings.result),
-        eq(results.moleculeId, moleculeId),
-        eq(results.teamId, member.teamId),
-      ),
-    );
-  if (!scan) notFound('result');
+  const scan = await resultAskedAbout(member, moleculeId, settings.result);
   const { relaxed } = scan.settings as { relaxed?: boolean };
   if (scan.kind !== 'scan' || scan.model !== 'MMFF94s' || relaxed === false) {
     throw new ProgramRequestError('A second opinion needs a relaxed torsion scan by MMFF94s.');

@@ -5,10 +5,11 @@ import {
   howToAdd,
   programFor,
   programOfKind,
+  programTaskKinds,
   type ProgramTaskKind,
 } from '../domain/second-opinions';
 import { db, type Executor } from './db';
-import { batches, entries, molecules, tasks } from './db/schema';
+import { batches, entries, molecules, results, tasks } from './db/schema';
 import { recordEvent } from './events';
 import { checkRoom, lockTeam } from './limits';
 import { tell } from './live';
@@ -41,6 +42,22 @@ export interface ProgramRequest {
 export interface ProgramTask {
   readonly taskId: string;
   readonly state: 'queued' | 'running' | 'done';
+}
+
+/** The result of the member's team that something is asked about; 404 where the molecule has none such. */
+export async function resultAskedAbout(member: Member, moleculeId: string, resultId: string) {
+  require(member, 'submit molecules');
+  const [result] = await db
+    .select({ kind: results.kind, model: results.model, settings: results.settings })
+    .from(results)
+    .where(
+      and(
+        eq(results.id, resultId),
+        eq(results.moleculeId, moleculeId),
+        eq(results.teamId, member.teamId),
+      ),
+    );
+  return result ?? notFound('result');
 }
 
 /**
@@ -188,7 +205,7 @@ export async function open(member: Member, moleculeId: string): Promise<OpenProg
       and(
         eq(entries.moleculeId, moleculeId),
         eq(batches.teamId, member.teamId),
-        inArray(tasks.kind, ['opinion', 'ranking', 'heat']),
+        inArray(tasks.kind, [...programTaskKinds]),
         inArray(tasks.state, ['queued', 'running', 'failed', 'cancelled']),
       ),
     )

@@ -10,10 +10,10 @@ import { ENGINE_VERSION, writeMolfile, type Molecule, type Reordered } from '../
 import { boltzmannPopulations } from '../engine/light';
 import { db } from './db';
 import { conformers, molecules, results } from './db/schema';
-import { notFound, require, type Member } from './member';
+import type { Member } from './member';
 import { readStored } from './molecules';
 import { pack, unpack } from './packing';
-import { ask, ProgramRequestError, type ProgramTask } from './program-tasks';
+import { ask, ProgramRequestError, resultAskedAbout, type ProgramTask } from './program-tasks';
 import { storeAnswer } from './results';
 import type { ClaimedTask } from './tasks';
 
@@ -23,18 +23,7 @@ export async function request(
   moleculeId: string,
   settings: RankingSettings,
 ): Promise<ProgramTask> {
-  require(member, 'submit molecules');
-  const [search] = await db
-    .select({ kind: results.kind })
-    .from(results)
-    .where(
-      and(
-        eq(results.id, settings.result),
-        eq(results.moleculeId, moleculeId),
-        eq(results.teamId, member.teamId),
-      ),
-    );
-  if (!search) notFound('result');
+  const search = await resultAskedAbout(member, moleculeId, settings.result);
   if (search.kind !== 'conformers') {
     throw new ProgramRequestError('Only the conformers of a search can be ranked again.');
   }

@@ -16,21 +16,13 @@ import {
   unique,
   uuid,
 } from 'drizzle-orm/pg-core';
+import { taskKinds } from '../../../domain/labels';
 import { bytes, moment, created } from './columns';
 import { users } from './people';
 import { teams } from './teams';
 import { molecules, batches, entries } from './molecules';
 
-export const taskKindEnum = pgEnum('task_kind', [
-  'conformers',
-  'scan',
-  'map',
-  'conjugation',
-  'strain',
-  'opinion',
-  'ranking',
-  'heat',
-]);
+export const taskKindEnum = pgEnum('task_kind', taskKinds);
 
 export const taskStateEnum = pgEnum('task_state', [
   'queued',
