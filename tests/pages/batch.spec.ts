@@ -6,6 +6,7 @@ import {
   compute,
   expectAccessible,
   open,
+  openBatch,
   readPasted,
   signInAs,
   waitUntilDone,
@@ -117,9 +118,7 @@ test('a reader reads and downloads, but has no way to submit', async ({ page }) 
 
 test('the demo has a row that failed, and says why', async ({ page }) => {
   await signInAs(page, 'lead');
-  await open(page, '/batches');
-  await page.getByRole('link', { name: 'Biaryls for the topcoat', exact: true }).click();
-  await waitUntilDone(page);
+  await openBatch(page, 'Biaryls for the topcoat');
   await expect(page.getByText(/MMFF94 has no parameters for atom \d+ \(B\)/).first()).toBeVisible();
 });
 
@@ -158,9 +157,7 @@ for (const [width, scheme] of [
       await open(page, path);
       await expectAccessible(page);
     }
-    await open(page, '/batches');
-    await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
-    await waitUntilDone(page);
+    await openBatch(page, 'Dienes for the primer');
     await expectAccessible(page);
     await page.getByRole('link', { name: 'isoprene', exact: true }).click();
     await expect(page.getByRole('heading', { name: /^Turn about/ })).toBeVisible();

@@ -7,6 +7,7 @@ import {
   demoMembers,
   expectAccessible,
   open,
+  openBatch,
   readPasted,
   signInAs,
   waitUntilDone,
@@ -56,9 +57,7 @@ test('a modeler finds drafts, trouble, batches and answers on the desk', async (
 
 test('chosen rows make a bundle of their own', async ({ page }) => {
   await signInAs(page, 'reader');
-  await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
-  await waitUntilDone(page);
+  await openBatch(page, 'Dienes for the primer');
   await page.getByRole('checkbox', { name: 'Choose all rows of this page' }).check();
   await expect(page.getByRole('link', { name: 'Download 7 chosen' })).toBeVisible();
   await page.getByRole('button', { name: 'Clear' }).click();
@@ -105,9 +104,7 @@ for (const role of Object.keys(demoMembers) as (keyof typeof demoMembers)[]) {
     );
     await expect(page.getByRole('region', { name: 'Needs you' })).toHaveCount(submits ? 1 : 0);
     await expectAccessible(page);
-    await open(page, '/batches');
-    await page.getByRole('link', { name: 'Biaryls for the topcoat', exact: true }).click();
-    await waitUntilDone(page);
+    await openBatch(page, 'Biaryls for the topcoat');
     await expect(page.getByRole('button', { name: /^Run \d+ again/ })).toHaveCount(steers ? 1 : 0);
     await expect(page.getByRole('link', { name: 'Download bundle' })).toBeVisible();
     const bundle = await page.request.get(`${page.url()}/bundle`);

@@ -1,16 +1,11 @@
 /** Reading a torsion profile: the dial, what turns with it, and how results are read. */
 import { readFileSync } from 'node:fs';
 import { expect, test, type Locator, type Page } from '@playwright/test';
-import { expectAccessible, open, signInAs } from '../support/pages';
+import { expectAccessible, openMolecule, signInAs } from '../support/pages';
 
 /** Opens the demo's butadiene, whose batch is computed when the product starts for the first time. */
 async function openButadiene(page: Page): Promise<Locator> {
-  await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
-  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
-    timeout: 240_000,
-  });
-  await page.getByRole('link', { name: 'buta-1,3-diene' }).first().click();
+  await openMolecule(page, 'Dienes for the primer', 'buta-1,3-diene');
   const dial = page.getByRole('slider', { name: /^Torsion / });
   await dial.scrollIntoViewIfNeeded();
   await expect(page.getByTestId('profile-cursor')).toBeVisible();

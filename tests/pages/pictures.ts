@@ -6,8 +6,7 @@ import { mkdirSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { chromium, type Page } from '@playwright/test';
 import config from '../../playwright.config';
-import type { demoMembers } from '../support/pages';
-import { open, signInAs, waitUntilDone } from '../support/pages';
+import { open, openBatch, openMolecule, signInAs, type demoMembers } from '../support/pages';
 import setUp from '../support/product';
 
 const FOLDER = fileURLToPath(new URL('./pictures/', import.meta.url));
@@ -33,16 +32,8 @@ const at =
   (page: Page): Promise<void> =>
     open(page, path);
 
-async function openBatch(page: Page, name: string): Promise<void> {
-  await open(page, '/batches');
-  await page.getByRole('link', { name, exact: true }).click();
-  await waitUntilDone(page);
-}
-
-async function openMolecule(page: Page, batch: string, molecule: string): Promise<void> {
-  await openBatch(page, batch);
-  await page.getByRole('link', { name: molecule, exact: true }).click();
-  await page.waitForURL(/molecules/);
+async function lookAt(page: Page, batch: string, molecule: string): Promise<void> {
+  await openMolecule(page, batch, molecule);
   await page.locator('canvas').first().waitFor();
 }
 
@@ -66,16 +57,16 @@ const pages: Record<string, Pictured> = {
   },
   diene: {
     who: 'chemist',
-    go: (page) => openMolecule(page, 'Dienes for the primer', 'isoprene'),
+    go: (page) => lookAt(page, 'Dienes for the primer', 'isoprene'),
   },
   strain: {
     who: 'modeler',
-    go: (page) => openMolecule(page, 'Benzanilide, as packed', 'benzanilide as packed'),
+    go: (page) => lookAt(page, 'Benzanilide, as packed', 'benzanilide as packed'),
   },
   report: {
     who: 'chemist',
     async go(page) {
-      await openMolecule(page, 'Dienes for the primer', 'isoprene');
+      await lookAt(page, 'Dienes for the primer', 'isoprene');
       await page.getByRole('link', { name: 'Report', exact: true }).click();
       await page.waitForURL(/report/);
     },

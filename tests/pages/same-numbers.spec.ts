@@ -6,7 +6,7 @@ import { unzipSync } from 'fflate';
 import { projectRoot } from '../../scripts/folders.mjs';
 import { answerSchema } from '../../src/lib/domain/bundle-schema';
 import type { z } from 'zod';
-import { open, signInAs, waitUntilDone } from '../support/pages';
+import { openMolecule, signInAs } from '../support/pages';
 
 type Bundled = z.infer<typeof answerSchema>;
 
@@ -64,14 +64,6 @@ async function shownRows(page: Page, caption: string): Promise<string[][]> {
       return cells.map((cell) => cell.trim().replace('−', '-'));
     }),
   );
-}
-
-async function openMolecule(page: Page, batch: string, molecule: string): Promise<void> {
-  await open(page, '/batches');
-  await page.getByRole('link', { name: batch, exact: true }).click();
-  await waitUntilDone(page);
-  await page.getByRole('link', { name: molecule, exact: true }).click();
-  await page.waitForURL(/molecules/);
 }
 
 function bothOf<Kind extends Bundled['kind']>({ answers, computed }: Bundle, kind: Kind) {

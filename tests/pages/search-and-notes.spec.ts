@@ -1,15 +1,11 @@
 /** Finding molecules, writing about them, comparing their profiles and printing their answers, in a browser. */
 import { readFileSync } from 'node:fs';
 import { expect, test, type Page } from '@playwright/test';
-import { expectAccessible, open, signInAs } from '../support/pages';
+import { expectAccessible, open, openBatch, signInAs } from '../support/pages';
 
-/** Opens the page of a molecule of the demo when its batch is computed; returns its path. */
-async function openMolecule(page: Page, name: string): Promise<string> {
-  await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
-  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
-    timeout: 240_000,
-  });
+/** Finds a molecule of the demo when its batch is computed; returns its path. */
+async function findMolecule(page: Page, name: string): Promise<string> {
+  await openBatch(page, 'Dienes for the primer');
   await open(page, `/search?text=${name}&in=name`);
   await page.getByRole('link', { name, exact: true }).click();
   await expect(page.getByRole('heading', { name, level: 1 })).toBeVisible();
@@ -61,7 +57,7 @@ test('a chemist writes to the lead, who sees it at once, answers and resolves', 
   browser,
 }) => {
   await signInAs(page, 'chemist');
-  const path = await openMolecule(page, 'isoprene');
+  const path = await findMolecule(page, 'isoprene');
   const other = await browser.newContext();
   const lead = await other.newPage();
   await signInAs(lead, 'lead');
@@ -106,7 +102,7 @@ test('a chemist writes to the lead, who sees it at once, answers and resolves', 
 
 test('profiles are compared, sorted, downloaded and shared by their address', async ({ page }) => {
   await signInAs(page, 'modeler');
-  await openMolecule(page, 'isoprene');
+  await findMolecule(page, 'isoprene');
   await page.getByRole('link', { name: 'Compare C2–C4' }).click();
   await page.waitForURL('**/compare?p=*');
   await page.getByLabel('Name of the molecule').fill('chloroprene');
@@ -144,7 +140,7 @@ test('profiles are compared, sorted, downloaded and shared by their address', as
 
 test('a report fits A4 and Letter paper', async ({ page }) => {
   await signInAs(page, 'reader');
-  await openMolecule(page, 'isoprene');
+  await findMolecule(page, 'isoprene');
   await page.getByRole('link', { name: 'Report', exact: true }).click();
   await expect(page.getByRole('heading', { name: 'Methods' })).toBeVisible();
   for (const text of ['Turn about C2–C4', 'Conformers', 'Literature', 'Cautions', 'seed 1']) {

@@ -2,7 +2,14 @@
 import { readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { expect, test, type Page } from '@playwright/test';
-import { expectAccessible, open, signInAs } from '../support/pages';
+import {
+  expectAccessible,
+  open,
+  openBatch,
+  openMolecule,
+  signInAs,
+  waitUntilDone,
+} from '../support/pages';
 
 /** The gauche conformer of butane as Windlass computed it. */
 const gaucheButane = fileURLToPath(new URL('recorded/gauche-butane.sdf', import.meta.url));
@@ -10,17 +17,9 @@ const gaucheButane = fileURLToPath(new URL('recorded/gauche-butane.sdf', import.
 const section = (page: Page, name: string | RegExp) =>
   page.locator('section').filter({ has: page.getByRole('heading', { name, level: 2 }) });
 
-async function openDienes(page: Page): Promise<void> {
-  await open(page, '/batches');
-  await page.getByRole('link', { name: 'Dienes for the primer', exact: true }).click();
-  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
-    timeout: 240_000,
-  });
-}
-
 test('a chemist compares the dienes of a batch and takes the table', async ({ page }) => {
   await signInAs(page, 'chemist');
-  await openDienes(page);
+  await openBatch(page, 'Dienes for the primer');
   await page.getByRole('link', { name: 'Compare conjugation', exact: true }).click();
   const table = page.getByRole('table', { name: 'Conjugated bonds of the batch' });
   await expect(table.getByRole('row')).toHaveCount(1 + 7);
@@ -48,8 +47,7 @@ test('a chemist lays conformers over one another and reads s-cis beside s-trans'
   page,
 }) => {
   await signInAs(page, 'chemist');
-  await openDienes(page);
-  await page.getByRole('link', { name: 'isoprene', exact: true }).click();
+  await openMolecule(page, 'Dienes for the primer', 'isoprene');
   // Another test may have searched the same molecule with other settings; the newest comes first.
   const conformers = section(page, 'Conformers').first();
   await conformers.getByRole('button', { name: /^Show the lowest/ }).click();
@@ -115,9 +113,7 @@ test('a modeler maps two bonds of an uploaded geometry and reads its strain', as
   await expectAccessible(page);
   await page.getByRole('button', { name: /^Compute/ }).click();
   await page.waitForURL(/batches\/[0-9a-f-]{36}$/);
-  await expect(page.getByRole('progressbar')).toHaveAttribute('aria-valuenow', '100', {
-    timeout: 240_000,
-  });
+  await waitUntilDone(page);
   await page.getByRole('link', { name: 'gauche butane', exact: true }).click();
 
   const map = section(page, /^Map of/);

@@ -75,6 +75,20 @@ export async function waitUntilDone(page: Page): Promise<void> {
   });
 }
 
+/** Opens a batch by its name, and waits until all of it has ended. */
+export async function openBatch(page: Page, name: string): Promise<void> {
+  await open(page, '/batches');
+  await page.getByRole('link', { name, exact: true }).click();
+  await waitUntilDone(page);
+}
+
+/** Opens a molecule of a batch once all of the batch has ended. */
+export async function openMolecule(page: Page, batch: string, molecule: string): Promise<void> {
+  await openBatch(page, batch);
+  await page.getByRole('link', { name: molecule, exact: true }).click();
+  await page.waitForURL(/molecules/);
+}
+
 /** Checks the page as it stands against WCAG 2.2 A and AA, and that nothing makes it scroll sideways. */
 export async function expectAccessible(page: Page): Promise<void> {
   const { violations } = await new AxeBuilder({ page })
