@@ -94,15 +94,10 @@ const pages: Record<string, Pictured> = {
   operator: { who: 'lead', go: at('/operator') },
 };
 
-/** Scrolls to the end and back: plots and 3-D views come when they are seen. */
-async function lookAtAll(page: Page): Promise<void> {
+/** A window that shows all of a page at once: plots and 3-D views come when they are seen, and go when they are not. */
+async function sizeOf(page: Page, width: number) {
   const height = await page.evaluate(() => document.documentElement.scrollHeight);
-  for (let y = 0; y < height; y += 600) {
-    await page.evaluate((top) => scrollTo(0, top), y);
-    await painted(page);
-  }
-  await page.waitForLoadState('networkidle');
-  await page.evaluate(() => scrollTo(0, 0));
+  return { width, height: Math.min(height, TALLEST) };
 }
 
 /** Waits until the page has been drawn anew, twice: colors of a scheme come one frame late. */
@@ -135,15 +130,13 @@ try {
       await go(page);
       for (const scheme of schemes) {
         await page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
-        await lookAtAll(page);
+        await page.setViewportSize(await sizeOf(page, viewport.width));
+        await page.waitForFunction(() => !/Loading (the|geom)/.test(document.body.innerText));
         await painted(page);
-        const height = await page.evaluate(() => document.documentElement.scrollHeight);
         await page.screenshot({
           path: `${FOLDER}${name}-${device}-${scheme}.jpg`,
           type: 'jpeg',
           quality: QUALITY,
-          fullPage: true,
-          clip: { x: 0, y: 0, width: viewport.width, height: Math.min(height, TALLEST) },
         });
       }
       console.log(`${name}, ${device}`);
