@@ -6,7 +6,6 @@ import { ENGINE_VERSION } from '../src/lib/engine';
 import { closeDatabase } from '../src/lib/server/db';
 import { environment } from '../src/lib/server/environment';
 import { log } from '../src/lib/server/log';
-import { keepHouse } from '../src/lib/server/housekeeping';
 import { closeDelivery, deliver } from '../src/lib/server/letter-delivery';
 import { closeMail } from '../src/lib/server/mail';
 import { watchProcess } from '../src/lib/server/metrics';
@@ -46,10 +45,7 @@ for (const program of programNames) {
 }
 const stopDelivering = await deliverWebhooks();
 const doesChores = environment.WINDLASS_WORKER_CHORES === 'on';
-if (doesChores) {
-  await workOnLetters(deliver);
-  keepHouse();
-}
+if (doesChores) await workOnLetters(deliver);
 const check = setInterval(() => {
   Promise.all([failAbandoned(), requeueStranded()]).catch((error: unknown) =>
     log.warn({ error }, 'Looking for what was abandoned failed; it is tried again'),

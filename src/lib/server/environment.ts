@@ -49,7 +49,7 @@ const schema = z
     WINDLASS_DATABASE_POOL: z.coerce.number().int().min(1).max(100).default(10),
     /** Tasks a worker runs at once; 0 takes one for each core. */
     WINDLASS_WORKER_CONCURRENCY: z.coerce.number().int().min(0).max(256).default(0),
-    /** Whether a worker also hands letters in and keeps house; it needs all settings of the web for that. */
+    /** Whether a worker also writes and hands in letters; it needs the web's mail server and origin for that. */
     WINDLASS_WORKER_CHORES: z.enum(['on', 'off']).default('on'),
     /** Longest time one task may take, seconds. */
     WINDLASS_TASK_SECONDS: z.coerce.number().int().min(10).max(86_400).default(1_800),
