@@ -17,7 +17,7 @@ installPrograms();
 const folder = await buildProduct();
 const { superviseProgram } = await import('./processes.mjs');
 const { printLine } = await import('./log-lines.mjs');
-// Without the web's settings it would hand letters in nowhere and keep results for the wrong time.
+// Without the web's mail server it would hand letters in nowhere.
 const WINDLASS_WORKER_CHORES = process.env.WINDLASS_SMTP_URL ? 'on' : 'off';
 const env = { NODE_ENV: 'production', WINDLASS_WORKER_CHORES, ...process.env };
 const args = [join(folder, 'worker', 'main.js')];
